@@ -1,0 +1,1 @@
+"""Where the command line begins."""

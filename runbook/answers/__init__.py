@@ -1,0 +1,66 @@
+"""Frozen data that crosses the process boundary between the run and the physics.
+
+It exists so that the run (words, keys, record) needs no physics and the physics needs no screen: the one asks
+with a Question, the other answers with data of this package, and everything here is written into the journal
+as it stands. No logic lives here. All quantities are SI; all pressures are absolute.
+"""
+
+from runbook.answers.lines import (
+    Empty,
+    Hold,
+    LineKind,
+    Need,
+    PlanLine,
+    QuickItem,
+    SafetyMessage,
+    Sight,
+    Witness,
+)
+from runbook.answers.margins import (
+    Agreement,
+    ChargeBox,
+    Corner,
+    Distance,
+    Effect,
+    Future,
+    Hazard,
+    Judgement,
+    LeftAlone,
+    Margin,
+    Phase,
+)
+from runbook.answers.plan import Certificate, ChargeBounds, Finding, Instrument, Plan, PlanPart
+from runbook.answers.question import Answer, Observation, Question, Unanswered
+
+__all__ = [
+    "Agreement",
+    "Answer",
+    "Certificate",
+    "ChargeBounds",
+    "ChargeBox",
+    "Corner",
+    "Distance",
+    "Effect",
+    "Empty",
+    "Finding",
+    "Future",
+    "Hazard",
+    "Hold",
+    "Instrument",
+    "Judgement",
+    "LeftAlone",
+    "LineKind",
+    "Margin",
+    "Need",
+    "Observation",
+    "Phase",
+    "Plan",
+    "PlanLine",
+    "PlanPart",
+    "Question",
+    "QuickItem",
+    "SafetyMessage",
+    "Sight",
+    "Unanswered",
+    "Witness",
+]

@@ -5,6 +5,7 @@ pydantic does the work; this module only keeps one adapter a class, since buildi
 
 from __future__ import annotations
 
+from collections.abc import Hashable
 from functools import cache
 from typing import Any, TypeVar
 
@@ -14,11 +15,11 @@ T = TypeVar("T")
 
 
 @cache
-def _adapter(kind: Any) -> TypeAdapter[Any]:
+def _adapter(kind: Hashable) -> TypeAdapter[Any]:
     return TypeAdapter(kind)
 
 
-def to_plain(value: object, kind: Any | None = None) -> Any:
+def to_plain(value: object, kind: Hashable | None = None) -> Any:
     """JSON-ready plain data of a frozen dataclass; infinities and NaN are the caller's fault and raise."""
     return _adapter(kind or type(value)).dump_python(value, mode="json")
 

@@ -116,7 +116,7 @@ class Plan:
     free_volume: tuple[float, float]
     """Least and most [m3]."""
     ceiling: float | None
-    """Lowest pressure limit of the closed vessel while its isolators stand as at rest [Pa]; None: not known."""
+    """Lowest pressure limit of the closed vessel, isolators as at rest [Pa]; None: not known."""
     ceiling_by: str
     """Tag that governs it."""
     pressure_unit: str

@@ -5,23 +5,24 @@ pydantic does the work; this module only keeps one adapter a class, since buildi
 
 from __future__ import annotations
 
-from collections.abc import Hashable
-from functools import cache
 from typing import Any, TypeVar
 
 from pydantic import TypeAdapter
 
 T = TypeVar("T")
 
-
-@cache
-def _adapter(kind: Hashable) -> TypeAdapter[Any]:
-    return TypeAdapter(kind)
+_ADAPTERS: dict[Any, TypeAdapter[Any]] = {}
 
 
-def to_plain(value: object, kind: Hashable | None = None) -> Any:
-    """JSON-ready plain data of a frozen dataclass; infinities and NaN are the caller's fault and raise."""
-    return _adapter(kind or type(value)).dump_python(value, mode="json")
+def _adapter(kind: Any) -> TypeAdapter[Any]:
+    if kind not in _ADAPTERS:
+        _ADAPTERS[kind] = TypeAdapter(kind)
+    return _ADAPTERS[kind]
+
+
+def to_plain(value: object) -> Any:
+    """JSON-ready plain data of a frozen dataclass."""
+    return _adapter(type(value)).dump_python(value, mode="json")
 
 
 def from_plain(kind: type[T], plain: object) -> T:

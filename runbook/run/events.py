@@ -41,7 +41,7 @@ class RunOpened:
 
 @dataclass(frozen=True, slots=True)
 class WentOn:
-    """The line the run stood in is finished and `to` is entered; its valve positions are confirmed by this."""
+    """The line the run stood in is finished (its valve positions are confirmed by this) and `to` is entered."""
 
     to: int
 
@@ -147,7 +147,7 @@ class NoAnswer:
 
 @dataclass(frozen=True, slots=True)
 class TurnedBack:
-    """A margin went, or stayed unknown too long, during a line: its instruction is replaced by the way back."""
+    """A margin went, or stayed unknown too long, during a line: the way back replaces its instruction."""
 
     line: int
     why: str
@@ -182,7 +182,7 @@ class GapAnswered:
 
 @dataclass(frozen=True, slots=True)
 class GapOpened:
-    """The run was taken up after a gap, or the child was lost and came back: the four questions stand open."""
+    """The run was taken up after a gap, or the child was lost and came back: the four questions are open."""
 
     why: str
 

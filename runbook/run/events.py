@@ -41,7 +41,7 @@ class RunOpened:
 
 @dataclass(frozen=True, slots=True)
 class WentOn:
-    """The line the run stood in is finished (its valve positions are confirmed by this) and `to` is entered."""
+    """The line the run stood in is finished, which confirms its valve positions, and `to` is entered."""
 
     to: int
 

@@ -1,0 +1,329 @@
+"""One substance at a temperature and a density: solid, liquid, vapour and beyond the critical point.
+
+A sealed vessel fixes the density, so temperature and density are the inputs everywhere. Raises
+OutsideValidity where the models do not reach; never extrapolates in silence.
+"""
+
+from __future__ import annotations
+
+from functools import cache
+
+from runbook.errors import OutsideValidity
+from runbook.fluids.catalogue import FluidData, find
+from runbook.fluids.library import Equation, Frozen, Saturation, SaturationSlopes
+from runbook.fluids.mixing import liquid_and_vapour, solid_and_liquid, solid_and_vapour
+from runbook.fluids.roots import bracketed_root
+from runbook.fluids.solid import DryIce
+from runbook.fluids.state import Landmarks, Region, State
+
+CRITICAL_BAND = 0.05
+"""Relative distance from critical density within which the landmark is *critical* [1]."""
+
+
+class Substance:
+    """A fluid and its solid. Not to be shared between threads."""
+
+    def __init__(self, data: FluidData) -> None:
+        self._data = data
+        bare = Equation(data.library_name, data.max_temperature, data.max_pressure)
+        self._solid = DryIce(bare.triple_pressure) if data.freezes_to == "dry ice" else None
+        bare.melting_pressure = self._solid.melting_pressure if self._solid else None
+        self._equation = equation = bare
+        self.name = data.name
+        """Canonical name."""
+        self.source = data.source
+        """Publication of the equation of state."""
+        self.triple_temperature = equation.triple_temperature
+        """[K]."""
+        self.triple_pressure = equation.triple_pressure
+        """[Pa]."""
+        self.critical_temperature = equation.critical_temperature
+        """[K]."""
+        self.critical_pressure = equation.critical_pressure
+        """[Pa]."""
+        self.critical_density = equation.critical_density
+        """[kg/m3]."""
+        self.molar_mass = equation.molar_mass
+        """[kg/mol]."""
+        self.max_temperature = data.max_temperature
+        """[K]."""
+        self.min_temperature = self._solid.lowest_temperature if self._solid else equation.triple_temperature
+        """[K]; below it nothing is computed."""
+
+    # -- states ---------------------------------------------------------------------------------------
+
+    def pressure(self, temperature: float, density: float) -> float:
+        """Absolute pressure [Pa] at a temperature [K] and density [kg/m3]. Raises OutsideValidity."""
+        equation = self._equation
+        if temperature > self.triple_temperature:
+            if temperature < self.critical_temperature:
+                pressure, liquid, vapour = equation.dome(temperature)
+                if vapour <= density <= liquid:
+                    return pressure
+            try:
+                return equation.pressure(temperature, density)
+            except Frozen:
+                return self._melting(temperature, density)
+        if self._beside_solid(temperature, density):
+            return self._dry_ice(temperature).sublimation_pressure(temperature)
+        return equation.pressure(temperature, density)
+
+    def state(self, temperature: float, density: float) -> State:
+        """Everything at a temperature [K] and density [kg/m3]. Raises OutsideValidity."""
+        equation = self._equation
+        if not temperature > self.triple_temperature:
+            if self._beside_solid(temperature, density):
+                return self._solid_state(temperature, density)
+        elif temperature < self.critical_temperature:
+            saturation = equation.saturation(temperature)
+            if saturation.vapour_density <= density <= saturation.liquid_density:
+                return liquid_and_vapour(temperature, density, saturation)
+        try:
+            pressure, energy = equation.pressure_energy(temperature, density)
+        except Frozen:
+            self._melting(temperature, density)
+            return solid_and_liquid(temperature, density, self._dry_ice(temperature), equation)
+        return self._single_state(temperature, density, pressure, energy)
+
+    def saturation(self, temperature: float) -> Saturation:
+        """Liquid beside vapour at a temperature [K] from triple to critical. Raises OutsideValidity."""
+        return self._equation.saturation(temperature)
+
+    def saturation_slopes(self, temperature: float) -> SaturationSlopes:
+        """Slopes along the saturation curve at a temperature [K] below critical. Raises OutsideValidity."""
+        return self._equation.saturation_slopes(temperature)
+
+    # -- slopes ---------------------------------------------------------------------------------------
+
+    def dp_dT(self, temperature: float, density: float) -> float:
+        """Slope [Pa/K] of pressure with temperature at fixed density; temperature [K], density [kg/m3].
+
+        With two phases, that of the curve they lie on; at the triple point the steeper of those that meet
+        there. Raises OutsideValidity.
+        """
+        region = self.region(temperature, density)
+        if region is Region.LIQUID_VAPOUR:
+            return self._equation.saturation(temperature).dpdT
+        if region is Region.SOLID_VAPOUR:
+            return self._dry_ice(temperature).sublimation_slope(temperature)
+        if region is Region.SOLID_LIQUID:
+            return self._dry_ice(temperature).melting_slope(temperature)
+        if region is Region.THREE_PHASE:
+            ice = self._dry_ice(temperature)
+            steeper = ice.sublimation_slope(temperature)
+            beyond = density > self._equation.triple_liquid_density
+            return max(steeper, ice.melting_slope(temperature)) if beyond else steeper
+        return self._equation.slopes(temperature, density)[0]
+
+    def dp_ddensity(self, temperature: float, density: float) -> float:
+        """Slope [Pa/(kg/m3)] of pressure with density at fixed temperature; temperature [K], density [kg/m3].
+
+        Zero where two or three phases are together. Raises OutsideValidity.
+        """
+        if self.region(temperature, density) in _SEVERAL:
+            return 0.0
+        return self._equation.slopes(temperature, density)[1]
+
+    def heat_capacity(self, temperature: float, density: float) -> float:
+        """Heat capacity of one phase or of liquid beside vapour at fixed volume [J/kg/K].
+
+        temperature [K], density [kg/m3]. Beside vapour it is taken from both saturated phases and how they
+        share the volume; the equation's own figure means nothing there. With solid, and where the models
+        do not reach: OutsideValidity.
+        """
+        region = self.region(temperature, density)
+        if region is Region.LIQUID_VAPOUR:
+            both = self._equation.saturation(temperature)
+            slopes = self._equation.saturation_slopes(temperature)
+            liquid, vapour = 1.0 / both.liquid_density, 1.0 / both.vapour_density
+            liquid_slope = -slopes.liquid_density * liquid * liquid
+            vapour_slope = -slopes.vapour_density * vapour * vapour
+            share = (1.0 / density - liquid) / (vapour - liquid)
+            share_slope = -(liquid_slope + share * (vapour_slope - liquid_slope)) / (vapour - liquid)
+            return (
+                slopes.liquid_energy
+                + share * (slopes.vapour_energy - slopes.liquid_energy)
+                + (both.vapour_energy - both.liquid_energy) * share_slope
+            )
+        if region in _SEVERAL:
+            raise OutsideValidity(f"no heat capacity of {region} at {temperature:.6g} K: use energies")
+        return self._equation.slopes(temperature, density)[2]
+
+    def pressure_uncertainty(self, temperature: float, density: float) -> float:
+        """Bound [Pa] on the equation's own error at a temperature [K] and density [kg/m3].
+
+        Beside vapour that of the saturation or sublimation pressure. In one phase that of the density, times
+        the slope; from 5 % below critical density up, the dense figure; never less than the saturation
+        pressure's share. Solid beside liquid: 1.5 % of the melting pressure (Span and Wagner 1996).
+        Raises OutsideValidity.
+        """
+        region = self.region(temperature, density)
+        if region is Region.LIQUID_VAPOUR:
+            return self._data.saturation_uncertainty * self.pressure(temperature, density)
+        if region in (Region.SOLID_VAPOUR, Region.THREE_PHASE):
+            return self._dry_ice(temperature).sublimation_uncertainty(temperature)
+        if region is Region.SOLID_LIQUID:
+            return 0.015 * self.pressure(temperature, density)
+        dense = density > (1.0 - CRITICAL_BAND) * self.critical_density
+        share = self._data.dense_uncertainty if dense else self._data.thin_uncertainty
+        by_density = share * density * abs(self._equation.slopes(temperature, density)[1])
+        return max(by_density, self._data.saturation_uncertainty * self.pressure(temperature, density))
+
+    # -- landmarks ------------------------------------------------------------------------------------
+
+    def region(self, temperature: float, density: float) -> Region:
+        """Which phases are there at a temperature [K] and density [kg/m3]. Raises OutsideValidity."""
+        equation = self._equation
+        if not temperature > self.triple_temperature:
+            if self._beside_solid(temperature, density):
+                return Region.THREE_PHASE if temperature == self.triple_temperature else Region.SOLID_VAPOUR
+        elif temperature < self.critical_temperature:
+            _, liquid, vapour = equation.dome(temperature)
+            if vapour <= density <= liquid:
+                return Region.LIQUID_VAPOUR
+        try:
+            pressure = equation.pressure(temperature, density)
+        except Frozen:
+            self._melting(temperature, density)
+            return Region.SOLID_LIQUID
+        return self._single_region(temperature, density, pressure)
+
+    def is_critical(self, density: float) -> bool:
+        """Whether a charge of that density [kg/m3] passes near enough to the critical point."""
+        return abs(density / self.critical_density - 1.0) <= CRITICAL_BAND
+
+    def liquid_full_temperature(self, density: float) -> float | None:
+        """Temperature [K] at which liquid of a charge of that density [kg/m3] fills the vessel, on warming.
+
+        None where it never does: near critical density (the landmark is critical), thinner, and at densities
+        above that of liquid at the triple point, which are full of solid and liquid once the vapour goes.
+        """
+        if density <= self.critical_density or self.is_critical(density):
+            return None
+        if not density <= self._equation.triple_liquid_density:
+            return None
+        span = self.triple_temperature, self.critical_temperature
+        return bracketed_root(lambda t: self._equation.dome(t)[1] - density, *span, 1e-6)
+
+    def dry_temperature(self, density: float) -> float | None:
+        """Temperature [K] at which the last liquid of a charge has gone on warming, or the last solid.
+
+        density [kg/m3]; solid where it is too thin for liquid.
+        None near critical density and denser, and where it lies below the models' range.
+        """
+        if not 0.0 < density < self.critical_density or self.is_critical(density):
+            return None
+        if density >= self._equation.triple_vapour_density:
+            span = self.triple_temperature, self.critical_temperature
+            return bracketed_root(lambda t: self._equation.dome(t)[2] - density, *span, 1e-6)
+        if self._solid is None or self._frost_density(self.min_temperature) > density:
+            return None
+        return bracketed_root(
+            lambda t: self._frost_density(t) - density, self.min_temperature, self.triple_temperature, 1e-6
+        )
+
+    def landmarks(self, density: float) -> Landmarks:
+        """All landmarks of a charge of that density [kg/m3]."""
+        thick = density > self._equation.triple_vapour_density
+        solid = self._solid.density(self.triple_temperature) if self._solid else 0.0
+        return Landmarks(
+            triple=self.triple_temperature if thick and density < solid else None,
+            liquid_full=self.liquid_full_temperature(density),
+            dry=self.dry_temperature(density),
+            critical=self.critical_temperature if self.is_critical(density) else None,
+        )
+
+    def plateau(self, density: float) -> tuple[float, float] | None:
+        """Internal energies [J/kg] at which melting begins and ends for a charge of that density [kg/m3].
+
+        Between them temperature and pressure stand at the triple point. None for a charge too thin for
+        liquid.
+        """
+        if self._solid is None or density <= self._equation.triple_vapour_density:
+            return None
+        triple = self.triple_temperature
+        begin = solid_and_vapour(triple, density, self._solid, self._equation).internal_energy
+        both = self._equation.saturation(triple)
+        if density <= both.liquid_density:
+            end = liquid_and_vapour(triple, density, both).internal_energy
+        else:
+            end = solid_and_liquid(triple, density, self._solid, self._equation).internal_energy
+        return None if begin is None or end is None else (begin, end)
+
+    # -- with solid -----------------------------------------------------------------------------------
+
+    def _dry_ice(self, temperature: float) -> DryIce:
+        if self._solid is None:
+            raise OutsideValidity(f"{temperature:.6g} K: no solid {self.name} is modelled")
+        return self._solid
+
+    def _beside_solid(self, temperature: float, density: float) -> bool:
+        """At or below the triple point: solid with vapour (True) or vapour alone (False)."""
+        ice = self._dry_ice(temperature)
+        pressure = ice.sublimation_pressure(temperature)
+        if not 0.0 < density <= ice.density(temperature):
+            raise OutsideValidity(
+                f"no state at {temperature:.6g} K and {density:.6g} kg/m3: compressed solid, or none"
+            )
+        # Far from the curve the ideal gas decides: real vapour on the curve is at most 1.09 times as dense.
+        ideal = pressure * self.molar_mass / (self._equation.gas_constant * temperature)
+        return density > 1.2 * ideal or density > self._frost_density(temperature)
+
+    def _frost_density(self, temperature: float) -> float:
+        """Density [kg/m3] of vapour over the solid at a temperature [K]."""
+        pressure = self._dry_ice(temperature).sublimation_pressure(temperature)
+        return self._equation.cold_vapour(temperature, pressure)[0]
+
+    def _melting(self, temperature: float, density: float) -> float:
+        ice = self._dry_ice(temperature)
+        pressure = ice.melting_pressure(temperature)
+        if density > ice.density(temperature) or pressure > self._data.max_pressure:
+            raise OutsideValidity(f"{density:.6g} kg/m3 at {temperature:.6g} K: compressed solid")
+        return pressure
+
+    def _solid_state(self, temperature: float, density: float) -> State:
+        ice = self._dry_ice(temperature)
+        if temperature < self.triple_temperature:
+            return solid_and_vapour(temperature, density, ice, self._equation)
+        pressure = ice.sublimation_pressure(temperature)
+        return State(temperature, density, pressure, Region.THREE_PHASE, None, None, None, None, None, None)
+
+    # -- one phase ------------------------------------------------------------------------------------
+
+    def _single_region(self, temperature: float, density: float, pressure: float) -> Region:
+        if temperature < self.critical_temperature:
+            return Region.LIQUID if density > self.critical_density else Region.VAPOUR
+        return Region.SUPERCRITICAL if pressure >= self.critical_pressure else Region.GAS
+
+    def _single_state(self, temperature: float, density: float, pressure: float, energy: float) -> State:
+        region = self._single_region(temperature, density, pressure)
+        solid, liquid, vapour = _ALONE.get(region, (None, None, None))
+        return State(temperature, density, pressure, region, solid, liquid, vapour, None, None, energy)
+
+
+_SEVERAL = (Region.LIQUID_VAPOUR, Region.SOLID_VAPOUR, Region.SOLID_LIQUID, Region.THREE_PHASE)
+_ALONE = {Region.LIQUID: (0.0, 1.0, 0.0), Region.VAPOUR: (0.0, 0.0, 1.0)}
+
+
+def substance(name: str) -> Substance:
+    """The substance of that name or alias; the same object each time.
+
+    Raises InputUnusable, naming the known fluids.
+    """
+    return _cached(find(name).name)
+
+
+@cache
+def _cached(canonical: str) -> Substance:
+    return Substance(find(canonical))
+
+
+__all__ = [
+    "CRITICAL_BAND",
+    "Landmarks",
+    "Region",
+    "Saturation",
+    "State",
+    "Substance",
+    "substance",
+]

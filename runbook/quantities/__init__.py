@@ -8,15 +8,24 @@ need pydantic and a run does not.
 from runbook.quantities.atmosphere import Barometer, barometer, standard_atmosphere
 from runbook.quantities.dimension import Dimension
 from runbook.quantities.lookup import EXAMPLES, unit
-from runbook.quantities.parse import parse, parse_barometer, parse_level, unit_in
-from runbook.quantities.say import UNKNOWN, pressure_to_unit, say, say_level, to_unit
+from runbook.quantities.single import parse, parse_barometer, parse_level, unit_in
 from runbook.quantities.spans import parse_bounded, parse_bounded_level, parse_level_range, parse_range
 from runbook.quantities.table import UNITS, Unit, symbols
 from runbook.quantities.typed import Typed, reading_from_typed
-from runbook.quantities.values import Bounded, BoundedLevel, Level, LevelRange, Range
+from runbook.quantities.values import (
+    NOT_KNOWN,
+    Bounded,
+    BoundedLevel,
+    Level,
+    LevelRange,
+    NotKnown,
+    Range,
+)
+from runbook.quantities.wording import UNKNOWN, pressure_to_unit, say, say_level, to_unit
 
 __all__ = [
     "EXAMPLES",
+    "NOT_KNOWN",
     "UNITS",
     "UNKNOWN",
     "Barometer",
@@ -25,6 +34,7 @@ __all__ = [
     "Dimension",
     "Level",
     "LevelRange",
+    "NotKnown",
     "Range",
     "Typed",
     "Unit",

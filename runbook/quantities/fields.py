@@ -1,7 +1,7 @@
 """The field types of the file models: what each takes is its name, what it yields its static type.
 
-`...OrUnknown` also takes the words `not known` and then yields NOT_KNOWN. A field of a physical amount refuses
-a box that reaches below nothing; a temperature and a height above sea level have signs.
+`...OrUnknown` also takes the words `not known` and then yields NOT_KNOWN. A field of a physical amount
+refuses a box that reaches below nothing; a temperature and a height above sea level have signs.
 """
 
 from __future__ import annotations
@@ -11,10 +11,10 @@ from typing import Annotated
 
 from runbook.quantities.dimension import Dimension as D
 from runbook.quantities.number import refuse
-from runbook.quantities.parse import parse, parse_barometer, parse_level
+from runbook.quantities.single import parse, parse_barometer, parse_level
 from runbook.quantities.spans import parse_bounded, parse_bounded_level, parse_level_range, parse_range
-from runbook.quantities.values import Bounded, BoundedLevel, Level, LevelRange, Range
-from runbook.quantities.written import Bare, NotKnown, Written, read_count, read_date, read_number
+from runbook.quantities.values import Bounded, BoundedLevel, Level, LevelRange, NotKnown, Range
+from runbook.quantities.written import Bare, Written, read_count, read_date, read_number
 
 
 def _amount(dimension: D, example: str, unknown: bool = False) -> Written:

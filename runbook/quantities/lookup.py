@@ -7,7 +7,7 @@ from __future__ import annotations
 
 import difflib
 import re
-from typing import Final
+from typing import Final, NoReturn
 
 from runbook.quantities.dimension import Dimension
 from runbook.quantities.number import refuse
@@ -54,7 +54,7 @@ def unit(symbol: str) -> Unit:
     try:
         return UNITS[symbol]
     except KeyError:
-        return _unknown(symbol, symbol, None)
+        _unknown(symbol, symbol, None)
 
 
 def find(spelling: str, dimension: Dimension, text: str, number: str) -> Unit:
@@ -75,13 +75,16 @@ def find(spelling: str, dimension: Dimension, text: str, number: str) -> Unit:
             "has no unit",
             f"write for example {number} {names[0]} ({dimension.value} is in {_or(names)})",
         )
-    found = UNITS.get(spelling) or _unknown(spelling, text, dimension)
+    found = UNITS.get(spelling)
+    # '1' is a unit to say a ratio in; after a written number it is a second number.
+    if found is None or spelling == "1":
+        _unknown(spelling, text, dimension)
     if not found.serves(dimension):
         _refuse_dimension(found, dimension, text, number)
     return found
 
 
-def _refuse_dimension(found: Unit, wanted: Dimension, text: str, number: str) -> None:
+def _refuse_dimension(found: Unit, wanted: Dimension, text: str, number: str) -> NoReturn:
     if wanted is Dimension.PRESSURE and found.dimension is Dimension.PRESSURE_DIFFERENCE:
         refuse(text, "does not say gauge or absolute", f"say gauge or absolute: {_levels(found)}")
     wrong = f"is {found.dimension.named} where {wanted.named} is wanted"
@@ -98,9 +101,9 @@ def _levels(bare: Unit) -> str:
     return f"{bare.symbol}(g) or {bare.symbol}(a)"
 
 
-def _unknown(spelling: str, text: str, dimension: Dimension | None) -> Unit:
+def _unknown(spelling: str, text: str, dimension: Dimension | None) -> NoReturn:
     """Refuse an unknown spelling with the nearest good one."""
-    if re.search(r"[0-9](?![)]?$)", spelling) and re.search(r"(^|\s|[-–—])[0-9]", spelling):
+    if re.search(r"(^|\s|[-–—+])[0-9]", spelling):
         refuse(
             text, "holds more than one number", "write one number and its unit; a range is written 'A to B'"
         )

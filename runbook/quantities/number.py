@@ -21,8 +21,10 @@ _LONGEST: Final = 80
 
 def refuse(text: str, wrong: str, mend: str) -> NoReturn:
     """Raise QuantityError for a text, clipped and with nothing in it that would move a terminal's cursor."""
-    clean = "".join(c if c.isprintable() else "\ufffd" for c in text[: _LONGEST + 1])
-    raise QuantityError(clean if len(text) <= _LONGEST else clean[:_LONGEST] + "…", wrong, mend)
+    shown = text if len(text) <= _LONGEST else text[:_LONGEST] + "…"
+    raise QuantityError(
+        *("".join(c if c.isprintable() else "\ufffd" for c in t) for t in (shown, wrong, mend))
+    )
 
 
 def short(text: str) -> None:
@@ -44,6 +46,8 @@ def split(text: str) -> tuple[str, str]:
     number, rest = found.group(), text[found.end() :]
     if rest[:1] == ",":
         _refuse_comma(text)
+    if rest[:1] == ":":
+        refuse(text, "is a time of day", "write a number and its unit, for example 30 min")
     if rest[:1] in ("_", "'", "’", ".") or re.match(r"[xXoObB][0-9A-Fa-f]", rest):
         refuse(text, "is not a plain number", "write digits with one point at most, for example 1170 or 0.15")
     return number, " ".join(rest.split())

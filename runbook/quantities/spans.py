@@ -12,7 +12,7 @@ from typing import Final
 from runbook.quantities.dimension import Dimension
 from runbook.quantities.lookup import EXAMPLES
 from runbook.quantities.number import refuse, short, split
-from runbook.quantities.parse import (
+from runbook.quantities.single import (
     PLUS_MINUS,
     level,
     not_a_level,

@@ -1,7 +1,8 @@
 """What a person in gloves types from a dial.
 
-Kinder than a file in two things only: a bare number takes the unit printed on that dial, and one decimal comma
-is read. Whatever is read is echoed in full before it counts; what can be read two ways is refused with both.
+Kinder than a file in two things only: a bare number takes the unit printed on that dial, and one decimal
+comma is read. Whatever is read is echoed in full before it counts; what can be read two ways is refused with
+both.
 """
 
 from __future__ import annotations
@@ -14,7 +15,7 @@ from runbook.errors import QuantityError
 from runbook.quantities.dimension import Dimension
 from runbook.quantities.lookup import find, unit
 from runbook.quantities.number import comma, refuse, split
-from runbook.quantities.parse import PLUS_MINUS, level, to_si
+from runbook.quantities.single import PLUS_MINUS, level, to_si
 from runbook.quantities.table import Unit
 from runbook.quantities.values import Level
 

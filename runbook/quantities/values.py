@@ -6,7 +6,17 @@ No arithmetic beyond ends and references. Nothing here rounds.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import Literal
+from enum import Enum
+from typing import Final, Literal
+
+
+class NotKnown(Enum):
+    """The one value of `not known`: the file loads, and nothing that needs the number is within limits."""
+
+    NOT_KNOWN = "not known"
+
+
+NOT_KNOWN: Final = NotKnown.NOT_KNOWN
 
 
 @dataclass(frozen=True, slots=True)

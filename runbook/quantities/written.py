@@ -1,7 +1,7 @@
 """How a text becomes a quantity inside a file model.
 
 One validator a field: a pydantic union would report every mistake once for each of its members. Holds no rule
-about quantities; those are in `parse` and `spans`.
+about quantities; those are in `single` and `spans`.
 """
 
 from __future__ import annotations
@@ -10,8 +10,7 @@ import datetime
 import re
 from collections.abc import Callable
 from dataclasses import dataclass
-from enum import Enum
-from typing import Any, Final
+from typing import Any
 
 from pydantic import GetCoreSchemaHandler, GetJsonSchemaHandler
 from pydantic.json_schema import JsonSchemaValue
@@ -19,15 +18,7 @@ from pydantic_core import PydanticCustomError, core_schema
 
 from runbook.errors import QuantityError
 from runbook.quantities.number import refuse, split, value
-
-
-class NotKnown(Enum):
-    """The one value of `not known`: the file loads, and nothing that needs the number is within limits."""
-
-    NOT_KNOWN = "not known"
-
-
-NOT_KNOWN: Final = NotKnown.NOT_KNOWN
+from runbook.quantities.values import NOT_KNOWN, NotKnown
 
 
 @dataclass(frozen=True, slots=True)

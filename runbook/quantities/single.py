@@ -11,7 +11,7 @@ import re
 from typing import Final
 
 from runbook.quantities.dimension import Dimension
-from runbook.quantities.lookup import find
+from runbook.quantities.lookup import find, unit
 from runbook.quantities.number import refuse, split, value
 from runbook.quantities.table import UNITS, Unit
 from runbook.quantities.values import Level
@@ -68,15 +68,12 @@ def number_and_unit(text: str, dimension: Dimension) -> tuple[str, Unit]:
 
 def unit_in(text: str) -> Unit:
     """The unit of the first quantity in a text such as '0 bar(g) to 160 bar(g)'. Raises QuantityError."""
-    first = re.sub(r"^\s*(up to|at least|at most|from)\s+", "", text)
+    first = re.sub(r"^\s*(up to|at least|at most|from)\s+", "", text, flags=re.IGNORECASE)
     first = re.split(r"\s+to\s+", PLUS_MINUS.split(first)[0])[0]
     number, spelling = split(first)
     if not spelling:
         refuse(text, "has no unit", f"write the unit after {number}")
-    try:
-        return UNITS[spelling]
-    except KeyError:
-        return find(spelling, Dimension.PRESSURE if "bar" in spelling else Dimension.MASS, text, number)
+    return unit(spelling)
 
 
 def one_value(text: str) -> None:

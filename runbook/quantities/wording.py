@@ -12,9 +12,9 @@ from typing import Final
 from runbook.quantities.lookup import unit
 from runbook.quantities.number import refuse
 from runbook.quantities.table import Unit
-from runbook.quantities.values import Level
+from runbook.quantities.values import NOT_KNOWN, Level
 
-UNKNOWN: Final = "not known"
+UNKNOWN: Final[str] = NOT_KNOWN.value
 _FIGURES: Final = 4
 """Significant figures where the caller asks for no decimals; whole digits are never rounded away."""
 

@@ -237,18 +237,27 @@ class Substance:
         """Internal energies [J/kg] at which melting begins and ends for a charge of that density [kg/m3].
 
         Between them temperature and pressure stand at the triple point. None for a charge too thin for
-        liquid.
+        liquid, and where no solid is modelled.
         """
         if self._solid is None or density <= self._equation.triple_vapour_density:
             return None
+        begin, end = (state.internal_energy for state in self.plateau_states(density))
+        return None if begin is None or end is None else (begin, end)
+
+    def plateau_states(self, density: float) -> tuple[State, State]:
+        """The last state without liquid and the first without solid, or without vapour, at the triple point.
+
+        density [kg/m3]. Raises OutsideValidity where no solid is modelled.
+        """
         triple = self.triple_temperature
-        begin = solid_and_vapour(triple, density, self._solid, self._equation).internal_energy
+        ice = self._dry_ice(triple)
+        if density > ice.density(triple):
+            raise OutsideValidity(f"{density:.6g} kg/m3 is denser than solid {self.name}")
+        begin = solid_and_vapour(triple, density, ice, self._equation)
         both = self._equation.saturation(triple)
         if density <= both.liquid_density:
-            end = liquid_and_vapour(triple, density, both).internal_energy
-        else:
-            end = solid_and_liquid(triple, density, self._solid, self._equation).internal_energy
-        return None if begin is None or end is None else (begin, end)
+            return begin, liquid_and_vapour(triple, density, both)
+        return begin, solid_and_liquid(triple, density, ice, self._equation)
 
     # -- with solid -----------------------------------------------------------------------------------
 

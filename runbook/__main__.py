@@ -1,1 +1,83 @@
-"""Where the command line begins."""
+"""Where the command line begins: one word picks a command, whose module is imported only then."""
+
+from __future__ import annotations
+
+import importlib
+import os
+import sys
+from collections.abc import Callable
+
+from runbook import __version__
+from runbook.errors import ExitCode, RunbookError
+
+COMMANDS = {
+    "bench": "walk through a run at the vessel",
+    "rehearse": "the same run on a simulated vessel",
+    "check": "prove procedures within their vessels' limits",
+    "state": "the state of a charge at a temperature",
+    "new": "write a commented start of a file",
+    "logbook": "list, show and verify what was recorded",
+    "about": "versions and a self-check",
+}
+"""Command -> what it does. Each is a module of runbook.commands with main(arguments) -> exit code."""
+
+
+def usage() -> str:
+    """The page that --help prints."""
+    rows = "\n".join(f"  runbook {name:<9} {does}" for name, does in COMMANDS.items())
+    return (
+        "usage: runbook [COMMAND] [--help]\n\n"
+        "Guides a live demonstration with a sealed, weighed charge through boiling and its critical point.\n"
+        "Without a command: the list of procedures, loaded vessels and open runs.\n\n"
+        f"{rows}\n\n"
+        "A green check is arithmetic on your own figures. It certifies no vessel and replaces neither relief\n"
+        "device, risk assessment, local codes nor licensed practice."
+    )
+
+
+def main(arguments: list[str] | None = None) -> int:
+    """Run one command and return its exit code; no traceback reaches a user."""
+    given = sys.argv[1:] if arguments is None else arguments
+    try:
+        return _dispatch(given)
+    except RunbookError as error:
+        print(f"runbook: {error}", file=sys.stderr)
+        return int(error.exit_code)
+    except BrokenPipeError:
+        # The reader of our output has gone; nothing more can be said to it.
+        os.dup2(os.open(os.devnull, os.O_WRONLY), 1)
+        return int(ExitCode.GOOD)
+    except KeyboardInterrupt:
+        return int(ExitCode.NOT_GOOD)
+    except OSError as error:
+        print(f"runbook: {error}", file=sys.stderr)
+        return int(ExitCode.FAILED)
+
+
+def _dispatch(given: list[str]) -> int:
+    if not given:
+        return _command("listing")(given)
+    if given[0] in ("-h", "--help"):
+        print(usage())
+        return int(ExitCode.GOOD)
+    if given[0] == "--version":
+        print(__version__)
+        return int(ExitCode.GOOD)
+    if given[0] not in COMMANDS:
+        print(f"runbook: there is no command '{given[0]}'\n\n{usage()}", file=sys.stderr)
+        return int(ExitCode.UNUSABLE)
+    return _command(given[0])(given[1:])
+
+
+def _command(name: str) -> Callable[[list[str]], int]:
+    found: Callable[[list[str]], int] = importlib.import_module(f"runbook.commands.{name}").main
+    return found
+
+
+def run() -> None:
+    """Entry point of the installed script."""
+    sys.exit(main())
+
+
+if __name__ == "__main__":
+    run()

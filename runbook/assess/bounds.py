@@ -1,0 +1,80 @@
+"""Least, best and most charge for this vessel and this procedure, each with its reason."""
+
+from __future__ import annotations
+
+from runbook.answers import ChargeBounds, Margin
+from runbook.assess.ahead import look
+from runbook.assess.boxes import viewed_shape
+from runbook.assess.scene import Scene
+from runbook.assess.walk import Walked, walk
+from runbook.errors import RunbookError
+
+_BELOW_CRITICAL = 0.1
+"""How near to critical the surface must still stand in the window; a cell is no more even than that [K]."""
+_STEP = 1e-5
+"""To which charges are found [kg]."""
+
+
+def charge_bounds(scene: Scene) -> ChargeBounds:
+    """Bounds on the stated mass; the tolerance of the procedure is taken off each."""
+    half = 0.5 * (scene.planned[1] - scene.planned[0])
+    least, least_reason = _least(scene, half)
+    most, most_reason = _most(scene, half)
+    best = scene.substance.critical_density * scene.apparatus.volume.free.value
+    reason = f"critical density in {scene.apparatus.volume.free.value * 1e6:.0f} mL: the surface fades in place"
+    if most is not None and best > most:
+        best, reason = most, "critical density would be more than the most"
+    return ChargeBounds(least, best, most, least_reason, reason, most_reason)
+
+
+def sealing_line(lines: tuple[Walked, ...]) -> int | None:
+    """Index of the first line that closes the last vent; None where none does."""
+    return next((i for i, line in enumerate(lines) if line.seals), None)
+
+
+def first_blocked(scene: Scene, high_kg: float) -> Margin | None:
+    """The margin that refuses a charge of at most high_kg [kg]; None where none does.
+
+    Judged at closing, which commits to all that follows; of a loaded vessel at every line.
+    """
+    lines = walk(scene, (high_kg, high_kg))
+    sealing = sealing_line(lines)
+    indices = [sealing] if sealing is not None else [i for i, one in enumerate(lines) if not one.lets_down]
+    found = [m for i in indices for m in look(scene, lines, i, with_times=False, high_kg=high_kg).margins]
+    blocked = [m for m in found if m.margin is None or m.margin <= 0.0]
+    # Temperatures do not change with the charge: a vessel blocked by them has no most, and check says why.
+    return next((m for m in blocked if m.kind == "pressure"), blocked[0] if blocked else None)
+
+
+def _most(scene: Scene, half: float) -> tuple[float | None, str]:
+    top = scene.brim_full
+    refused = first_blocked(scene, 1e-4)
+    if refused is not None:
+        return None, f"{refused.limit} refuses every charge" + (f": {refused.why}" if refused.why else "")
+    if first_blocked(scene, top) is None:
+        return top - half, "brim-full of dry ice"
+    low, high = 1e-4, top
+    while high - low > _STEP:
+        middle = 0.5 * (low + high)
+        low, high = (middle, high) if first_blocked(scene, middle) is None else (low, middle)
+    refused = first_blocked(scene, high)
+    if refused is None:
+        return low - half, ""
+    at = "" if refused.at is None else f" at {refused.at.temperature_K - 273.15:.1f} degC"
+    return low - half, f"{refused.limit} by {refused.cause}{at}"
+
+
+def _least(scene: Scene, half: float) -> tuple[float | None, str]:
+    """Charge whose surface still stands in the window 0.1 K below critical, in the largest volume [kg]."""
+    fluid = scene.substance
+    window = scene.apparatus.window
+    try:
+        both = fluid.saturation(fluid.critical_temperature - _BELOW_CRITICAL)
+        share = viewed_shape(scene).volume_below(window.low or 0.0)
+    except RunbookError as error:
+        return None, str(error)
+    density = both.vapour_density + share * (both.liquid_density - both.vapour_density)
+    return (
+        density * scene.volume[1] + half,
+        "with less the surface sinks below the window before it fades",
+    )

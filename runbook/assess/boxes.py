@@ -1,0 +1,138 @@
+"""How much is in the vessel, from what has been read.
+
+At closing it is the last reading plus the scale's error, no loss assumed. After closing a height at a known
+temperature, or a weighing of the closed vessel, proves it. The most it can be comes down only when two
+different people's measurements both say so; a contradiction leaves the worse standing.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from runbook.answers import ChargeBox, Observation
+from runbook.apparatus.instruments import permissible_error
+from runbook.assess.scene import Scene
+from runbook.charge.filling import mass_from_height
+from runbook.charge.geometry import Shape, ShapeKind
+from runbook.errors import RunbookError
+
+
+@dataclass(frozen=True, slots=True)
+class Measured:
+    """One measurement of the charge after closing."""
+
+    low_kg: float
+    high_kg: float
+    by: str
+    how: str
+    """'weighing' or 'height'."""
+
+
+def charge_box(
+    scene: Scene, record: ChargeBox | None, observations: tuple[Observation, ...], closed: bool
+) -> ChargeBox | None:
+    """What is known of the charge; None where nothing has been loaded and nothing weighed.
+
+    record: what the charge record said when the run was opened. closed: the vessel is, or may be, closed.
+    """
+    opened_by = _before_closing(scene, record, observations, closed)
+    if opened_by is None:
+        return None
+    measured = _after_closing(scene, observations) if closed else []
+    if not measured:
+        return opened_by
+    return _combined(opened_by, measured)
+
+
+def _before_closing(
+    scene: Scene, record: ChargeBox | None, observations: tuple[Observation, ...], closed: bool
+) -> ChargeBox | None:
+    weighings = [o for o in observations if o.what == "mass" and not o.closed]
+    if weighings:
+        last = max(weighings, key=lambda o: o.sequence)
+        error = _error(scene, last)
+        # Two readings that contradict each other are both handed over: the heavier governs.
+        high = max(o.value + _error(scene, o) for o in weighings) if scene.assume.no_loss else 0.0
+        if not scene.assume.no_loss:
+            high = scene.planned[1]
+        return ChargeBox(max(0.0, last.value - error), high, False, ("weighing",))
+    if record is not None:
+        return ChargeBox(record.low_kg, record.high_kg, False, ("charge record",), record.contradiction)
+    if closed:
+        return ChargeBox(0.0, scene.brim_full, False, ("brim-full",))
+    return None
+
+
+def _after_closing(scene: Scene, observations: tuple[Observation, ...]) -> list[Measured]:
+    found = []
+    for one in observations:
+        if not one.closed:
+            continue
+        if one.what == "mass":
+            error = _error(scene, one)
+            found.append(Measured(one.value - error, one.value + error, one.by, "weighing"))
+        elif one.what == "liquid height":
+            beside = _temperature_beside(one, observations)
+            measured = None if beside is None else _from_height(scene, one, beside)
+            if measured is not None:
+                found.append(measured)
+    return found
+
+
+def _combined(start: ChargeBox, measured: list[Measured]) -> ChargeBox:
+    """The least high of two people's measurements, each person at their worst; else the start's."""
+    fits = [m for m in measured if m.low_kg <= start.high_kg]
+    over = [m for m in measured if m.low_kg > start.high_kg]
+    by = tuple(dict.fromkeys([*start.by, *(m.how for m in measured)]))
+    if over:
+        worst = max(m.high_kg for m in over)
+        said = f"a {over[0].how} by {over[0].by} says more than was weighed in at closing"
+        return ChargeBox(start.low_kg, max(worst, start.high_kg), False, by, said)
+    each: dict[str, float] = {}
+    for one in fits:
+        each[one.by] = max(each.get(one.by, 0.0), one.high_kg)
+    high = start.high_kg
+    if len(each) >= 2:
+        high = min(high, max(each.values()))
+    low = min(min(m.low_kg for m in fits), high)
+    return ChargeBox(max(0.0, low), high, True, by)
+
+
+def _temperature_beside(one: Observation, observations: tuple[Observation, ...]) -> Observation | None:
+    """The temperature read nearest to a height, in the order of the record."""
+    near = [o for o in observations if o.what == "temperature"]
+    return min(near, key=lambda o: abs(o.sequence - one.sequence), default=None)
+
+
+def _from_height(scene: Scene, height: Observation, temperature: Observation) -> Measured | None:
+    free = scene.apparatus.volume.free
+    try:
+        found = mass_from_height(
+            scene.substance,
+            viewed_shape(scene),
+            height.value,
+            temperature.value,
+            height_error=_error(scene, height),
+            temperature_error=_error(scene, temperature),
+            volume_error=free.plus_minus,
+        )
+    except RunbookError:
+        # No meniscus at that temperature, or a height outside the vessel: it proves nothing.
+        return None
+    return Measured(found.least, found.greatest, height.by, "height")
+
+
+def viewed_shape(scene: Scene) -> Shape:
+    """The inside as the window shows it.
+
+    The part outside the heated body (gauge line, valve) is left in: cold and out of view it holds liquid or
+    vapour, which the volume's tolerance has to cover.
+    """
+    apparatus = scene.apparatus
+    return Shape(ShapeKind(apparatus.shape), apparatus.diameter.value, apparatus.volume.free.value)
+
+
+def _error(scene: Scene, one: Observation) -> float:
+    """Permissible error plus half a division, added plainly: a bound [SI]."""
+    instrument = scene.instrument(one.tag)
+    return permissible_error(instrument, one.value) + instrument.division.value / 2.0

@@ -1,0 +1,114 @@
+"""The child process that computes: one JSON line in, one JSON line out, until standard input ends.
+
+It exists because the property library holds the interpreter for two seconds when it is loaded, and because a
+crash in it must not take the screen and the run along. It refuses to print anything but answers on standard
+output, and ends itself when an answer takes too long or the parent is gone.
+"""
+
+from __future__ import annotations
+
+import faulthandler
+import json
+import os
+import platform
+import sys
+from collections.abc import Callable
+from dataclasses import dataclass
+from datetime import date
+from importlib.metadata import PackageNotFoundError, version
+from pathlib import Path
+from typing import Any
+
+from runbook import __version__
+from runbook.answers import Question
+from runbook.answers.request import BindRequest
+from runbook.assess.bind import plan_of
+from runbook.assess.now import answer
+from runbook.assess.scene import Scene, open_scene
+from runbook.assess.walk import Walked, walk
+from runbook.codec import from_plain, to_plain
+from runbook.errors import FileProblems, RunbookError
+from runbook.procedure.reader import read_procedure
+
+LONGEST_S = 60.0
+"""No answer takes this long; then the process is stuck and ends itself [s]."""
+
+
+@dataclass
+class Bound:
+    """The one procedure this child has bound."""
+
+    scene: Scene | None = None
+    lines: tuple[Walked, ...] = ()
+
+
+def versions() -> dict[str, str]:
+    """Of everything an answer depends on."""
+    found = {"runbook": __version__, "python": platform.python_version()}
+    for name in ("CoolProp", "pydantic", "PyYAML"):
+        try:
+            found[name] = version(name)
+        except PackageNotFoundError:
+            found[name] = "not known"
+    return found
+
+
+def reply(bound: Bound, asked: dict[str, Any]) -> dict[str, Any]:
+    """One reply. Every error of this program becomes a reason; anything else ends the process."""
+    key = str(asked.get("key", ""))
+    try:
+        if asked.get("ask") == "bind":
+            request = from_plain(BindRequest, asked["request"])
+            loaded = read_procedure(Path(request.procedure_path))
+            scene = open_scene(loaded, request.barometer_Pa, request.charge)
+            bound.lines = walk(scene)
+            bound.scene = scene
+            plan = plan_of(scene, date.fromisoformat(request.on), bound.lines)
+            return {
+                "key": key,
+                "plan": to_plain(plan),
+                "procedure_text": loaded.procedure_text,
+                "apparatus_text": loaded.apparatus_text,
+            }
+        if asked.get("ask") == "now":
+            if bound.scene is None:
+                return {"key": key, "why": "nothing is bound yet"}
+            question = from_plain(Question, asked["question"])
+            return {"key": key, "answer": to_plain(answer(bound.scene, bound.lines, question))}
+    except FileProblems as problems:
+        return {"key": key, "problems": [to_plain(p) for p in problems.problems]}
+    except RunbookError as error:
+        return {"key": key, "why": str(error)}
+    return {"key": key, "why": f"no such question: {asked.get('ask')}"}
+
+
+def serve(lines_in: Callable[[], str], line_out: Callable[[str], None]) -> None:
+    """Answer until the input ends."""
+    bound = Bound()
+    line_out(json.dumps({"ready": {"versions": versions()}}))
+    while line := lines_in():
+        faulthandler.dump_traceback_later(LONGEST_S, exit=True)
+        asked = json.loads(line)
+        line_out(json.dumps(reply(bound, asked), allow_nan=False))
+        faulthandler.cancel_dump_traceback_later()
+
+
+def main() -> int:
+    """Serve standard input on a private copy of standard output."""
+    answers = os.fdopen(os.dup(1), "w", encoding="utf-8")
+    # Whatever a library prints goes where it cannot be taken for an answer.
+    os.dup2(2, 1)
+
+    def line_out(text: str) -> None:
+        answers.write(text + "\n")
+        answers.flush()
+
+    try:
+        serve(sys.stdin.readline, line_out)
+    except (BrokenPipeError, KeyboardInterrupt):
+        return 0
+    return 0
+
+
+if __name__ == "__main__":
+    sys.exit(main())

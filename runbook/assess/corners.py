@@ -1,0 +1,77 @@
+"""The worst corner of a box of tolerances: proved, not sampled.
+
+At fixed density pressure rises with temperature, at fixed temperature with density, for every region of
+carbon dioxide; an unevenly warm charge never exceeds the pressure of the same charge uniformly at its
+hottest wall. So the worst corner is most charge, least volume, hottest wall: one state, no search.
+(Water below 4 degC would need a split; no fluid with such a range is bound here.)
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from runbook.answers import Corner
+from runbook.assess.scene import Scene
+from runbook.errors import OutsideValidity
+from runbook.fluids.roots import bracketed_root
+
+
+@dataclass(frozen=True, slots=True)
+class Worst:
+    """One bound and where it stands."""
+
+    value: float | None
+    """[Pa]; None: the models do not reach there."""
+    uncertainty: float
+    """Of the equation, already in value [Pa]."""
+    at: Corner
+    why: str = ""
+    """Where unknown: what is missing."""
+
+
+def highest_pressure(scene: Scene, high_kg: float, temperature: float) -> Worst:
+    """Highest pressure of a charge of at most high_kg [kg] whose hottest wall is at temperature [K].
+
+    Air and equation uncertainty included; instrument uncertainty is the caller's. Cached per scene.
+    """
+    volume = scene.volume[0]
+    density = high_kg / volume
+    at = Corner(high_kg, volume, temperature)
+    if density <= 0.0:
+        return Worst(scene.barometer.high_Pa, 0.0, at)
+    try:
+        pressure, uncertainty = scene.pressures(temperature, density)
+    except OutsideValidity as error:
+        return Worst(None, 0.0, at, str(error))
+    return Worst(pressure + uncertainty, uncertainty, at)
+
+
+def nominal_pressure(scene: Scene, mass: float, temperature: float) -> float:
+    """Pressure [Pa] of a charge [kg] in the stated volume at a temperature [K]: no air, no uncertainty.
+
+    Raises OutsideValidity.
+    """
+    return scene.substance.pressure(temperature, mass / scene.apparatus.volume.free.value)
+
+
+def temperature_at_pressure(scene: Scene, high_kg: float, pressure: float, start: float) -> float | None:
+    """Temperature [K] at which the worst corner of a charge [kg] reaches a pressure [Pa], from start [K] up.
+
+    None where it is past already or is not reached within the models.
+    """
+    top = min(scene.substance.max_temperature, 700.0)
+
+    def excess(temperature: float) -> float:
+        worst = highest_pressure(scene, high_kg, temperature)
+        return float("inf") if worst.value is None else worst.value - pressure
+
+    if excess(start) >= 0.0:
+        return None
+    low, high = start, start
+    while high < top:
+        low, high = high, min(top, high + 16.0)
+        if excess(high) >= 0.0:
+            if excess(high) == float("inf"):
+                return None
+            return bracketed_root(excess, low, high, 1e-3)
+    return None

@@ -1,0 +1,284 @@
+"""One live evaluation: a Question answered. No time is integrated here; a person is waiting with a full hand."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+from runbook.answers import (
+    Agreement,
+    Answer,
+    ChargeBox,
+    Distance,
+    LeftAlone,
+    Margin,
+    Observation,
+    Question,
+)
+from runbook.apparatus.spaces import isolated
+from runbook.assess.agreement import Computed, agreement, computed_pressure, reading_U
+from runbook.assess.ahead import look, standing_valves
+from runbook.assess.boxes import charge_box
+from runbook.assess.corners import Worst, temperature_at_pressure
+from runbook.assess.futures import CONNECTED, left_alone
+from runbook.assess.limits import (
+    Extremes,
+    closed_extremes,
+    margins,
+    open_extremes,
+    with_rate,
+    worst_of,
+)
+from runbook.assess.phases import phases
+from runbook.assess.scene import Scene
+from runbook.assess.sights import computed as computed_sights
+from runbook.assess.sights import liquid_height
+from runbook.assess.walk import VesselState, Walked, hottest_of, start_state
+from runbook.procedure.model import WarmTo
+
+
+@dataclass(frozen=True, slots=True)
+class Readings:
+    """The readings of a question that the state of the vessel rests on."""
+
+    temperature: Observation | None
+    """The hottest of those that count."""
+    pressure: Observation | None
+    """The highest of those that count, of a gauge that is joined to the charge."""
+    isolated: tuple[str, ...]
+    """Gauges that were read but are isolated as the valves stand, or may be."""
+
+
+def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
+    """Everything the interlock leans on. Raises OutsideValidity nowhere: unknown is part of the answer."""
+    box = charge_box(scene, question.charge, question.observations, question.closed != "open")
+    state = _state(scene, lines, question, box)
+    readings = _readings(scene, question)
+    rate = worst_rate(scene, state, lines[question.line] if question.line >= 0 else None)
+    wall = _wall(scene, state, readings.temperature, rate)
+    state = replace(state, hot=wall[1], cold=wall[0])
+    reach = _reach(scene, state, readings)
+    computed = None
+    if box is not None and state.closed and readings.temperature is not None:
+        computed = computed_pressure(scene, box, readings.temperature, rate)
+    distance = _distance(scene, state, reach, rate)
+    found_now = _now(scene, reach, state, distance, readings)
+    ahead = _ahead(scene, lines, question, box)
+    alone, _ = left_alone(scene, state, with_times=False)
+    proved = _proved(scene, lines, question, box, state)
+    left = _pressure_left(ahead)
+    verdict = agreement(scene, computed, box, readings.pressure, left)
+    return _assemble(
+        scene,
+        question,
+        state,
+        box,
+        reach,
+        computed,
+        verdict,
+        distance,
+        found_now,
+        ahead,
+        alone,
+        proved,
+        readings,
+    )
+
+
+def _assemble(
+    scene: Scene,
+    question: Question,
+    state: VesselState,
+    box: ChargeBox | None,
+    reach: Extremes,
+    computed: Computed | None,
+    verdict: Agreement,
+    distance: Distance,
+    found_now: tuple[Margin, ...],
+    ahead: tuple[Margin, ...],
+    alone: LeftAlone,
+    proved: bool,
+    readings: Readings,
+) -> Answer:
+    middle = None if box is None or not state.closed else 0.5 * (box.low_kg + box.high_kg)
+    read = readings.temperature.value if readings.temperature else None
+    sights = ()
+    height = None
+    if middle is not None and read is not None:
+        sights = computed_sights(scene, middle, read, True if state.source == "on" else None)
+        height = liquid_height(scene, middle, read)
+    in_phases = phases(
+        scene,
+        loaded=state.loaded,
+        closed=state.closed,
+        letting_down=state.letting_down,
+        high_kg=state.high_kg,
+        proved=bool(box and box.proved),
+        hot=state.hot,
+        cold=state.cold,
+        pressure=_highest_read(scene, readings),
+    )
+    return Answer(
+        key=question.key,
+        now=found_now,
+        ahead=ahead,
+        left_alone=alone,
+        agreement=verdict,
+        charge=box,
+        charge_proved=proved,
+        valid=reach.pressure.value is not None,
+        good_for_s=None if distance.seconds is None else max(0.0, 0.5 * distance.seconds),
+        phases=in_phases,
+        pressure=computed.pressure if computed else None,
+        pressure_U=computed.U if computed else None,
+        region=str(computed.region) if computed else None,
+        liquid_height=height,
+        distance=distance,
+        sights=sights,
+    )
+
+
+def _state(scene: Scene, lines: Sequence[Walked], question: Question, box: ChargeBox | None) -> VesselState:
+    """Where the vessel stands by the question, with the walk's bounds for what nobody has read."""
+    planned = lines[question.line].during if question.line >= 0 else start_state(scene)
+    closed = question.closed != "open"
+    loaded = box is not None or planned.loaded
+    low, high = (box.low_kg, box.high_kg) if box else (planned.low_kg, planned.high_kg)
+    return replace(
+        planned,
+        loaded=loaded,
+        closed=closed and loaded,
+        letting_down=loaded and not closed and (planned.letting_down or planned.closed),
+        low_kg=low,
+        high_kg=high,
+        valves=dict(planned.valves) | dict(question.valves),
+        source=question.source,
+    )
+
+
+def _readings(scene: Scene, question: Question) -> Readings:
+    positions = dict(question.valves)
+    walls = [o for o in question.observations if o.what == "temperature"]
+    gauges = [o for o in question.observations if o.what == "pressure"]
+    shut = tuple(o.tag for o in gauges if isolated(scene.apparatus, o.tag, positions))
+    joined = [o for o in gauges if o.tag not in shut]
+    return Readings(
+        max(walls, key=lambda o: (o.value, o.sequence), default=None),
+        max(joined, key=lambda o: (o.value, o.sequence), default=None),
+        shut,
+    )
+
+
+def worst_rate(scene: Scene, state: VesselState, line: Walked | None) -> float:
+    """Worst credible warming [K/s]: the line's own rate or the source's full power, the larger; else the room."""
+    source, body = scene.apparatus.heat_source, scene.apparatus.body
+    if source is not None and state.source in ("on", "do not know"):
+        capacity = body.heat_capacity.low + source.heat_capacity.low
+        return max(source.power.high / capacity, line.rate if line is not None else 0.0)
+    gap = scene.room_hottest - state.cold
+    return max(0.0, gap * body.loss_to_room.high / body.heat_capacity.low) if state.closed else 0.0
+
+
+def _wall(scene: Scene, state: VesselState, read: Observation | None, rate: float) -> tuple[float, float]:
+    """Coldest and hottest the wetted wall can be [K]; without a reading what the walk allows."""
+    if read is None:
+        hot = state.hot
+        if state.source in CONNECTED and scene.apparatus.heat_source is not None:
+            hot = max(hot, scene.room_hottest)
+        return state.cold, hot
+    U = reading_U(scene, read)
+    probe = scene.instrument(read.tag)
+    lag = (probe.lag.high if probe.lag is not None else 0.0) if state.source in ("on", "do not know") else 0.0
+    return read.value - U, read.value + U + lag * rate
+
+
+def _reach(scene: Scene, state: VesselState, readings: Readings) -> Extremes:
+    """Extremes now: the worse of measured and computed, plus U."""
+    if not state.loaded or (not state.closed and not state.letting_down):
+        return open_extremes(scene, state.hot, state.cold)
+    reach = closed_extremes(scene, state.high_kg, state.hot, state.cold)
+    read = readings.pressure
+    if read is None:
+        return reach
+    U = reading_U(scene, read)
+    worst = reach.pressure
+    if state.letting_down:
+        # With the vent open only the gauge says where the pressure is.
+        return replace(reach, pressure=replace(worst, value=read.value + U, uncertainty=U))
+    if worst.value is not None and read.value + U > worst.value:
+        return replace(reach, pressure=Worst(read.value + U, U, worst.at))
+    return reach
+
+
+def _now(
+    scene: Scene, reach: Extremes, state: VesselState, distance: Distance, readings: Readings
+) -> tuple[Margin, ...]:
+    found = worst_of(margins(scene, reach, state.valves, "now"))
+    lasting = []
+    for one in found:
+        is_first = one.kind == "pressure" and one.margin is not None and distance.pressure is not None
+        lasts = distance.seconds if is_first and one.margin <= (distance.pressure or 0.0) + 1.0 else None
+        lasting.append(with_rate(one, lasts))
+    return tuple(lasting)
+
+
+def _distance(scene: Scene, state: VesselState, reach: Extremes, rate: float) -> Distance:
+    """To the lowest pressure limit along the worst corner's own isochore."""
+    worst = reach.pressure.value
+    limits = [m for m in margins(scene, reach, state.valves, "now") if m.kind == "pressure" and m.allowed is not None]
+    if worst is None or not limits:
+        return Distance(None, None, None, rate)
+    ceiling = min(limits, key=lambda m: m.allowed or 0.0).allowed
+    if ceiling is None or not state.closed:
+        return Distance(None if ceiling is None else ceiling - worst, None, None, rate)
+    reached = temperature_at_pressure(scene, state.high_kg, ceiling, state.hot)
+    if worst >= ceiling:
+        return Distance(ceiling - worst, 0.0, 0.0, rate)
+    if reached is None:
+        return Distance(ceiling - worst, None, None, rate)
+    kelvin = reached - state.hot
+    # Heat off in a room that never gets there: the margin lasts for ever.
+    if state.source not in ("on", "do not know") and reached > scene.room_hottest:
+        return Distance(ceiling - worst, kelvin, None, rate)
+    return Distance(ceiling - worst, kelvin, kelvin / rate if rate > 0.0 else None, rate)
+
+
+def _ahead(scene: Scene, lines: Sequence[Walked], question: Question, box: ChargeBox | None) -> tuple[Margin, ...]:
+    if not 0 <= question.to < len(lines):
+        return ()
+    moved = list(lines)
+    moved[question.to] = standing_valves(lines[question.to], dict(question.valves))
+    high = box.high_kg if box is not None else None
+    return look(scene, moved, question.to, with_times=False, high_kg=high).margins
+
+
+def _proved(
+    scene: Scene, lines: Sequence[Walked], question: Question, box: ChargeBox | None, state: VesselState
+) -> bool:
+    """Proved after closing, or so little at most that the step cannot fill the vessel with liquid."""
+    if box is None:
+        return False
+    if box.proved and not box.contradiction:
+        return True
+    if not 0 <= question.to < len(lines) or box.contradiction:
+        return False
+    verb = lines[question.to].verb
+    if not isinstance(verb, WarmTo):
+        return False
+    density = box.high_kg / scene.volume[0]
+    full = scene.substance.liquid_full_temperature(density)
+    if full is None:
+        # At critical density and thinner liquid never fills the vessel; denser than any liquid it always does.
+        return density < scene.substance.critical_density or scene.substance.is_critical(density)
+    return hottest_of(scene, verb) < full
+
+
+def _pressure_left(ahead: tuple[Margin, ...]) -> float | None:
+    left = [m.margin for m in ahead if m.kind == "pressure"]
+    known = [m for m in left if m is not None]
+    return min(known) if left and len(known) == len(left) else None
+
+
+def _highest_read(scene: Scene, readings: Readings) -> float | None:
+    one = readings.pressure
+    return None if one is None else one.value + reading_U(scene, one)

@@ -1,0 +1,220 @@
+"""One line of the plan: a step with its margins, hazards, sights and way back."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from runbook.answers import (
+    Empty,
+    Hold,
+    LineKind,
+    PlanLine,
+    QuickItem,
+    SafetyMessage,
+    Sight,
+    Witness,
+)
+from runbook.assess.ahead import commits, look
+from runbook.assess.hazards import effects
+from runbook.assess.needs import entry_needs, need_of, seal_items
+from runbook.assess.phases import phases
+from runbook.assess.scene import Scene
+from runbook.assess.sights import computed, written
+from runbook.assess.walk import Walked
+from runbook.procedure.model import (
+    DoStep,
+    EmptyStep,
+    HoldStep,
+    LetDownTo,
+    OpenContainment,
+    Parked,
+    QuickStep,
+    Step,
+    WarmTo,
+    WitnessStep,
+)
+
+FORBIDDEN_TO_RELEASE = ("sulfur hexafluoride",)
+"""Fluids whose intentional release the law forbids: Regulation (EU) 2024/573."""
+
+
+def plan_line(scene: Scene, walked: Sequence[Walked], index: int) -> PlanLine:
+    """Line `index` of the walk, bound."""
+    line = walked[index]
+    step = line.step
+    ahead = look(scene, walked, index, with_times=True)
+    line_effects = effects(scene, line, scene.substance.name in FORBIDDEN_TO_RELEASE)
+    sights, if_not = written(step)
+    state = line.after
+    return PlanLine(
+        number=line.number,
+        part=line.part,
+        kind=kind_of(step),
+        text=text_of(step),
+        who=step.who if isinstance(step, DoStep) else None,
+        warning=_warning(step),
+        effects=line_effects,
+        committing=commits(scene, line),
+        leans_on=_leans_on(line),
+        entry_needs=entry_needs(scene, walked, index),
+        needs_charge_proof=line.warms,
+        opens_containment=_opens(scene, line),
+        reads=tuple(need_of(scene, r) for r in step.read) if isinstance(step, DoStep) else (),
+        hold=_hold(scene, step),
+        witness=_witness(step),
+        quick=_quick(scene, line),
+        read_after=tuple(need_of(scene, r) for r in step.read_after) if isinstance(step, QuickStep) else (),
+        empty=_empty(step),
+        valves=_valves(scene, step),
+        source=line.during.source if line.during.source != line.before.source else None,
+        seals=line.seals,
+        ahead=ahead.margins,
+        left_alone=ahead.left_alone,
+        phases=phases(
+            scene,
+            loaded=state.loaded,
+            closed=state.closed,
+            letting_down=state.letting_down,
+            high_kg=state.high_kg,
+            proved=_proved_by(walked, index),
+            hot=state.hot,
+            cold=state.cold,
+            pressure=None,
+        ),
+        way_back=_way_back(scene, line),
+        sights=sights if sights else _computed(scene, line),
+        if_not=if_not,
+        lasts_s=_lasts(line),
+    )
+
+
+def _computed(scene: Scene, line: Walked) -> tuple[Sight, ...]:
+    if not line.after.closed or line.after.cold < scene.substance.triple_temperature:
+        return ()
+    middle = 0.5 * (line.after.low_kg + line.after.high_kg)
+    return computed(scene, middle, line.after.hot, None) if isinstance(line.verb, WarmTo) else ()
+
+
+def kind_of(step: Step | Parked) -> LineKind:
+    """What a step asks of the person before it."""
+    kinds = {
+        HoldStep: LineKind.HOLD,
+        WitnessStep: LineKind.WITNESS,
+        QuickStep: LineKind.QUICK,
+        EmptyStep: LineKind.EMPTY,
+        Parked: LineKind.PARKED,
+    }
+    return kinds.get(type(step), LineKind.DO)
+
+
+def text_of(step: Step | Parked) -> str:
+    """One imperative sentence, the author's own where the author wrote one."""
+    if isinstance(step, DoStep):
+        return step.do
+    if isinstance(step, HoldStep):
+        return f"Stop: {step.hold.signed_by} signs before anything else is done"
+    if isinstance(step, WitnessStep):
+        return f"Call {step.witness.called}"
+    if isinstance(step, QuickStep):
+        return "; ".join(item.do for item in step.quick)
+    if isinstance(step, EmptyStep):
+        return "Show that the vessel is empty, by all four proofs"
+    return f"Leave the vessel at rest: heat {step.heat}, shield {step.shield}, key with {step.key_with}"
+
+
+def _leans_on(line: Walked) -> tuple[str, ...]:
+    if line.warms:
+        return ("temperature", "charge")
+    if line.lets_down:
+        return ("pressure",)
+    return ()
+
+
+def _opens(scene: Scene, line: Walked) -> bool:
+    openings = {o.tag for o in scene.apparatus.openings}
+    opened = {t for t, p in line.during.valves.items() if p == "open" and line.before.valves.get(t) != "open"}
+    was_filled = line.before.closed or line.before.letting_down
+    return isinstance(line.verb, OpenContainment) or (bool(opened & openings) and was_filled)
+
+
+def _proved_by(walked: Sequence[Walked], index: int) -> bool:
+    """A weighing or height after closing stands at or before this line."""
+    for line in walked[: index + 1]:
+        if not line.after.closed:
+            continue
+        step = line.step
+        asked: tuple[object, ...] = ()
+        if isinstance(step, DoStep):
+            asked = step.read
+        elif isinstance(step, QuickStep):
+            asked = step.read_after
+        elif isinstance(step, HoldStep) and step.hold.read is not None:
+            asked = (step.hold.read,)
+        if any(getattr(r, "what", "") in ("mass", "liquid height") for r in asked):
+            return True
+    return False
+
+
+def _warning(step: Step | Parked) -> SafetyMessage | None:
+    if not isinstance(step, DoStep) or step.warning is None:
+        return None
+    w = step.warning
+    return SafetyMessage(w.word, w.hazard, w.could, w.avoid)
+
+
+def _hold(scene: Scene, step: Step | Parked) -> Hold | None:
+    if not isinstance(step, HoldStep):
+        return None
+    read = step.hold.read
+    return Hold(step.hold.signed_by, step.hold.because, None if read is None else need_of(scene, read))
+
+
+def _witness(step: Step | Parked) -> Witness | None:
+    if not isinstance(step, WitnessStep):
+        return None
+    return Witness(step.witness.called, step.witness.because, step.witness.wait.value)
+
+
+def _quick(scene: Scene, line: Walked) -> tuple[QuickItem, ...]:
+    step = line.step
+    if not isinstance(step, QuickStep):
+        return ()
+    sealing = seal_items(scene, line)
+    return tuple(
+        QuickItem(i.do, i.latest.value, i.if_not, tuple(sorted(i.valves.items())), n in sealing)
+        for n, i in enumerate(step.quick)
+    )
+
+
+def _empty(step: Step | Parked) -> Empty | None:
+    if not isinstance(step, EmptyStep):
+        return None
+    e = step.show_empty
+    return Empty(e.low_gauge, e.isolator, e.wall, e.vent)
+
+
+def _valves(scene: Scene, step: Step | Parked) -> tuple[tuple[str, str], ...]:
+    source = scene.apparatus.heat_source
+    if not isinstance(step, DoStep):
+        return ()
+    return tuple(sorted((t, p) for t, p in step.valves.items() if source is None or t != source.tag))
+
+
+def _way_back(scene: Scene, line: Walked) -> str:
+    source = scene.apparatus.heat_source
+    gauge = next((i.tag for i in scene.apparatus.instruments if i.reads == "pressure"), None)
+    then = f" Then read {gauge}." if gauge else ""
+    if line.warms and source is not None:
+        return f"HEAT OFF: switch {source.tag} off." + then
+    if line.lets_down:
+        tag = line.verb.through if isinstance(line.verb, LetDownTo) else "the vent"
+        return f"SHUT {tag} only if the vessel is at rest with it shut; else leave it open and step back." + then
+    return "STOP. Do nothing further in this step." + then
+
+
+def _lasts(line: Walked) -> float | None:
+    if isinstance(line.verb, WarmTo) and line.rate > 0.0:
+        return max(0.0, line.during.hot - line.before.cold) / line.rate
+    if isinstance(line.step, WitnessStep):
+        return line.step.witness.wait.value
+    return None

@@ -1,0 +1,148 @@
+"""Everything physics needs of one procedure in one room on one day, read once from the two files.
+
+Refuses nothing by itself: what is not known stays None and blocks where it is leaned on.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from functools import cached_property
+from typing import Literal
+
+from runbook.answers import ChargeBox
+from runbook.apparatus.model import Apparatus
+from runbook.apparatus.model import Instrument as InstrumentFile
+from runbook.assess.assumptions import ALL, Assumptions
+from runbook.charge.filling import air_pressure
+from runbook.fluids.roots import bracketed_root
+from runbook.fluids.substance import Substance, substance
+from runbook.procedure.model import Procedure
+from runbook.procedure.reader import Loaded
+from runbook.quantities import Barometer, barometer
+
+GAS_CONSTANT = 8.314462618
+"""[J/mol/K], CODATA 2018 (exact)."""
+AIR_OVER_ICE = 1.1
+"""Air left at closing over dry ice, worst case, as a multiple of the vessel full of air at the coldest room:
+computed for dry ice closed at once, 7 to 11 mmol where a full 250 mL holds 10 [1]."""
+
+Position = Literal["open", "shut", "do not know"]
+
+
+@dataclass
+class Scene:
+    """A procedure, its vessel and its room, in numbers. All SI, pressures absolute."""
+
+    loaded: Loaded
+    barometer: Barometer
+    charge: ChargeBox | None
+    """From the vessel's charge record; None: the cell is empty at the start."""
+    assume: Assumptions = ALL
+    substance: Substance = field(init=False)
+    _pressures: dict[tuple[float, float], tuple[float, float]] = field(init=False, default_factory=dict)
+
+    def __post_init__(self) -> None:
+        self.substance = substance(self.procedure.fluid)
+
+    @property
+    def procedure(self) -> Procedure:
+        return self.loaded.procedure
+
+    @property
+    def apparatus(self) -> Apparatus:
+        return self.loaded.apparatus
+
+    @property
+    def volume(self) -> tuple[float, float]:
+        """Least and most free volume [m3]."""
+        free = self.apparatus.volume.free
+        return (free.low, free.high) if self.assume.volume_corner else (free.value, free.value)
+
+    @property
+    def room_hottest(self) -> float:
+        """[K]"""
+        room = self.procedure.room
+        return room.hottest.high if self.assume.hottest_room else room.coldest.low
+
+    @property
+    def room_coldest(self) -> float:
+        """[K]"""
+        return self.procedure.room.coldest.low
+
+    @property
+    def charge_space(self) -> str:
+        """The space that holds the charge: the first one of the file."""
+        return self.apparatus.spaces[0]
+
+    @property
+    def planned(self) -> tuple[float, float]:
+        """Least and most that the procedure means to seal in [kg]; what the record says if it is loaded."""
+        charge = self.procedure.charge
+        mass = None if isinstance(charge, str) else charge.mass
+        if mass is not None:
+            return mass.low, mass.high
+        if self.charge is not None:
+            return self.charge.low_kg, self.charge.high_kg
+        return 0.0, self.brim_full
+
+    @property
+    def brim_full(self) -> float:
+        """Charge of a vessel filled to the brim with tamped dry ice, 1.1 kg/L (common practice) [kg]."""
+        return 1100.0 * self.apparatus.volume.free.high
+
+    @property
+    def moles_of_air(self) -> float:
+        """Most air that can have been closed in, no purge counted [mol]."""
+        if not self.assume.air:
+            return 0.0
+        full = self.barometer.high_Pa * self.volume[1] / (GAS_CONSTANT * self.room_coldest)
+        return AIR_OVER_ICE * full
+
+    @cached_property
+    def sublimes_at(self) -> float:
+        """Temperature of the solid in the open at the lowest barometer [K].
+
+        The coldest wall that dry ice, or a let-down to the room, can give.
+        """
+        low = self.substance.min_temperature
+        top = self.substance.triple_temperature
+        # Any density between vapour and solid lies on the sublimation curve.
+        return bracketed_root(lambda t: self.substance.pressure(t, 500.0) - self.barometer.low_Pa, low, top, 1e-4)
+
+    def pressures(self, temperature: float, density: float) -> tuple[float, float]:
+        """Pressure with trapped air [Pa] and the equation's uncertainty [Pa], kept per scene.
+
+        temperature [K], density [kg/m3]. Raises OutsideValidity.
+        """
+        key = (temperature, density)
+        if key not in self._pressures:
+            pressure = self.substance.pressure(temperature, density)
+            off = self.substance.pressure_uncertainty(temperature, density)
+            air = 0.0
+            if self.moles_of_air > 0.0:
+                air = air_pressure(self.substance, temperature, density, self.moles_of_air, self.volume[0])
+            if len(self._pressures) > 4096:
+                self._pressures.clear()
+            self._pressures[key] = pressure + air, off if self.assume.equation_uncertainty else 0.0
+        return self._pressures[key]
+
+    def instrument(self, tag: str) -> InstrumentFile:
+        """The instrument of that tag; KeyError where the apparatus has none (check finds it first)."""
+        for one in self.apparatus.instruments:
+            if one.tag == tag:
+                return one
+        raise KeyError(tag)
+
+    def wall_probe(self) -> InstrumentFile | None:
+        """The thermometer on the wall; None where there is none."""
+        return next((i for i in self.apparatus.instruments if i.reads == "temperature"), None)
+
+
+def open_scene(loaded: Loaded, reading_Pa: float | None, charge: ChargeBox | None, assume: Assumptions = ALL) -> Scene:
+    """A scene at the barometer read [Pa], else at the room's stated height, else anywhere.
+
+    Raises InputUnusable for a fluid that is not known, OutsideValidity for an impossible barometer.
+    """
+    height = loaded.procedure.room.height
+    box = barometer(reading_Pa, None if height is None else height.value)
+    return Scene(loaded, box, charge, assume)

@@ -73,7 +73,7 @@ def find(spelling: str, dimension: Dimension, text: str, number: str) -> Unit:
         refuse(
             text,
             "has no unit",
-            f"write for example {number} {names[0]} ({dimension.value} is in {_or(names)})",
+            f"write for example {number} {names[0]} ({dimension.named} is in {_or(names)})",
         )
     found = UNITS.get(spelling)
     # '1' is a unit to say a ratio in; after a written number it is a second number.
@@ -107,42 +107,36 @@ def _unknown(spelling: str, text: str, dimension: Dimension | None) -> NoReturn:
         refuse(
             text, "holds more than one number", "write one number and its unit; a range is written 'A to B'"
         )
-    taken = f" ({spelling} alone is {_TAKEN[spelling]})" if spelling in _TAKEN else ""
+    wrong = f"has an unknown unit, '{spelling[:_LONGEST]}'"
     near = _nearest(spelling, dimension)
-    if near is None:
-        names = symbols(dimension) if dimension else ()
-        mend = f"{dimension.value} is in {_or(names)}" if dimension else "see the table of units"
-        refuse(text, f"has an unknown unit, '{spelling[:_LONGEST]}'", mend)
-    refuse(text, f"has an unknown unit, '{spelling}'", f"did you mean {near}?{taken}")
+    if near is not None:
+        taken = f" ({spelling} alone is {_TAKEN[spelling]})" if spelling in _TAKEN else ""
+        refuse(text, wrong, f"did you mean {near}?{taken}")
+    refuse(text, wrong, "" if dimension is None else f"{dimension.named} is in {_or(symbols(dimension))}")
 
 
 def _nearest(spelling: str, dimension: Dimension | None) -> str | None:
-    """What to propose for a spelling: a good unit of the dimension, or else of any."""
+    """What to propose for a spelling: a good unit of the dimension, or of any where none is wanted."""
     if len(spelling) > _LONGEST:
         return None
     word = spelling.casefold()
-    if word in _OTHER_WORDS:
-        return _proposal(UNITS[_OTHER_WORDS[word]], dimension)
     folded: dict[str, list[Unit]] = {}
     for name, known in UNITS.items():
         folded.setdefault(name.casefold(), []).append(known)
-    close = [u for name in difflib.get_close_matches(word, folded, n=8, cutoff=0.6) for u in folded[name]]
-    if dimension is not None:
-        right = [u for u in close if u.serves(dimension)]
-        bare = [
-            u
-            for u in close
-            if dimension is Dimension.PRESSURE and u.dimension is Dimension.PRESSURE_DIFFERENCE
-        ]
-        exact = [u for u in folded.get(word, []) if u in bare]
-        close = exact or right or bare or close
-    return _proposal(close[0], dimension) if close else None
+    close = [UNITS[_OTHER_WORDS[word]]] if word in _OTHER_WORDS else []
+    for name in difflib.get_close_matches(word, folded, n=20, cutoff=0.6):
+        close += folded[name]
+    proposals = (_proposal(u, dimension) for u in close)
+    return next((p for p in proposals if p is not None), None)
 
 
-def _proposal(near: Unit, dimension: Dimension | None) -> str:
+def _proposal(near: Unit, dimension: Dimension | None) -> str | None:
+    """How to propose a unit where this dimension is wanted; None where it cannot be written there."""
+    if dimension is None or near.serves(dimension):
+        return near.symbol
     if dimension is Dimension.PRESSURE and near.dimension is Dimension.PRESSURE_DIFFERENCE:
         return _levels(near)
-    return near.symbol
+    return None
 
 
 def _or(names: tuple[str, ...]) -> str:

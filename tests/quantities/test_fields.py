@@ -99,6 +99,7 @@ def test_not_known() -> None:
         ({"cycles": "500 g"}, "is no count"),
         ({"cycles": True}, "is no number"),
         ({"accuracy": float("nan")}, "is not a number"),
+        ({"accuracy": "1e400"}, "too large to compute with"),
         ({"accuracy": "0.6 %"}, "has a unit: write the bare number"),
         ({"accuracy": -1}, "is negative"),
         ({"room": 1013}, "has no unit: write for example 1013 hPa"),

@@ -2,17 +2,27 @@
 
 from __future__ import annotations
 
+import math
+import subprocess
+import sys
+from collections.abc import Callable
+
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 
 from runbook.errors import QuantityError
 from runbook.quantities import (
     EXAMPLES,
+    UNITS,
     Dimension,
     Level,
     parse,
     parse_barometer,
     parse_bounded,
+    parse_bounded_level,
     parse_level,
+    parse_level_range,
     parse_range,
     unit_in,
 )
@@ -103,6 +113,8 @@ def test_read(text: str, dimension: Dimension, si: float) -> None:
         ("5 sec", D.TIME, "unknown unit", "did you mean s?"),
         ("1 degC/min", D.TEMPERATURE_RATE, "unknown unit", "K/min"),
         ("5 Bar", D.PRESSURE_DIFFERENCE, "unknown unit", "did you mean bar?"),
+        ("2 C", D.TEMPERATURE_DIFFERENCE, "unknown unit", "a temperature difference is in K"),
+        ("5 in²", D.AREA, "unknown unit", "mm2"),
         ("5 blorp", D.MASS, "unknown unit", "g, kg"),
         ("2 degC", D.TEMPERATURE_DIFFERENCE, "is a temperature where", "a temperature difference is in K"),
         ("5 bar(g)", D.PRESSURE_DIFFERENCE, "is a pressure where", "neither gauge nor absolute"),
@@ -246,14 +258,55 @@ def test_unit_in(text: str, symbol: str) -> None:
     assert unit_in(text).symbol == symbol
 
 
+ANY_TEXT = st.one_of(
+    st.text(max_size=40),
+    st.text(alphabet="0123456789.,-+±eE %()/abrgmKkC to", max_size=24),
+    st.builds(
+        "{} {}".format, st.text("0123456789.,-", max_size=6), st.sampled_from(sorted(UNITS)).map(str.swapcase)
+    ),
+)
+
+
+@given(ANY_TEXT, st.sampled_from([d for d in D if d is not D.PRESSURE]))
+def test_any_text_is_read_or_refused(text: str, dimension: Dimension) -> None:
+    """Every function gives a finite value or a QuantityError for any text, and nothing else."""
+    functions: list[Callable[[], object]] = [
+        lambda: parse(text, dimension),
+        lambda: parse_bounded(text, dimension).value,
+        lambda: parse_range(text, dimension).high or 0.0,
+        lambda: parse_level(text).pascal,
+        lambda: parse_bounded_level(text).level.pascal,
+        lambda: parse_level_range(text) and 0.0,
+        lambda: parse_barometer(text),
+        lambda: unit_in(text) and 0.0,
+    ]
+    for function in functions:
+        try:
+            result = function()
+        except QuantityError:
+            continue
+        assert isinstance(result, float)
+        assert math.isfinite(result)
+
+
+def test_reading_units_needs_no_heavy_package() -> None:
+    """The table, the bench's own words and typed readings load without pydantic, numpy or the library."""
+    heavy = "{'pydantic', 'numpy', 'CoolProp', 'textual', 'pint'}"
+    code = f"import runbook.quantities, sys; print(*sorted({heavy} & set(sys.modules)))"
+    done = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True)
+    assert done.stdout.strip() == ""
+
+
 def test_hostile_text_is_clipped_and_cleaned() -> None:
     """A message repeats neither a megabyte nor a control character, and a long text costs no time."""
     with pytest.raises(QuantityError) as caught:
         parse("9" * 1_000_000 + " g", D.MASS)
+    assert "too long" in caught.value.wrong
     assert len(str(caught.value)) < 200
     with pytest.raises(QuantityError) as caught:
         parse("5 \x1b[2Jg", D.MASS)
     assert "\x1b" not in str(caught.value)
     with pytest.raises(QuantityError) as caught:
         parse_range("1 " + " " * 200_000 + "x", D.MASS)
+    assert "too long" in caught.value.wrong
     assert len(str(caught.value)) < 200

@@ -111,7 +111,19 @@ class JournalBroken(JournalError):
 
 
 class JournalDamaged(JournalError):
-    """What is on disk is not what was written; open it read-only."""
+    """What is on disk is not what was written; it can be read up to there, not continued."""
+
+    def __init__(self, line: int, why: str, file: str = "") -> None:
+        self.line = line
+        """From 1; the first line that is not as it was written, or is missing."""
+        self.why = why
+        """What is wrong, as a clause."""
+        self.file = file
+        """The journal; empty where only its bytes are known."""
+        super().__init__(
+            f"{file or 'journal'}:{line}: {why}. Nothing was changed. What stands before can be read, "
+            "but the run cannot be continued in this journal."
+        )
 
 
 class JournalLocked(JournalError):

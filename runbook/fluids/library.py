@@ -175,11 +175,16 @@ class Equation:
         """
         self._update(temperature, density)
         instance = self._instance(temperature)
-        return (
-            instance.first_partial_deriv(cp.iP, cp.iT, cp.iDmass),
-            instance.first_partial_deriv(cp.iP, cp.iDmass, cp.iT),
-            instance.cvmass(),
-        )
+        try:
+            return (
+                instance.first_partial_deriv(cp.iP, cp.iT, cp.iDmass),
+                instance.first_partial_deriv(cp.iP, cp.iDmass, cp.iT),
+                instance.cvmass(),
+            )
+        except (ValueError, RuntimeError) as error:
+            raise OutsideValidity(
+                f"no slopes at {temperature:.6g} K and {density:.6g} kg/m3: {error}"
+            ) from error
 
     def cold_vapour(self, temperature: float, pressure: float) -> tuple[float, float]:
         """Density [kg/m3] and internal energy [J/kg] of vapour at or below the triple point.

@@ -251,7 +251,7 @@ class Substance:
         """
         triple = self.triple_temperature
         ice = self._dry_ice(triple)
-        if density > ice.density(triple):
+        if not density <= ice.density(triple):
             raise OutsideValidity(f"{density:.6g} kg/m3 is denser than solid {self.name}")
         begin = solid_and_vapour(triple, density, ice, self._equation)
         both = self._equation.saturation(triple)

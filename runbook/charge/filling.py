@@ -43,9 +43,7 @@ def liquid_fraction(substance: Substance, temperature: float, density: float) ->
     return substance.state(temperature, density).liquid
 
 
-def air_pressure(
-    substance: Substance, temperature: float, density: float, moles_air: float, volume: float
-) -> float:
+def air_pressure(substance: Substance, temperature: float, density: float, moles_air: float, volume: float) -> float:
     """What trapped air adds to the pressure [Pa].
 
     temperature [K], density [kg/m3] of the charge, moles_air [mol], volume [m3] of the vessel. Air is an
@@ -74,9 +72,7 @@ def pressure_with_air(
     substance: Substance, temperature: float, density: float, moles_air: float, volume: float
 ) -> float:
     """Absolute pressure [Pa] of charge and trapped air together; arguments as air_pressure()."""
-    return substance.pressure(temperature, density) + air_pressure(
-        substance, temperature, density, moles_air, volume
-    )
+    return substance.pressure(temperature, density) + air_pressure(substance, temperature, density, moles_air, volume)
 
 
 def meniscus_end(substance: Substance, density: float) -> float | None:
@@ -107,9 +103,7 @@ def mass_from_height(
     height outside the vessel or a negative bound.
     """
     if not (height_error >= 0.0 and temperature_error >= 0.0 and 0.0 <= volume_error < shape.volume):
-        raise InputUnusable(
-            "an error is a bound of zero or more, and that of the volume less than the volume"
-        )
+        raise InputUnusable("an error is a bound of zero or more, and that of the volume less than the volume")
     shape.volume_below(height)
     heights = [min(shape.full_height, max(0.0, height + sign * height_error)) for sign in (-1.0, 1.0)]
     fractions = [shape.volume_below(h) for h in heights]

@@ -16,7 +16,7 @@ from runbook.errors import InputUnusable, OutsideValidity
 
 _FINE = 0.25
 """Most that a lump may change in one step [K]: an hour's warming is then within about 1 %."""
-_LONGEST = 60.0
+_LONGEST = 30.0
 """Longest step [s]."""
 _SHORTEST = 1e-3
 """Shortest step [s]; the steps are stable at any length, so this only bounds their number."""

@@ -34,9 +34,7 @@ class Isochore:
         """Energies [J/kg] at which melting begins and ends; None for a charge too thin for liquid."""
         rows = _rows(substance, density, self.plateau)
         if len(rows) < 2:
-            raise OutsideValidity(
-                f"no charge of {density:.6g} kg/m3 is modelled: denser than the solid, or none"
-            )
+            raise OutsideValidity(f"no charge of {density:.6g} kg/m3 is modelled: denser than the solid, or none")
         self.temperatures = tuple(row[0] for row in rows)
         """Rising [K]; the triple point stands twice, for the plateau."""
         self.energies = tuple(row[1] for row in rows)
@@ -235,6 +233,4 @@ def _nodes(substance: Substance, density: float) -> list[float]:
         nodes |= {low + (high - low) * k / count for k in range(count + 1)} if count > 0 else set()
     ordered = sorted(node for node in nodes if node <= substance.max_temperature)
     # Two nodes nearer than this would make a slope of rounding errors.
-    return [
-        t for k, t in enumerate(ordered) if k == 0 or t - ordered[k - 1] > 1e-5 or t in (triple, critical)
-    ]
+    return [t for k, t in enumerate(ordered) if k == 0 or t - ordered[k - 1] > 1e-5 or t in (triple, critical)]

@@ -86,9 +86,7 @@ class Equation:
             self.molar_mass: float = fluid.molar_mass()
             self.gas_constant: float = fluid.gas_constant()
         except (ValueError, RuntimeError) as error:
-            raise OutsideValidity(
-                f"the property library has no equation for {library_name}: {error}"
-            ) from error
+            raise OutsideValidity(f"the property library has no equation for {library_name}: {error}") from error
         self.max_temperature = max_temperature
         self.max_pressure = max_pressure
         self.melting_pressure = melting_pressure
@@ -182,9 +180,7 @@ class Equation:
                 instance.cvmass(),
             )
         except (ValueError, RuntimeError) as error:
-            raise OutsideValidity(
-                f"no slopes at {temperature:.6g} K and {density:.6g} kg/m3: {error}"
-            ) from error
+            raise OutsideValidity(f"no slopes at {temperature:.6g} K and {density:.6g} kg/m3: {error}") from error
 
     def cold_vapour(self, temperature: float, pressure: float) -> tuple[float, float]:
         """Density [kg/m3] and internal energy [J/kg] of vapour at or below the triple point.
@@ -240,9 +236,7 @@ class Equation:
             instance.update(cp.DmassT_INPUTS, density, temperature)
             pressure: float = instance.p()
         except (ValueError, RuntimeError) as error:
-            raise OutsideValidity(
-                f"no state at {temperature:.6g} K and {density:.6g} kg/m3: {error}"
-            ) from error
+            raise OutsideValidity(f"no state at {temperature:.6g} K and {density:.6g} kg/m3: {error}") from error
         return pressure
 
     def _update(self, temperature: float, density: float) -> float:
@@ -250,13 +244,10 @@ class Equation:
             raise OutsideValidity(f"no state at {temperature:.6g} K and {density:.6g} kg/m3")
         if not (0.0 < temperature <= self.max_temperature):
             raise OutsideValidity(
-                f"{temperature:.6g} K is outside the equation of state, "
-                f"which ends at {self.max_temperature:.6g} K"
+                f"{temperature:.6g} K is outside the equation of state, which ends at {self.max_temperature:.6g} K"
             )
         if temperature < self.triple_temperature and density > self.triple_vapour_density:
-            raise OutsideValidity(
-                f"below its triple point this is no vapour: {temperature:.6g} K, {density:.6g} kg/m3"
-            )
+            raise OutsideValidity(f"below its triple point this is no vapour: {temperature:.6g} K, {density:.6g} kg/m3")
         pressure = self._raw(temperature, density)
         if density > self.triple_liquid_density:
             if self.melting_pressure is None:

@@ -271,9 +271,7 @@ class Substance:
         ice = self._dry_ice(temperature)
         pressure = ice.sublimation_pressure(temperature)
         if not 0.0 < density <= ice.density(temperature):
-            raise OutsideValidity(
-                f"no state at {temperature:.6g} K and {density:.6g} kg/m3: compressed solid, or none"
-            )
+            raise OutsideValidity(f"no state at {temperature:.6g} K and {density:.6g} kg/m3: compressed solid, or none")
         # Far from the curve the ideal gas decides: real vapour on the curve is at most 1.09 times as dense.
         ideal = pressure * self.molar_mass / (self._equation.gas_constant * temperature)
         return density > 1.2 * ideal or density > self._frost_density(temperature)

@@ -80,7 +80,7 @@ class Journal:
         Raises JournalError where it exists already, the folder is none, or the disk is nearly full.
         """
         try:
-            if head_path(path).exists():
+            if head_path(path).exists() and not path.exists():
                 raise JournalError(f"{head_path(path)} lies there without its journal: look for it, begin another.")
             if posix.free_bytes(path.parent) < LEAST_FREE:
                 raise JournalError(
@@ -123,6 +123,8 @@ class Journal:
                 reading, good = _read_locked(path, descriptor, made)
                 head_descriptor = os.open(head_path(path), posix.REWRITE, 0o644)
                 undo.callback(os.close, head_descriptor)
+                if made:
+                    undo.callback(head_path(path).unlink, missing_ok=True)
                 if reading.torn_bytes:
                     os.ftruncate(descriptor, good)
                 posix.sync(descriptor)

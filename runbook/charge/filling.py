@@ -125,9 +125,8 @@ def _vapour_volume(substance: Substance, temperature: float, density: float, vol
     """Room that the vapour leaves to air [m3]; while solid melts, what the liquid leaves, which is less."""
     state = substance.state(temperature, density)
     if state.region is Region.THREE_PHASE:
-        vapour = substance.plateau_states(density)[1].vapour
-    else:
-        vapour = state.vapour
+        state = substance.plateau_states(density)[1]
+    vapour = state.vapour
     if vapour is None or not vapour > 0.0:
         raise OutsideValidity(f"{density:.6g} kg/m3 at {temperature:.6g} K leaves trapped air no room")
     return vapour * volume

@@ -26,6 +26,10 @@ _COLD_ALLOWANCE = 1e-9
 """Relative; the triple point itself is computed, not refused for rounding [1]."""
 
 
+_THINNEST, _DENSEST = 1e-6, 1e5
+"""Beyond these the library's own arithmetic under- or overflows, and slopes come back as no number [kg/m3]."""
+
+
 class Frozen(OutsideValidity):
     """The fluid would be on the frozen side of its melting curve."""
 
@@ -240,7 +244,7 @@ class Equation:
         return pressure
 
     def _update(self, temperature: float, density: float) -> float:
-        if not (0.0 < density < 1e5 and isfinite(temperature)):
+        if not (_THINNEST <= density < _DENSEST and isfinite(temperature)):
             raise OutsideValidity(f"no state at {temperature:.6g} K and {density:.6g} kg/m3")
         if not (0.0 < temperature <= self.max_temperature):
             raise OutsideValidity(

@@ -12,7 +12,7 @@ from runbook.assess.heat_time import seconds_to_pressure, seconds_to_temperature
 from runbook.assess.limits import Extremes, closed_extremes, margins, open_extremes, worst_of
 from runbook.assess.scene import Scene
 from runbook.assess.walk import VesselState
-from runbook.quantities.fields import NotKnown
+from runbook.quantities import NotKnown
 
 CONNECTED = ("on", "off", "do not know")
 """Source states in which it can be stuck on: plugged in is enough."""

@@ -13,8 +13,7 @@ from runbook.apparatus.ceiling import pressure_limits
 from runbook.apparatus.spaces import joined_spaces
 from runbook.assess.corners import Worst, highest_pressure
 from runbook.assess.scene import Scene
-from runbook.quantities import Range
-from runbook.quantities.fields import NotKnown
+from runbook.quantities import Level, NotKnown, Range
 
 NARROW_SHARE = 0.05
 """Of the limit (of full scale for a dial, of the span for a temperature rating) under which it is narrow [1]."""
@@ -141,8 +140,9 @@ def _temperatures(scene: Scene, reach: Extremes, cause: str) -> list[Margin]:
                 found.append(_upper(device.tag, "temperature", cause, reach.hot, top, 2.0, hot))
     probe = scene.wall_probe()
     if probe is not None:
-        dial = Range(float(probe.dial.low), float(probe.dial.high))
-        found += _between(probe.tag, dial, reach, cause, hot, cold)
+        low, high = probe.dial.low, probe.dial.high
+        if not isinstance(low, Level) and not isinstance(high, Level):
+            found += _between(probe.tag, Range(low, high), reach, cause, hot, cold)
     return found
 
 

@@ -14,6 +14,7 @@ from runbook.answers import (
     Margin,
     Observation,
     Question,
+    Sight,
 )
 from runbook.apparatus.spaces import isolated
 from runbook.assess.agreement import Computed, agreement, computed_pressure, reading_U
@@ -102,7 +103,7 @@ def _assemble(
 ) -> Answer:
     middle = None if box is None or not state.closed else 0.5 * (box.low_kg + box.high_kg)
     read = readings.temperature.value if readings.temperature else None
-    sights = ()
+    sights: tuple[Sight, ...] = ()
     height = None
     if middle is not None and read is not None:
         sights = computed_sights(scene, middle, read, True if state.source == "on" else None)
@@ -216,9 +217,10 @@ def _now(
     found = worst_of(margins(scene, reach, state.valves, "now"))
     lasting = []
     for one in found:
-        is_first = one.kind == "pressure" and one.margin is not None and distance.pressure is not None
-        lasts = distance.seconds if is_first and one.margin <= (distance.pressure or 0.0) + 1.0 else None
-        lasting.append(with_rate(one, lasts))
+        # Only the limit that falls first is timed; the others outlast it.
+        timed = one.kind == "pressure" and one.margin is not None and distance.pressure is not None
+        first = timed and (one.margin or 0.0) <= (distance.pressure or 0.0) + 1.0
+        lasting.append(with_rate(one, distance.seconds if first else None))
     return tuple(lasting)
 
 
@@ -243,13 +245,21 @@ def _distance(scene: Scene, state: VesselState, reach: Extremes, rate: float) ->
     return Distance(ceiling - worst, kelvin, kelvin / rate if rate > 0.0 else None, rate)
 
 
-def _ahead(scene: Scene, lines: Sequence[Walked], question: Question, box: ChargeBox | None) -> tuple[Margin, ...]:
+def _ahead(
+    scene: Scene, lines: Sequence[Walked], question: Question, box: ChargeBox | None
+) -> tuple[Margin, ...]:
+    """Of entering `to`; asked again at every reading, so kept for as long as charge and valves are the same."""
     if not 0 <= question.to < len(lines):
         return ()
-    moved = list(lines)
-    moved[question.to] = standing_valves(lines[question.to], dict(question.valves))
     high = box.high_kg if box is not None else None
-    return look(scene, moved, question.to, with_times=False, high_kg=high).margins
+    key = (question.to, high, question.valves)
+    if key not in scene.looked:
+        moved = list(lines)
+        moved[question.to] = standing_valves(lines[question.to], dict(question.valves))
+        if len(scene.looked) > 256:
+            scene.looked.clear()
+        scene.looked[key] = look(scene, moved, question.to, with_times=False, high_kg=high).margins
+    return scene.looked[key]
 
 
 def _proved(

@@ -9,7 +9,7 @@ from dataclasses import dataclass, field
 from functools import cached_property
 from typing import Literal
 
-from runbook.answers import ChargeBox
+from runbook.answers import ChargeBox, Margin
 from runbook.apparatus.model import Apparatus
 from runbook.apparatus.model import Instrument as InstrumentFile
 from runbook.assess.assumptions import ALL, Assumptions
@@ -39,6 +39,10 @@ class Scene:
     """From the vessel's charge record; None: the cell is empty at the start."""
     assume: Assumptions = ALL
     substance: Substance = field(init=False)
+    looked: dict[tuple[int, float | None, tuple[tuple[str, str], ...]], tuple[Margin, ...]] = field(
+        init=False, default_factory=dict
+    )
+    """Look-aheads by line, most charge [kg] and valve positions."""
     _pressures: dict[tuple[float, float], tuple[float, float]] = field(init=False, default_factory=dict)
 
     def __post_init__(self) -> None:

@@ -105,7 +105,15 @@ def _temperature_beside(one: Observation, observations: tuple[Observation, ...])
 
 
 def _from_height(scene: Scene, height: Observation, temperature: Observation) -> Measured | None:
-    free = scene.apparatus.volume.free
+    key = (height.value, temperature.value)
+    if key not in scene.weighed_by_height:
+        scene.weighed_by_height[key] = _inverted(scene, height, temperature)
+    found = scene.weighed_by_height[key]
+    return None if found is None else Measured(found[0], found[1], height.by, "height")
+
+
+def _inverted(scene: Scene, height: Observation, temperature: Observation) -> tuple[float, float] | None:
+    """Least and most charge [kg] that a height means; None where it proves nothing."""
     try:
         found = mass_from_height(
             scene.substance,
@@ -114,12 +122,12 @@ def _from_height(scene: Scene, height: Observation, temperature: Observation) ->
             temperature.value,
             height_error=_error(scene, height),
             temperature_error=_error(scene, temperature),
-            volume_error=free.plus_minus,
+            volume_error=scene.apparatus.volume.free.plus_minus,
         )
     except RunbookError:
-        # No meniscus at that temperature, or a height outside the vessel: it proves nothing.
+        # No meniscus at that temperature, or a height outside the vessel.
         return None
-    return Measured(found.least, found.greatest, height.by, "height")
+    return found.least, found.greatest
 
 
 def viewed_shape(scene: Scene) -> Shape:

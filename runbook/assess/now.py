@@ -245,9 +245,7 @@ def _distance(scene: Scene, state: VesselState, reach: Extremes, rate: float) ->
     return Distance(ceiling - worst, kelvin, kelvin / rate if rate > 0.0 else None, rate)
 
 
-def _ahead(
-    scene: Scene, lines: Sequence[Walked], question: Question, box: ChargeBox | None
-) -> tuple[Margin, ...]:
+def _ahead(scene: Scene, lines: Sequence[Walked], question: Question, box: ChargeBox | None) -> tuple[Margin, ...]:
     """Of entering `to`; asked again at every reading, so kept for as long as charge and valves are the same."""
     if not 0 <= question.to < len(lines):
         return ()

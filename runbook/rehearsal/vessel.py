@@ -192,7 +192,7 @@ class Simulation:
         specific = _GAS / fluid.molar_mass
         root = sqrt(_GAMMA / (specific * state.temperature))
         if ratio < (2.0 / (_GAMMA + 1.0)) ** (_GAMMA / (_GAMMA - 1.0)):
-            factor = (2.0 / (_GAMMA + 1.0)) ** ((_GAMMA + 1.0) / (2.0 * (_GAMMA - 1.0)))
+            factor: float = (2.0 / (_GAMMA + 1.0)) ** ((_GAMMA + 1.0) / (2.0 * (_GAMMA - 1.0)))
             return _DISCHARGE * area * state.pressure * root * factor
         a, b = ratio ** (2.0 / _GAMMA), ratio ** ((_GAMMA + 1.0) / _GAMMA)
         shape = sqrt(max(0.0, 2.0 / (_GAMMA - 1.0) * (a - b)))

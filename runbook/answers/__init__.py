@@ -5,17 +5,7 @@ with a Question, the other answers with data of this package, and everything her
 as it stands. No logic lives here. All quantities are SI; all pressures are absolute.
 """
 
-from runbook.answers.lines import (
-    Empty,
-    Hold,
-    LineKind,
-    Need,
-    PlanLine,
-    QuickItem,
-    SafetyMessage,
-    Sight,
-    Witness,
-)
+from runbook.answers.lines import Empty, Hold, LineKind, Need, PlanLine, QuickItem, SafetyMessage, Sight, Witness
 from runbook.answers.margins import (
     Agreement,
     ChargeBox,
@@ -31,10 +21,12 @@ from runbook.answers.margins import (
 )
 from runbook.answers.plan import Certificate, ChargeBounds, Finding, Instrument, Plan, PlanPart
 from runbook.answers.question import Answer, Observation, Question, Unanswered
+from runbook.answers.request import BindRequest
 
 __all__ = [
     "Agreement",
     "Answer",
+    "BindRequest",
     "Certificate",
     "ChargeBounds",
     "ChargeBox",

@@ -60,7 +60,13 @@ def reply(bound: Bound, asked: dict[str, Any]) -> dict[str, Any]:
         if asked.get("ask") == "bind":
             request = from_plain(BindRequest, asked["request"])
             loaded = read_procedure(Path(request.procedure_path))
-            scene = open_scene(loaded, request.barometer_Pa, request.charge)
+            scene = open_scene(
+                loaded,
+                request.barometer_Pa,
+                request.charge,
+                height_m=request.height_m,
+                hottest_K=request.room_hottest_K,
+            )
             bound.lines = walk(scene)
             bound.scene = scene
             plan = plan_of(scene, date.fromisoformat(request.on), bound.lines)

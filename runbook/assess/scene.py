@@ -38,6 +38,8 @@ class Scene:
     charge: ChargeBox | None
     """From the vessel's charge record; None: the cell is empty at the start."""
     assume: Assumptions = ALL
+    hottest_K: float | None = None
+    """Hottest the room may become today [K]; None: as the procedure says."""
     substance: Substance = field(init=False)
     looked: dict[tuple[int, float | None, tuple[tuple[str, str], ...]], tuple[Margin, ...]] = field(
         init=False, default_factory=dict
@@ -68,6 +70,8 @@ class Scene:
     def room_hottest(self) -> float:
         """[K]"""
         room = self.procedure.room
+        if self.hottest_K is not None:
+            return self.hottest_K
         return room.hottest.high if self.assume.hottest_room else room.coldest.low
 
     @property
@@ -90,6 +94,11 @@ class Scene:
         if self.charge is not None:
             return self.charge.low_kg, self.charge.high_kg
         return 0.0, self.brim_full
+
+    @property
+    def starts_loaded(self) -> bool:
+        """The procedure is written for a vessel that is loaded when it begins."""
+        return isinstance(self.procedure.charge, str) or self.procedure.charge.loaded_as == "already loaded"
 
     @property
     def brim_full(self) -> float:
@@ -144,11 +153,19 @@ class Scene:
         return next((i for i in self.apparatus.instruments if i.reads == "temperature"), None)
 
 
-def open_scene(loaded: Loaded, reading_Pa: float | None, charge: ChargeBox | None, assume: Assumptions = ALL) -> Scene:
-    """A scene at the barometer read [Pa], else at the room's stated height, else anywhere.
+def open_scene(
+    loaded: Loaded,
+    reading_Pa: float | None,
+    charge: ChargeBox | None,
+    assume: Assumptions = ALL,
+    height_m: float | None = None,
+    hottest_K: float | None = None,
+) -> Scene:
+    """A scene at the barometer read [Pa], else at the room's height, else anywhere.
 
-    Raises InputUnusable for a fluid that is not known, OutsideValidity for an impossible barometer.
+    height_m: above sea level [m]; hottest_K: hottest room [K]; None: as the procedure says. Raises
+    InputUnusable for a fluid that is not known, OutsideValidity for an impossible barometer.
     """
-    height = loaded.procedure.room.height
-    box = barometer(reading_Pa, None if height is None else height.value)
-    return Scene(loaded, box, charge, assume)
+    stated = loaded.procedure.room.height
+    height = height_m if height_m is not None else None if stated is None else stated.value
+    return Scene(loaded, barometer(reading_Pa, height), charge, assume, hottest_K)

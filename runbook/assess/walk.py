@@ -72,13 +72,16 @@ class Walked:
 
 def start_state(scene: Scene) -> VesselState:
     """Before the first line of the procedure."""
-    low, high = (scene.charge.low_kg, scene.charge.high_kg) if scene.charge else (0.0, 0.0)
+    low, high = 0.0, 0.0
+    if scene.starts_loaded:
+        # No record of what is in: brim-full is the worst it can be.
+        low, high = (scene.charge.low_kg, scene.charge.high_kg) if scene.charge else (0.0, scene.brim_full)
     positions = dict(scene.procedure.at_start)
     source = scene.apparatus.heat_source
     state = "none" if source is None else positions.get(source.tag, "do not know")
     valves = {v.tag: positions.get(v.tag, "do not know") for v in scene.apparatus.valves}
     valves |= {o.tag: positions.get(o.tag, "do not know") for o in scene.apparatus.openings}
-    loaded = scene.charge is not None
+    loaded = scene.starts_loaded
     return VesselState(
         loaded=loaded,
         closed=loaded and is_closed(scene, valves),
@@ -107,11 +110,13 @@ def is_closed(scene: Scene, valves: Mapping[str, str]) -> bool:
 
 
 def walk(scene: Scene, box: tuple[float, float] | None = None) -> tuple[Walked, ...]:
-    """Every line in order. box: least and most charge at closing [kg]; None: as planned.
+    """Every line in order. box: least and most charge at closing [kg]; None: what the charge record says of a
+    vessel loaded in an earlier run of this procedure, else as planned.
 
     Raises nothing: an impossible order is the writing rules' business; here it only makes wider boxes.
     """
-    sealed = box or scene.planned
+    record = None if scene.charge is None else (scene.charge.low_kg, scene.charge.high_kg)
+    sealed = box or record or scene.planned
     state = start_state(scene)
     lines: list[Walked] = []
     for index, part in enumerate(scene.procedure.parts):

@@ -24,6 +24,8 @@ _DISCHARGE = 0.84
 """Discharge coefficient of a sharp hole [1]; common practice."""
 _GAMMA = 1.29
 """Heat capacity ratio of carbon dioxide gas [1]."""
+_GAS_CAPACITY = 700.0
+"""Heat capacity of carbon dioxide gas at fixed volume, about [J/kg/K]."""
 _STEP = 1.0
 """Longest step while gas leaves [s]."""
 
@@ -174,8 +176,9 @@ class Simulation:
             solid = state.region is Region.SOLID_VAPOUR
             return replace(vessel, in_the_open=solid, mass=vessel.mass if solid else 0.0)
         gone = min(self.flow(state, controls) * dt, 0.2 * vessel.mass)
-        heat = self.path.from_fluid * (vessel.body_K - state.temperature) * dt
-        heat = min(heat, self.path.body_heat_capacity * abs(vessel.body_K - state.temperature))
+        # Implicit in the charge's own warming: a little gas in a warm body must not overshoot it.
+        coupling = self.path.from_fluid * dt
+        heat = coupling * (vessel.body_K - state.temperature) / (1.0 + coupling / (vessel.mass * _GAS_CAPACITY))
         left = vessel.mass - gone
         total = vessel.mass * vessel.energy + heat - gone * self._leaving(state)
         room = self.path.loss_to_room * (controls.room_K - vessel.body_K) * dt

@@ -8,7 +8,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
-from runbook.answers import Answer, Plan, Unanswered
+from runbook.answers import Answer, BindRequest, Plan, Unanswered
 from runbook.codec import from_plain, to_plain
 
 
@@ -37,6 +37,8 @@ class RunOpened:
     """The part of the day it begins with, from 0."""
     on: str
     """ISO date on which certificates were judged."""
+    request: BindRequest | None = None
+    """What the plan was bound from, so that a later process can bind the same again from the two texts."""
 
 
 @dataclass(frozen=True, slots=True)

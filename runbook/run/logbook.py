@@ -16,6 +16,7 @@ import secrets
 import sys
 from collections.abc import Callable
 from dataclasses import dataclass, field, replace
+from datetime import datetime
 from pathlib import Path
 from typing import Final, TypeVar
 from urllib.parse import quote, unquote
@@ -217,6 +218,8 @@ def _run_file(path: Path, rehearsal: bool) -> tuple[RunFile, tuple[Record, ...]]
 
 
 def _begun(stamp: str) -> str:
-    """The time in a file's name, '20310302T143207Z', as the records write it."""
-    d, t = stamp.rstrip("Z").split("T")
-    return f"{d[:4]}-{d[4:6]}-{d[6:]}T{t[:2]}:{t[2:4]}:{t[4:]}.000Z"
+    """The time in a file's name, '20310302T143207Z', as the records write it; empty where it is none."""
+    try:
+        return utc_text(datetime.fromisoformat(stamp).timestamp())
+    except ValueError:
+        return ""

@@ -13,7 +13,7 @@ from pathlib import Path
 
 import pytest
 
-from runbook.errors import JournalBroken, JournalDamaged, JournalLocked
+from runbook.errors import JournalBroken, JournalDamaged, JournalError, JournalLocked
 from runbook.run import posix
 from runbook.run.clock import FakeClock
 from runbook.run.journal import Journal, read, verify
@@ -320,8 +320,17 @@ def test_a_flipped_bit_is_named_by_its_line(tmp_path: Path) -> None:
 
 
 @posix_only
+def test_a_device_in_place_of_a_journal_is_refused(tmp_path: Path) -> None:
+    """A device is no journal, and one may never end. (Removed: the look at the kind in `posix.read_file`.)"""
+    (tmp_path / "run.jsonl").symlink_to("/dev/null")
+    for attempt in (read, verify, Journal.open):
+        with pytest.raises(JournalError, match=r"run\.jsonl"):
+            attempt(tmp_path / "run.jsonl")
+
+
+@posix_only
 def test_a_pipe_in_place_of_a_journal_does_not_hang(tmp_path: Path) -> None:
-    """What is no file is refused at once. (Removed: the look at the kind of file in `posix.read_file`.)"""
+    """A pipe that nobody writes is refused at once. (Removed: opening without blocking in `posix.read_file`.)"""
     os.mkfifo(tmp_path / "run.jsonl")
     for attempt in ("read", "verify", "Journal.open"):
         done = run(

@@ -148,6 +148,7 @@ def test_scaled_time_stops_and_goes_on() -> None:
     base.advance(100.0)
     assert clock.now() == start
     clock.skip(30.0)
+    base.advance(100.0)
     clock.go_on()
     assert not clock.paused
     base.advance(1.0)

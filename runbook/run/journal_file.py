@@ -113,18 +113,18 @@ class Journal:
     def _settle(cls, path: Path, descriptor: int, *, made: bool) -> tuple[Journal, tuple[Record, ...]]:
         """Lock, read, mend the torn end and bring the head up to date; every descriptor closed on failure."""
         with contextlib.ExitStack() as undo:
+            if made:
+                # Nothing was written yet, and a leftover would be listed as a run. Registered first, hence done
+                # last: Windows removes no open file.
+                undo.callback(path.unlink, missing_ok=True)
+                undo.callback(head_path(path).unlink, missing_ok=True)
             undo.callback(os.close, descriptor)
             try:
                 if not posix.lock(descriptor):
                     raise JournalLocked(f"Somebody else has {path} open: it can be read here, not continued.")
-                if made:
-                    # Nothing was written into it yet; a leftover would be listed as a run.
-                    undo.callback(path.unlink, missing_ok=True)
                 reading, good = _read_locked(path, descriptor, made)
                 head_descriptor = os.open(head_path(path), posix.REWRITE, 0o644)
                 undo.callback(os.close, head_descriptor)
-                if made:
-                    undo.callback(head_path(path).unlink, missing_ok=True)
                 if reading.torn_bytes:
                     os.ftruncate(descriptor, good)
                 posix.sync(descriptor)

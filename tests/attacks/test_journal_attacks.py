@@ -1,6 +1,6 @@
 """What disks, crashes and other people do to a journal while a run goes on.
 
-Each of these was seen failing once without the handling that it is about; the line is named beside it.
+Each of these was seen failing once without the handling that it is about, which is named beside it.
 """
 
 from __future__ import annotations

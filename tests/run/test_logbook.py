@@ -12,6 +12,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from runbook.errors import JournalError
+from runbook.run import posix
 from runbook.run.clock import FakeClock, Moment
 from runbook.run.events import KINDS
 from runbook.run.journal import Journal, Record
@@ -61,6 +62,14 @@ def test_the_name_of_a_run(tmp_path: Path) -> None:
     assert path.suffix == ".jsonl"
     assert set(path.stem[-4:]) <= set(string.hexdigits.lower())
     assert logbook.new_run_path("C-7", START, rehearsal=True).parent == tmp_path / "log" / "rehearsals"
+
+
+def test_new_folders_are_on_the_disk(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    """Each folder made on the way is synced into the one above, or a power cut would lose all beneath it."""
+    synced: list[Path] = []
+    monkeypatch.setattr(posix, "sync_folder", synced.append)
+    Logbook(tmp_path / "a" / "b").new_run_path("C-7", START, rehearsal=False)
+    assert synced == [tmp_path, tmp_path / "a", tmp_path / "a" / "b"]
 
 
 def test_a_new_name_is_never_one_that_exists(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:

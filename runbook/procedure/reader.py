@@ -17,9 +17,10 @@ from runbook.apparatus.consistency import inconsistencies
 from runbook.apparatus.model import Apparatus
 from runbook.errors import FileProblems, Problem
 from runbook.procedure import shelf
-from runbook.procedure.document import LARGEST, UNREADABLE, Document, Place, Route, read_document
+from runbook.procedure.document import UNREADABLE, Document, Place, Route
 from runbook.procedure.model import Procedure
 from runbook.procedure.problems import model_problems, place_of
+from runbook.procedure.yaml_text import LARGEST, read_document
 
 M = TypeVar("M", bound=BaseModel)
 

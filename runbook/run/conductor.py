@@ -16,7 +16,7 @@ from runbook.answers import Answer, Plan, Unanswered
 from runbook.errors import JournalError
 from runbook.run.acts import Act, LeaveTool, MakeSafe, SafeActDone, Tick
 from runbook.run.clock import Clock, Moment
-from runbook.run.decide import Refused, decide
+from runbook.run.decide import decide
 from runbook.run.engine import Engine
 from runbook.run.events import (
     Answered,
@@ -31,6 +31,7 @@ from runbook.run.events import (
 from runbook.run.journal import JournalWriter, Record
 from runbook.run.ledger import Ledger, fold
 from runbook.run.questions import question
+from runbook.run.reasons import Refused
 from runbook.run.standing import Standing, standing
 
 AGAIN_S: Final = 2.0

@@ -1,0 +1,149 @@
+"""The simulated bench of one rehearsal: what hands do to the vessel follows from what the run says was done.
+
+An act of a step is done when its line is entered, a quick act when it is confirmed: the simulated operator does
+what is asked, at once. What happens then, the simulated vessel decides. It knows no margins and no rules.
+"""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+from runbook.answers import Plan
+from runbook.assess.boxes import viewed_shape
+from runbook.assess.futures import hottest_source
+from runbook.assess.heat_time import heat_path
+from runbook.assess.scene import Scene
+from runbook.assess.walk import Walked, valves_of
+from runbook.procedure.model import CoolTo, DoStep, Load, WarmTo
+from runbook.rehearsal.instruments import Dials, Shown
+from runbook.rehearsal.vessel import Controls, Simulation, Vessel
+from runbook.run.clock import Moment
+from runbook.run.ledger import Ledger
+
+_WIDE = 5e-3
+"""Bore of an opening that states none [m]."""
+_LONGEST = 5.0
+"""Longest step between two looks at the instruments [s]."""
+
+
+class World:
+    """Vessel, instruments and room of a rehearsal, moved on with the clock."""
+
+    def __init__(self, scene: Scene, lines: tuple[Walked, ...], plan: Plan, seed: int, now: Moment) -> None:
+        source = scene.apparatus.heat_source
+        limit = None if source is None else hottest_source(scene, source)
+        room = 0.5 * (scene.room_hottest + scene.room_coldest)
+        self._scene, self._lines, self._plan = scene, lines, plan
+        self._simulation = Simulation(scene.substance, scene.apparatus.volume.free.value, heat_path(scene, limit))
+        self.room_K = room
+        """Temperature of the room [K]."""
+        self._dials = Dials(plan.instruments, seed)
+        self._shown = Shown()
+        self._at = now.boot
+        self._line = -1
+        self._low_joined = False
+        self.vessel = Vessel(0.0, 0.0, room, room, False)
+        self.controls = Controls(True, _WIDE, False, room, plan.barometer)
+        self.highest_pressure = plan.barometer
+        """So far, the true one [Pa]."""
+        if plan.charge is not None:
+            self._already_loaded(0.5 * (plan.charge.low_kg + plan.charge.high_kg))
+
+    def follow(self, ledger: Ledger) -> None:
+        """Do what the run says has been done."""
+        line = self._lines[ledger.line] if 0 <= ledger.line < len(self._lines) else None
+        if line is not None and ledger.line != self._line:
+            self._line = ledger.line
+            if isinstance(line.verb, Load):
+                mass = line.verb.load.value
+                self.vessel = self._simulation.loaded(self.vessel, mass, self.controls.barometer)
+        vent_open, bore = self._vent(ledger, line)
+        self.controls = replace(
+            self.controls, vent_open=vent_open, bore=bore, heating=self._heating(ledger, line)
+        )
+
+    def move_to(self, now: Moment) -> None:
+        """Let the time since the last look pass."""
+        left = max(0.0, now.boot - self._at)
+        self._at = now.boot
+        while left > 0.0:
+            # Far from anything that moves fast an hour need not be cut into seconds.
+            step = min(left, _LONGEST if self.controls.vent_open and self.vessel.mass > 0.0 else 30.0)
+            self.vessel = self._simulation.advance(self.vessel, self.controls, step)
+            self._shown = self._dials.follow(self._shown, self.truth(), step)
+            self.highest_pressure = max(self.highest_pressure, self.pressure())
+            left -= step
+        self._shown = self._dials.follow(self._shown, self.truth(), 0.0)
+
+    def pressure(self) -> float:
+        """In the vessel, true, absolute [Pa]."""
+        return self._simulation.pressure(self.vessel, self.controls)
+
+    def temperature(self) -> float:
+        """Of the wetted wall, true [K]."""
+        return self._simulation.wall(self.vessel, self.controls)
+
+    def read(self, tag: str) -> float | None:
+        """What an instrument shows now [SI; pressures absolute]; None where it shows nothing."""
+        return self._dials.read(self._shown, tag)
+
+    def truth(self) -> dict[str, float]:
+        """What each instrument would show if it were perfect [SI; pressures absolute]."""
+        found: dict[str, float] = {}
+        for one in self._plan.instruments:
+            value = self._true(one.tag, one.reads)
+            if value is not None:
+                found[one.tag] = value
+        return found
+
+    def _true(self, tag: str, reads: str) -> float | None:
+        if reads == "temperature":
+            return self.temperature()
+        if reads == "pressure":
+            joined = self._scene.instrument(tag).of == self._scene.charge_space or self._low_joined
+            return self.pressure() if joined else self.controls.barometer
+        if reads == "mass":
+            return self.vessel.mass
+        if reads == "liquid height":
+            return self._height()
+        if reads == "carbon dioxide":
+            room = self._scene.procedure.room.volume.value
+            return 420e-6 + self.vessel.released * 0.5437 / room
+        return None
+
+    def _height(self) -> float | None:
+        state = self._simulation.state(self.vessel)
+        if state is None or state.liquid is None or state.vapour in (None, 0.0):
+            return None
+        return viewed_shape(self._scene).height(state.liquid)
+
+    def _vent(self, ledger: Ledger, line: Walked | None) -> tuple[bool, float]:
+        positions = {tag: said.position for tag, said in ledger.stated.items()}
+        if line is not None and isinstance(line.step, DoStep):
+            positions |= valves_of(line.step)
+        self._low_joined = any(
+            positions.get(v.tag) == "open"
+            for v in self._scene.apparatus.valves
+            if self._scene.charge_space in v.joins and "outside" not in v.joins
+        )
+        open_tags = [t for t in self._plan.outside_valves if positions.get(t) == "open"]
+        bores = {v.tag: (v.bore.value if v.bore is not None else _WIDE) for v in self._scene.apparatus.valves}
+        bore = max((bores.get(t, _WIDE) for t in open_tags), default=0.0)
+        return bool(open_tags), bore
+
+    def _heating(self, ledger: Ledger, line: Walked | None) -> bool | float:
+        if ledger.source != "on" or line is None:
+            return False
+        verb = line.verb
+        if isinstance(verb, WarmTo | CoolTo):
+            if verb.set_to is not None:
+                return verb.set_to.value
+            aim = verb.warm_to if isinstance(verb, WarmTo) else verb.cool_to
+            return self.room_K if isinstance(aim, str) else aim.value
+        return False
+
+    def _already_loaded(self, mass: float) -> None:
+        state = self._scene.substance.state(self.room_K, mass / self._scene.apparatus.volume.free.value)
+        self.vessel = replace(self.vessel, mass=mass, energy=state.internal_energy or 0.0)
+        self.controls = replace(self.controls, vent_open=False, bore=0.0)
+

@@ -57,21 +57,28 @@ def nominal_pressure(scene: Scene, mass: float, temperature: float) -> float:
 def temperature_at_pressure(scene: Scene, high_kg: float, pressure: float, start: float) -> float | None:
     """Temperature [K] at which the worst corner of a charge [kg] reaches a pressure [Pa], from start [K] up.
 
-    None where it is past already or is not reached within the models.
+    None where it is past already or is not reached within the models. Pressure only rises with temperature, so
+    one temperature serves every start; it is kept.
     """
+    key = (high_kg, pressure)
+    if key not in scene.reached:
+        scene.reached[key] = _reaching(scene, high_kg, pressure)
+    found = scene.reached[key]
+    return None if found is None or found <= start else found
+
+
+def _reaching(scene: Scene, high_kg: float, pressure: float) -> float | None:
     top = min(scene.substance.max_temperature, 700.0)
 
     def excess(temperature: float) -> float:
         worst = highest_pressure(scene, high_kg, temperature)
         return float("inf") if worst.value is None else worst.value - pressure
 
-    if excess(start) >= 0.0:
-        return None
-    low, high = start, start
+    low = high = scene.sublimes_at
+    if excess(low) >= 0.0:
+        return low
     while high < top:
         low, high = high, min(top, high + 16.0)
         if excess(high) >= 0.0:
-            if excess(high) == float("inf"):
-                return None
-            return bracketed_root(excess, low, high, 1e-3)
+            return None if excess(high) == float("inf") else bracketed_root(excess, low, high, 1e-3)
     return None

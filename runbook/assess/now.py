@@ -62,8 +62,9 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     computed = None
     if box is not None and state.closed and readings.temperature is not None:
         computed = computed_pressure(scene, box, readings.temperature, rate)
-    distance = _distance(scene, state, reach, rate)
-    found_now = _now(scene, reach, state, distance, readings)
+    standing = worst_of(margins(scene, reach, state.valves, "now"))
+    distance = _distance(scene, state, reach, rate, standing)
+    found_now = _timed(standing, distance)
     ahead = _ahead(scene, lines, question, box)
     alone, _ = left_alone(scene, state, with_times=False)
     proved = _proved(scene, lines, question, box, state)
@@ -211,10 +212,8 @@ def _reach(scene: Scene, state: VesselState, readings: Readings) -> Extremes:
     return reach
 
 
-def _now(
-    scene: Scene, reach: Extremes, state: VesselState, distance: Distance, readings: Readings
-) -> tuple[Margin, ...]:
-    found = worst_of(margins(scene, reach, state.valves, "now"))
+def _timed(found: tuple[Margin, ...], distance: Distance) -> tuple[Margin, ...]:
+    """The same margins, the pressure limit that falls first knowing how long it lasts."""
     lasting = []
     for one in found:
         # Only the limit that falls first is timed; the others outlast it.
@@ -224,10 +223,10 @@ def _now(
     return tuple(lasting)
 
 
-def _distance(scene: Scene, state: VesselState, reach: Extremes, rate: float) -> Distance:
+def _distance(scene: Scene, state: VesselState, reach: Extremes, rate: float, standing: tuple[Margin, ...]) -> Distance:
     """To the lowest pressure limit along the worst corner's own isochore."""
     worst = reach.pressure.value
-    limits = [m for m in margins(scene, reach, state.valves, "now") if m.kind == "pressure" and m.allowed is not None]
+    limits = [m for m in standing if m.kind == "pressure" and m.allowed is not None]
     if worst is None or not limits:
         return Distance(None, None, None, rate)
     ceiling = min(limits, key=lambda m: m.allowed or 0.0).allowed

@@ -156,7 +156,7 @@ def _proved_by(walked: Sequence[Walked], index: int) -> bool:
 
 
 def _warning(step: Step | Parked) -> SafetyMessage | None:
-    if not isinstance(step, DoStep) or step.warning is None:
+    if not isinstance(step, DoStep | QuickStep) or step.warning is None:
         return None
     w = step.warning
     return SafetyMessage(w.word, w.hazard, w.could, w.avoid)

@@ -45,6 +45,8 @@ class Scene:
         init=False, default_factory=dict
     )
     """Look-aheads by line, most charge [kg] and valve positions."""
+    reached: dict[tuple[float, float], float | None] = field(init=False, default_factory=dict)
+    """Temperature [K] at which most charge [kg] reaches a pressure [Pa] at the worst corner."""
     weighed_by_height: dict[tuple[float, float], tuple[float, float] | None] = field(init=False, default_factory=dict)
     """Least and most charge [kg] that a height [m] at a temperature [K] means."""
     _pressures: dict[tuple[float, float], tuple[float, float]] = field(init=False, default_factory=dict)

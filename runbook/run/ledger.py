@@ -15,6 +15,7 @@ from runbook.codec import to_plain
 from runbook.run import events as ev
 from runbook.run.clock import Moment
 from runbook.run.events import Event
+from runbook.run.gate import PROOFS
 from runbook.run.questions import (
     after_gap,
     canonical,
@@ -30,8 +31,6 @@ __all__ = ["Ledger", "fold", "fold_all"]
 
 REMEMBERED: Final = 32
 """Answers kept by key: the facts behind older ones do not come back."""
-PROOFS: Final = ("vent", "wall", "low gauge", "left open")
-"""The four proofs of empty, in their order."""
 
 
 def fold(ledger: Ledger, event: Event, at: Moment) -> Ledger:

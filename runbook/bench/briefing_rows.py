@@ -1,0 +1,118 @@
+"""The briefing as rows: what may be loaded, what holds it, what happens left alone, what is dated. Pure.
+
+The first *outside limits* that somebody meets reads as help: limit, number, corner, and what to mend.
+"""
+
+from __future__ import annotations
+
+from typing import Final
+
+from runbook.answers import BindRequest, Finding, Plan
+from runbook.bench.rows import EMPTY, Row, wrapped
+from runbook.quantities import say, say_level
+
+_INDENT: Final = 22
+
+
+def briefing_rows(plan: Plan, request: BindRequest, width: int) -> list[Row]:
+    """Everything a person is told before the run."""
+    return [
+        EMPTY,
+        *_verdict(plan, width),
+        EMPTY,
+        *_day(plan, request, width),
+        EMPTY,
+        *_numbers(plan, width),
+        EMPTY,
+        *_dated(plan, width),
+        *_bring(plan, width),
+        *_findings(plan.findings, width),
+    ]
+
+
+def _pair(name: str, words: str, width: int, style: str = "plain", key: str = "") -> list[Row]:
+    lines = wrapped(words, width - _INDENT - 1, style) or [EMPTY]
+    first = Row(((f" {key:<2}", "key"), (name.ljust(_INDENT - 3), "dim"), *lines[0].spans))
+    return [first, *(Row(((" " * _INDENT, "plain"), *one.spans)) for one in lines[1:])]
+
+
+def _verdict(plan: Plan, width: int) -> list[Row]:
+    style = {"within limits": "yes", "outside limits": "blocked"}.get(plan.verdict, "not yet")
+    sign = {"within limits": "●", "outside limits": "■"}.get(plan.verdict, "□")
+    words = f"{sign} {plan.verdict.upper()} of the figures in the file, approved by {plan.approved}"
+    return [
+        *wrapped(f" {plan.procedure}", width - 1, "strong"),
+        *_pair("vessel", f"{plan.vessel}, {plan.apparatus}; {plan.fluid}", width),
+        *_pair("checked", words, width, style),
+    ]
+
+
+def _day(plan: Plan, request: BindRequest, width: int) -> list[Row]:
+    part = plan.parts[request.part].name if plan.parts else "all of it"
+    of = f"{request.part + 1} of {len(plan.parts)}"
+    cell = "already closed" if request.cell_closed else "open and empty"
+    bound = f" ± {plan.barometer_bound / 100:.0f} hPa"
+    barometer = f"{plan.barometer / 100:.0f} hPa{bound}, from: {plan.barometer_source}"
+    box = plan.charge
+    rows = [
+        *_pair("begin with", f"{part} ({of})", width, "strong", "P"),
+        *_pair("the cell is", cell, width, "strong", "C"),
+        *_pair("room's pressure", barometer, width, "strong", "B"),
+    ]
+    if box is not None:
+        proved = "proved" if box.proved else "NOT PROVED"
+        words = f"{say(box.low_kg, 'g', 1)} to {say(box.high_kg, 'g', 1)}, {proved}, by {', '.join(box.by)}"
+        rows += _pair("in it", words, width, "plain" if box.proved else "not yet")
+        if box.contradiction:
+            rows += _pair("", box.contradiction, width, "blocked")
+    return rows
+
+
+def _numbers(plan: Plan, width: int) -> list[Row]:
+    bounds = plan.bounds
+    rows = _pair("ceiling", _pressure(plan.ceiling, plan) + (f" by {plan.ceiling_by}" if plan.ceiling_by else ""), width)
+    for name, mass, reason in (
+        ("least charge", bounds.least_kg, bounds.least_reason),
+        ("best charge", bounds.best_kg, bounds.best_reason),
+        ("most charge", bounds.most_kg, bounds.most_reason),
+    ):
+        rows += _pair(name, f"{'none' if mass is None else say(mass, 'g', 1)}  {reason}", width)
+    low, high = plan.planned_kg
+    rows += _pair("planned", f"{say(low, 'g', 1)} to {say(high, 'g', 1)}", width, "strong")
+    restless = [line.number for line in plan.lines if not line.left_alone.at_rest]
+    ends = [f.ends_Pa for line in plan.lines for f in line.left_alone.futures if f.ends_Pa is not None]
+    highest = f"at most {_pressure(max(ends), plan)}" if ends else "not known"
+    rows += _pair("left alone", f"ends {highest}, heat stuck on included", width)
+    words = f"steps {', '.join(restless)}: do not leave the vessel there" if restless else "at rest in every step"
+    return rows + _pair("", words, width, "not yet" if restless else "yes")
+
+
+def _pressure(value: float | None, plan: Plan) -> str:
+    return "not known" if value is None else say_level(value, plan.pressure_unit, plan.barometer, 1)
+
+
+def _dated(plan: Plan, width: int) -> list[Row]:
+    bad = [c for c in plan.certificates if c.state != "valid"]
+    rows = []
+    for one in bad:
+        rows += _pair("certificate", f"{one.tag} {one.what}: {one.state.upper()}, until {one.until}", width, "blocked")
+    good = len(plan.certificates) - len(bad)
+    if good:
+        soonest = min((c.until for c in plan.certificates if c.state == "valid"), default="")
+        rows += _pair("certificates", f"{good} valid, the first until {soonest}", width, "yes")
+    return rows
+
+
+def _bring(plan: Plan, width: int) -> list[Row]:
+    return _pair("bring", ", ".join(plan.bring), width) if plan.bring else []
+
+
+def _findings(findings: tuple[Finding, ...], width: int) -> list[Row]:
+    rows: list[Row] = []
+    for one in sorted(findings, key=lambda f: ("error", "warning", "advice").index(f.severity)):
+        style = {"error": "blocked", "warning": "not yet"}.get(one.severity, "plain")
+        rows += [EMPTY] if not rows else []
+        rows += wrapped(f" {one.severity}, line {one.line}: {one.message}", width - 1, style)
+    return rows
+
+

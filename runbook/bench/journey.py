@@ -1,0 +1,208 @@
+"""One session, screen after screen: list, briefing, run, record."""
+
+from __future__ import annotations
+
+import asyncio
+import contextlib
+import tempfile
+from collections.abc import Callable
+from dataclasses import dataclass, field
+from datetime import date
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from runbook.answers import BindRequest, ChargeBox
+from runbook.bench.entries import procedures, recorded
+from runbook.bench.people import performer
+from runbook.bench.resuming import opening_of, request_from_record
+from runbook.bench.screens.briefing import BriefingScreen
+from runbook.bench.screens.listing import Entry, ListScreen
+from runbook.bench.screens.people import PeopleScreen
+from runbook.bench.screens.record import RecordScreen
+from runbook.bench.screens.run import RunScreen
+from runbook.bench.screens.setup import SetUpScreen
+from runbook.bench.simulated import Simulated
+from runbook.errors import ExitCode, JournalError, RunbookError
+from runbook.run.acts import Note
+from runbook.run.clock import Clock, ScaledClock, SystemClock
+from runbook.run.conductor import Conductor
+from runbook.run.engine import Bound, ChildEngine
+from runbook.run.journal import Journal, JournalWriter, read
+from runbook.run.logbook import Logbook
+from runbook.run.opening import Participant, people, run_opened
+from runbook.run.record import record_lines
+
+if TYPE_CHECKING:
+    from runbook.bench.app import BenchApp
+
+
+@dataclass
+class Session:
+    """What a session at the screens begins with."""
+
+    logbook: Logbook
+    on: str
+    """ISO date on which certificates are judged at the vessel."""
+    start: Entry | None = None
+    """Straight to this entry; None: the list."""
+    seed: int = 1
+    """Of a rehearsal's instruments."""
+    make_engine: Callable[[], ChildEngine] = ChildEngine
+    clock: Clock = field(default_factory=SystemClock)
+    left: Conductor | None = None
+    """The run as it was left, for the card that is printed."""
+
+    async def __call__(self, app: BenchApp) -> int:
+        """The whole session; the exit code."""
+        engine = self.make_engine()
+        # The library loads while somebody reads the list.
+        warming = asyncio.ensure_future(_warm(engine))
+        try:
+            return await self._session(app, engine)
+        finally:
+            warming.cancel()
+            with contextlib.suppress(asyncio.CancelledError):
+                await warming
+            await engine.close()
+
+    async def _session(self, app: BenchApp, engine: ChildEngine) -> int:
+        entry = self.start
+        said: tuple[str, ...] = ()
+        while True:
+            if entry is None:
+                entry = await self._listed(app, said)
+                if entry is None:
+                    return int(ExitCode.GOOD)
+            try:
+                desk = await self._opened(app, engine, entry)
+            except RunbookError as error:
+                if self.start is not None:
+                    raise
+                desk, said = None, (str(error),)
+            if desk is not None:
+                return await self._run(app, desk)
+            if self.start is not None:
+                return int(ExitCode.NOT_GOOD)
+            entry = None
+
+    async def _listed(self, app: BenchApp, said: tuple[str, ...]) -> Entry | None:
+        entries, wrong = procedures()
+        screen = ListScreen(entries, (*wrong, *said))
+
+        async def fill() -> None:
+            found, unread = await asyncio.to_thread(recorded, self.logbook)
+            if screen.is_attached:
+                screen.add(found, unread)
+
+        filling = asyncio.ensure_future(fill())
+        try:
+            return await app.push_screen_wait(screen)
+        finally:
+            await filling
+
+    async def _opened(self, app: BenchApp, engine: ChildEngine, entry: Entry) -> Conductor | None:
+        if entry.kind == "resume":
+            return await self._resumed(app, engine, Path(entry.path))
+        rehearsal = entry.kind == "rehearse"
+        if rehearsal:
+            app.rehearsal_mark = "REHEARSAL"
+        request = BindRequest(entry.path, issue_date(Path(entry.path)) if rehearsal else self.on)
+        briefed = await app.push_screen_wait(BriefingScreen(engine.bind, request, self._held(entry)))
+        if briefed is None:
+            app.rehearsal_mark = ""
+            return None
+        bound, request = briefed
+        who = played(bound.plan.roles) if rehearsal else await self._people(app, bound)
+        if who is None or not (rehearsal or await app.push_screen_wait(_set_up(bound, request))):
+            return None
+        return await self._begun(app, engine, bound, request, who, rehearsal)
+
+    async def _people(self, app: BenchApp, bound: Bound) -> tuple[Participant, ...] | None:
+        roles = bound.plan.roles
+
+        def wrong(found: tuple[Participant, ...]) -> None:
+            people(found, roles)
+
+        return await app.push_screen_wait(PeopleScreen(roles, wrong))
+
+    async def _begun(
+        self,
+        app: BenchApp,
+        engine: ChildEngine,
+        bound: Bound,
+        request: BindRequest,
+        who: tuple[Participant, ...],
+        rehearsal: bool,
+    ) -> Conductor:
+        clock = ScaledClock(self.clock) if rehearsal else self.clock
+        path = self.logbook.new_run_path(bound.plan.vessel, clock.now(), rehearsal)
+        desk = Conductor(JournalWriter(Journal.create(path)), clock, engine)
+        await desk.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal))
+        if isinstance(clock, ScaledClock):
+            # The first person is who sits here; all others are played.
+            pace = Simulated(clock, who[1:])
+            await pace.open(request, bound.plan, self.seed)
+            app.take(desk, pace)
+        else:
+            app.take(desk)
+            await desk.act(Note("Set-up check confirmed point by point.", performer(desk.ledger)))
+        return desk
+
+    async def _resumed(self, app: BenchApp, engine: ChildEngine, path: Path) -> Conductor:
+        journal, records = Journal.open(path)
+        opened = opening_of(records, path)
+        folder = tempfile.TemporaryDirectory(prefix="runbook-")
+        request = request_from_record(opened, Path(folder.name))
+        engine.request = request
+        desk = Conductor(JournalWriter(journal), self.clock, engine)
+        await desk.resume(records, "the run was taken up again")
+        app.take(desk)
+        return desk
+
+    def _held(self, entry: Entry) -> ChargeBox | None:
+        """What the vessel's charge record says; the vessel's tag is known once the plan is, so it is looked up late."""
+        return None
+
+    async def _run(self, app: BenchApp, desk: Conductor) -> int:
+        app.push_screen(RunScreen(desk))
+        try:
+            await app.ended.wait()
+            await desk.settled()
+            outcome = desk.ledger.outcome or "left"
+            where = "" if desk.journal is None else str(desk.journal.path)
+            lines = () if desk.journal is None else record_lines(read(desk.journal.path).records)
+            await app.push_screen_wait(RecordScreen(outcome, where, lines))
+            return int(ExitCode.GOOD if outcome == "completed" else ExitCode.NOT_GOOD)
+        finally:
+            self.left = desk
+            if isinstance(app.pace, Simulated):
+                await app.pace.close()
+            await desk.close()
+
+
+async def _warm(engine: ChildEngine) -> None:
+    with contextlib.suppress(RunbookError):
+        await engine.warm()
+
+
+def _set_up(bound: Bound, request: BindRequest) -> SetUpScreen:
+    return SetUpScreen(bound.plan.bring, request.cell_closed)
+
+
+def played(roles: tuple[str, ...]) -> tuple[Participant, ...]:
+    """The people of a rehearsal: the one who sits here, and a played one for every other role."""
+    return tuple(
+        Participant("You" if i == 0 else f"{role} (played)", (role,), str(111 * (i + 1))) for i, role in enumerate(roles)
+    )
+
+
+def issue_date(path: Path) -> str:
+    """The procedure's own date, by which a rehearsal judges certificates. Raises RunbookError."""
+    from runbook.procedure.reader import read_procedure
+
+    return str(read_procedure(path).procedure.issue.date)
+
+
+def today() -> str:
+    """The date on the wall of this room, not by UTC."""
+    return date.today().isoformat()  # noqa: DTZ011 - certificates are judged by it

@@ -1,0 +1,44 @@
+"""How fast a rehearsal goes, and what its simulated dials show."""
+
+from __future__ import annotations
+
+from typing import Protocol
+
+from runbook.run.state import Ledger
+
+
+class Pace(Protocol):
+    """The clock and the vessel of a rehearsal as the screens see them."""
+
+    @property
+    def words(self) -> str:
+        """Speed or pause in a few characters, for the header."""
+        ...
+
+    def faster(self) -> None:
+        """One step faster."""
+        ...
+
+    def slower(self) -> None:
+        """One step slower."""
+        ...
+
+    def pause(self) -> None:
+        """Stop the clock, or let it go on."""
+        ...
+
+    def jump(self) -> None:
+        """To the next moment at which something is asked for."""
+        ...
+
+    def follow(self, ledger: Ledger) -> None:
+        """Bring the simulated vessel to the present moment and to what has been done."""
+        ...
+
+    def dial(self, tag: str) -> str | None:
+        """What the simulated dial shows, as one would type it; None: it cannot be read now."""
+        ...
+
+    def played(self, name: str) -> str | None:
+        """The signing number of a person the rehearsal plays; None: a real one."""
+        ...

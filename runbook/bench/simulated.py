@@ -1,0 +1,182 @@
+"""The clock and the dials of a rehearsal on the screens; the vessel itself is simulated in another process.
+
+Dials are what the process last said they show. Where it is gone they show nothing, which is what a person at a
+vessel sees when the gauge has gone blind: the interlock then does its work, and nothing here makes up a value.
+"""
+
+from __future__ import annotations
+
+import asyncio
+import contextlib
+import json
+import math
+import sys
+from typing import Any, Final
+
+from runbook.answers import BindRequest, Instrument, Plan
+from runbook.codec import to_plain
+from runbook.quantities import pressure_to_unit, to_unit, unit
+from runbook.run.clock import Moment, ScaledClock
+from runbook.run.opening import Participant
+from runbook.run.state import Ledger
+
+SPEEDS: Final = (1.0, 2.0, 5.0, 10.0, 20.0, 60.0, 120.0, 300.0, 600.0)
+"""[1] steps of the speed keys."""
+_DEADLINE_S: Final = 10.0
+"""[s] for one look."""
+_JUMP_S: Final = 300.0
+"""[s] where nothing is asked for at any known moment."""
+_EARLY_S: Final = 5.0
+"""[s] before it: what is asked for should be on the screen before it is overdue."""
+CHILD: Final = ("-m", "runbook.rehearsal.child")
+
+
+def next_moment(ledger: Ledger, now: Moment) -> float:
+    """How long until something is asked for [s]."""
+    line = ledger.present
+    if line is None:
+        return _JUMP_S
+    good = ledger.last_answer.good_for_s if ledger.last_answer is not None else None
+    waits = []
+    for need in line.reads:
+        longest = min(x for x in (need.every_s, need.fresh_s, good) if x is not None)
+        taken = ledger.in_entry(need.tag)
+        waits.append(longest - now.lasted(taken[-1].at if taken else ledger.entry.at))
+    if line.witness is not None:
+        waits.append(line.witness.wait_s - now.lasted(ledger.entry.at) + _EARLY_S)
+    if line.quick:
+        waits.append(60.0)
+    return max(1.0, min(waits, default=_JUMP_S) - _EARLY_S)
+
+
+def typed_value(value: float, one: Instrument, plan: Plan) -> str:
+    """A value [SI] as a person types it from that dial, to its resolution."""
+    pressure = one.reads == "pressure"
+    shown = pressure_to_unit(value, one.unit, plan.barometer) if pressure else to_unit(value, one.unit)
+    step = one.half_division / unit(one.unit).factor
+    decimals = max(0, math.ceil(-math.log10(step) - 1e-9)) if step > 0.0 else 1
+    text = f"{shown:.{min(decimals, 6)}f}"
+    return text.lstrip("-") if float(text) == 0.0 else text
+
+
+class Simulated:
+    """Implements Pace."""
+
+    def __init__(self, clock: ScaledClock, played: tuple[Participant, ...]) -> None:
+        """`played` are the people nobody sits here for."""
+        self.clock = clock
+        self._played = {one.name: one.number for one in played}
+        self._plan: Plan | None = None
+        self._ledger: Ledger | None = None
+        self._shown: dict[str, float] = {}
+        self._process: asyncio.subprocess.Process | None = None
+        self._looking: asyncio.Task[None] | None = None
+
+    # -- the other process ------------------------------------------------------------------------------
+
+    async def open(self, request: BindRequest, plan: Plan, seed: int) -> None:
+        """Start the simulated vessel; where that fails the dials stay dark."""
+        self._plan = plan
+        try:
+            self._process = await asyncio.create_subprocess_exec(
+                sys.executable, *CHILD,
+                stdin=asyncio.subprocess.PIPE, stdout=asyncio.subprocess.PIPE, stderr=asyncio.subprocess.DEVNULL,
+                start_new_session=True,
+            )
+        except OSError:
+            return
+        asked = {"request": to_plain(request), "seed": seed, "boot": self.clock.now().boot}
+        self._looking = asyncio.ensure_future(self._exchange(asked, 30.0))
+
+    async def close(self) -> None:
+        """End it and read its pipe to the end."""
+        if self._looking is not None:
+            self._looking.cancel()
+            with contextlib.suppress(asyncio.CancelledError):
+                await self._looking
+        process, self._process = self._process, None
+        if process is None:
+            return
+        with contextlib.suppress(ProcessLookupError):
+            process.kill()
+        if process.stdin is not None:
+            process.stdin.close()
+        if process.stdout is not None:
+            await process.stdout.read()
+        await process.wait()
+
+    async def _exchange(self, asked: dict[str, Any], deadline: float = _DEADLINE_S) -> None:
+        process = self._process
+        if process is None or process.stdin is None or process.stdout is None:
+            return
+        try:
+            process.stdin.write(json.dumps(asked).encode() + b"\n")
+            await process.stdin.drain()
+            reply = json.loads(await asyncio.wait_for(process.stdout.readline(), deadline))
+            self._shown = dict(reply.get("shown", {}))
+        except (OSError, ValueError, TimeoutError):
+            self._shown = {}
+            self._process = None
+            with contextlib.suppress(ProcessLookupError):
+                process.kill()
+            process.stdin.close()
+            await process.stdout.read()
+            await process.wait()
+
+    # -- Pace -------------------------------------------------------------------------------------------
+
+    @property
+    def words(self) -> str:
+        """Speed or pause."""
+        return "PAUSED" if self.clock.paused else f"x{self.clock.speed:g}"
+
+    def faster(self) -> None:
+        """One step faster."""
+        self.clock.set_speed(next((s for s in SPEEDS if s > self.clock.speed), SPEEDS[-1]))
+
+    def slower(self) -> None:
+        """One step slower."""
+        self.clock.set_speed(next((s for s in reversed(SPEEDS) if s < self.clock.speed), SPEEDS[0]))
+
+    def pause(self) -> None:
+        """Stop the clock, or let it go on."""
+        if self.clock.paused:
+            self.clock.go_on()
+        else:
+            self.clock.pause()
+
+    def jump(self) -> None:
+        """To the next moment at which something is asked for."""
+        if self._ledger is not None:
+            self.clock.skip(next_moment(self._ledger, self.clock.now()))
+
+    def follow(self, ledger: Ledger) -> None:
+        """Look at the simulated vessel, unless a look is under way."""
+        self._ledger = ledger
+        if self._plan is None or (self._looking is not None and not self._looking.done()):
+            return
+        asked = {
+            "boot": self.clock.now().boot,
+            "line": ledger.line,
+            "source": ledger.source,
+            "valves": [(tag, said.position) for tag, said in ledger.stated.items()],
+            "tags": [one.tag for one in self._plan.instruments],
+        }
+        self._looking = asyncio.ensure_future(self._exchange(asked))
+
+    async def looked(self) -> None:
+        """Wait for the look under way."""
+        if self._looking is not None:
+            await self._looking
+
+    def dial(self, tag: str) -> str | None:
+        """What the dial shows, as one would type it; None: nothing that can be read."""
+        value = self._shown.get(tag)
+        if value is None or self._plan is None:
+            return None
+        one = next(i for i in self._plan.instruments if i.tag == tag)
+        return typed_value(value, one, self._plan)
+
+    def played(self, name: str) -> str | None:
+        """The number of a played person; None: a real one."""
+        return self._played.get(name)

@@ -1,0 +1,94 @@
+"""The simulated vessel in a process of its own, for the screens: they must never load the property library.
+
+One JSON line in, one out, until standard input ends. It keeps no time of its own: each look says what moment it
+is and what the run says has been done, and is answered with what every dial shows.
+"""
+
+from __future__ import annotations
+
+import json
+import os
+import sys
+from collections.abc import Callable
+from dataclasses import replace
+from datetime import date
+from pathlib import Path
+from typing import Any
+
+from runbook.answers.request import BindRequest
+from runbook.assess.bind import plan_of
+from runbook.assess.scene import open_scene
+from runbook.assess.walk import walk
+from runbook.codec import from_plain
+from runbook.errors import RunbookError
+from runbook.procedure.reader import read_procedure
+from runbook.rehearsal.world import World
+from runbook.run.clock import Moment
+from runbook.run.state import Ledger, Stated
+
+
+def open_world(asked: dict[str, Any]) -> World:
+    """The world of a request, a seed and a moment. Raises RunbookError."""
+    request = from_plain(BindRequest, asked["request"])
+    loaded = read_procedure(Path(request.procedure_path))
+    scene = open_scene(
+        loaded, request.barometer_Pa, request.charge, height_m=request.height_m, hottest_K=request.room_hottest_K
+    )
+    lines = walk(scene)
+    plan = plan_of(scene, date.fromisoformat(request.on), lines)
+    return World(scene, lines, plan, int(asked["seed"]), Moment(float(asked["boot"]), 0.0))
+
+
+def look(world: World, asked: dict[str, Any]) -> dict[str, float]:
+    """Let the time since the last look pass, do what has been done, and read every dial [SI]."""
+    world.move_to(Moment(float(asked["boot"]), 0.0))
+    world.follow(
+        replace(
+            Ledger.start(),
+            line=int(asked["line"]),
+            source=str(asked["source"]),
+            stated={str(tag): Stated(str(position), 0, 0) for tag, position in asked["valves"]},
+        )
+    )
+    world.move_to(Moment(float(asked["boot"]), 0.0))
+    shown = {str(tag): world.read(str(tag)) for tag in asked["tags"]}
+    return {tag: value for tag, value in shown.items() if value is not None}
+
+
+def serve(lines_in: Callable[[], str], line_out: Callable[[str], None]) -> None:
+    """Answer until the input ends."""
+    world: World | None = None
+    while line := lines_in():
+        asked = json.loads(line)
+        try:
+            if "request" in asked:
+                world = open_world(asked)
+                line_out(json.dumps({"ready": True}))
+            elif world is None:
+                line_out(json.dumps({"why": "no vessel is there yet"}))
+            else:
+                line_out(json.dumps({"shown": look(world, asked)}, allow_nan=False))
+        except RunbookError as error:
+            # Where the models end the dials cannot be said; the rehearsal goes on without them.
+            line_out(json.dumps({"why": str(error)}))
+
+
+def main() -> int:
+    """Serve standard input on a private copy of standard output."""
+    answers = os.fdopen(os.dup(1), "w", encoding="utf-8")
+    # Whatever a library prints goes where it cannot be taken for an answer.
+    os.dup2(2, 1)
+
+    def line_out(text: str) -> None:
+        answers.write(text + "\n")
+        answers.flush()
+
+    try:
+        serve(sys.stdin.readline, line_out)
+    except (BrokenPipeError, KeyboardInterrupt):
+        return 0
+    return 0
+
+
+if __name__ == "__main__":
+    sys.exit(main())

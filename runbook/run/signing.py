@@ -55,6 +55,14 @@ def performers(plan: Plan, hold: int) -> frozenset[str]:
     return frozenset(found)
 
 
+def readings_missing(plan: Plan, ledger: Ledger, signer: str) -> tuple[Reason, ...]:
+    """What a measuring hold still wants before `signer` may sign; empty: nothing, also where nothing is measured."""
+    line = ledger.present
+    if line is None or line.hold is None or line.hold.read is None or ledger.entry.signed_by:
+        return ()
+    return tuple(measured(ledger, line.hold.read.tag, signer))
+
+
 def measured(ledger: Ledger, tag: str, by: str) -> Iterator[Reason]:
     """What a measuring hold still wants before `by` may sign it."""
     here = ledger.in_entry(tag)

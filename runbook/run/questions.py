@@ -71,9 +71,9 @@ def closed(ledger: Ledger) -> str:
 def observations(seen: Seen) -> tuple[Observation, ...]:
     """Those that count, in the order of the record, each once."""
     found = {o.sequence: o for o in seen.since}
-    for group in (seen.before, seen.moving):
-        for carried in group.values():
-            found.update((k.one.sequence, k.one) for k in carried)
+    found.update((o.sequence, o) for o in seen.before.values())
+    for kept in seen.moving.values():
+        found.update((k.one.sequence, k.one) for k in kept)
     return tuple(found[n] for n in sorted(found))
 
 
@@ -123,8 +123,8 @@ def with_reading(ledger: Ledger, event: ReadingTaken, at: Moment, seq: int) -> S
     if event.what in ("mass", "liquid height"):
         if one.closed:
             return _after_closing(ledger, one, at)
-        kept = _kept(ledger, seen.before.get(event.tag, ()), Carried(one, event.U), at)
-        return replace(seen, before=seen.before | {event.tag: kept})
+        # The open charge sublimes: less than a minute ago is no contradiction, and more governs by being the last.
+        return replace(seen, before=seen.before | {event.tag: one})
     if event.what not in ("temperature", "pressure"):
         return seen
     kept = _kept(ledger, seen.moving.get(event.tag, ()), Carried(one, event.U), at)

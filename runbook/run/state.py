@@ -115,8 +115,8 @@ class Seen:
 
     moving: dict[str, tuple[Carried, ...]] = field(default_factory=dict)
     """Of each thermometer and gauge: the last reading, after those that contradict it."""
-    before: dict[str, tuple[Carried, ...]] = field(default_factory=dict)
-    """Of each scale and height: the last read with the vessel open, after those that contradict it."""
+    before: dict[str, Observation] = field(default_factory=dict)
+    """Of each scale and height: the last read with the vessel open."""
     since: tuple[Observation, ...] = ()
     """Masses and heights since closing, and the temperature beside each height."""
     wants_beside: bool = False

@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from runbook.answers import Need
 from runbook.assess.scene import Scene
 from runbook.assess.walk import Walked, is_closed
-from runbook.procedure.model import QuickStep, ReadStep
+from runbook.procedure.model import OpenContainment, QuickStep, ReadStep
 from runbook.quantities import Level, LevelRange, Range
 
 FRESH_S = 600.0
@@ -41,6 +41,9 @@ def entry_needs(scene: Scene, lines: Sequence[Walked], index: int) -> tuple[Need
         wanted = ["mass"]
     elif line.warms or (line.lets_down and line.before.closed):
         wanted = ["temperature", "pressure"]
+    elif isinstance(line.verb, OpenContainment):
+        # The last reading was taken before the gas went: without a new one it still governs.
+        wanted = ["pressure"]
     needs = []
     for what in wanted:
         tag = _instrument_for(scene, what)

@@ -49,6 +49,8 @@ class Operator:
     def __init__(self, conductor: Conductor, world: World, lines: tuple[Walked, ...], who: tuple[Participant, ...]):
         self._conductor, self._world, self._lines = conductor, world, lines
         self._who = who
+        self.look_again = False
+        """The next line was blocked: what it leans on is read anew before it is asked for again."""
 
     def next(self) -> Wish:
         """The next act, or how long to wait."""
@@ -140,7 +142,12 @@ class Operator:
             return None
         now = self._conductor.clock.now()
         good = ledger.answer.good_for_s if ledger.answer is not None else None
+        again, self.look_again = self.look_again, False
         for need in plan.lines[ledger.line + 1].entry_needs:
+            shown = self._world.read(need.tag)
+            last = ledger.reading(need.tag)
+            if again and shown is not None and (last is None or shown != last.event.value):
+                return self._read(need.tag, None)
             taken = ledger.reading(need.tag)
             longest = need.fresh_s if good is None else min(need.fresh_s, good)
             if taken is None or now.age(taken.at) > 0.5 * longest:
@@ -165,7 +172,9 @@ class Operator:
         signer = self._participant(line.hold.signed_by)
         need = line.hold.read
         if need is not None:
-            others = [t for t in (*ledger.before, *ledger.here) if t.event.tag == need.tag and t.event.by != signer.name]
+            others = [
+                t for t in (*ledger.before, *ledger.here) if t.event.tag == need.tag and t.event.by != signer.name
+            ]
             shown = self._world.read(need.tag)
             outside = shown is not None and (
                 (need.low is not None and shown < need.low) or (need.high is not None and shown > need.high)
@@ -225,4 +234,3 @@ class Operator:
     def _vent_position(self) -> str:
         tag = self._conductor.plan.let_down_valve
         return "do not know" if tag is None else self._conductor.ledger.position(tag)
-

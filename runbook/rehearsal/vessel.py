@@ -102,9 +102,13 @@ class Simulation:
             return fluid.state(fluid.triple_temperature, density)
         low, high = fluid.min_temperature + 5.0, 450.0
         if plateau is not None:
-            low, high = (low, fluid.triple_temperature - 1e-6) if energy < plateau[0] else (
-                fluid.triple_temperature + 1e-6,
-                high,
+            low, high = (
+                (low, fluid.triple_temperature - 1e-6)
+                if energy < plateau[0]
+                else (
+                    fluid.triple_temperature + 1e-6,
+                    high,
+                )
             )
 
         def excess(temperature: float) -> float:
@@ -140,7 +144,6 @@ class Simulation:
             vessel = self._venting(vessel, controls, step)
             left -= step
         return vessel if left <= 0.0 else self.advance(vessel, controls, left)
-
 
     def _empty(self, vessel: Vessel, controls: Controls, dt: float) -> Vessel:
         body = self.path.body_heat_capacity
@@ -183,9 +186,7 @@ class Simulation:
         total = vessel.mass * vessel.energy + heat - gone * self._leaving(state)
         room = self.path.loss_to_room * (controls.room_K - vessel.body_K) * dt
         body = vessel.body_K + (room - heat) / self.path.body_heat_capacity
-        return replace(
-            vessel, mass=left, energy=total / left, body_K=body, released=vessel.released + gone
-        )
+        return replace(vessel, mass=left, energy=total / left, body_K=body, released=vessel.released + gone)
 
     def flow(self, state: State, controls: Controls) -> float:
         """Mass flow of vapour [kg/s] through the bore, ideal gas: choked above 1.8 times the barometer."""

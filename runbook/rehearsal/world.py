@@ -58,9 +58,7 @@ class World:
                 mass = line.verb.load.value
                 self.vessel = self._simulation.loaded(self.vessel, mass, self.controls.barometer)
         vent_open, bore = self._vent(ledger, line)
-        self.controls = replace(
-            self.controls, vent_open=vent_open, bore=bore, heating=self._heating(ledger, line)
-        )
+        self.controls = replace(self.controls, vent_open=vent_open, bore=bore, heating=self._heating(ledger, line))
 
     def move_to(self, now: Moment) -> None:
         """Let the time since the last look pass."""
@@ -146,4 +144,3 @@ class World:
         state = self._scene.substance.state(self.room_K, mass / self._scene.apparatus.volume.free.value)
         self.vessel = replace(self.vessel, mass=mass, energy=state.internal_energy or 0.0)
         self.controls = replace(self.controls, vent_open=False, bore=0.0)
-

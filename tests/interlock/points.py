@@ -10,7 +10,7 @@ from hashlib import sha256
 
 from runbook.answers import Empty, LineKind
 from runbook.run.clock import Moment
-from runbook.run.events import Event, NotAttended, Proved, ReadingTaken, Signed, WitnessCame
+from runbook.run.events import Event, NotAttended, Proved, ReadingTaken, Signed, TakenUp, WentOn, WitnessCame
 from tests.interlock.past import Past
 
 PROOFS = ("vent", "wall", "low gauge", "left open")
@@ -56,7 +56,10 @@ def performed(past: Past, hold: int) -> set[str]:
 
 
 def _measured(past: Past, tag: str, signer: str) -> bool:
-    """The signer's own blind reading against another person's, or a third that stands with one of them."""
+    """The signer's own blind reading against another person's, or a third that stands with one of them.
+
+    The third is the last reading of all: one that contradicts everything puts the question open again.
+    """
     entry, here = past.entry(), past.index()
     counts = [(n, r) for n, r, _ in past.readings(tag) if n > entry or r.line == here - 1]
     own = [(n, r) for n, r in counts if r.by == signer and r.blind and n > entry]
@@ -66,13 +69,11 @@ def _measured(past: Past, tag: str, signer: str) -> bool:
     mine, other = own[-1], others[-1]
     if other[1].in_range and _agree(mine[1], other[1]):
         return True
-    for n, third in counts:
-        earlier = [r for m, r in others if m < n]
-        if n <= max(mine[0], entry) or not earlier or not earlier[-1].in_range:
-            continue
-        if _agree(third, mine[1]) or _agree(third, earlier[-1]):
-            return True
-    return False
+    last, third = counts[-1]
+    before = [r for n, r in others if n < last]
+    if last <= mine[0] or not before or not before[-1].in_range or not third.in_range:
+        return False
+    return _agree(third, mine[1]) or _agree(third, before[-1])
 
 
 def _agree(one: ReadingTaken, other: ReadingTaken) -> bool:
@@ -124,41 +125,58 @@ def _proof_at(past: Past, proof: str) -> int:
 
 
 def _wall_warm(past: Past, tag: str, now: Moment) -> bool:
+    """Ten minutes of readings, each of them inside its dial and warm, the last of them young."""
     oldest: Moment | None = None
     readings = past.readings(tag, past.entry())
     for _, reading, at in reversed(readings):
-        if reading.value - reading.U <= COLDEST_WALL:
+        if not reading.in_range or reading.value - reading.U <= COLDEST_WALL:
             break
         oldest = at
     return oldest is not None and now.lasted(oldest) >= 600.0 and now.age(readings[-1][2]) <= 120.0
 
 
+def _unbroken(past: Past, tag: str, position: str, after: int) -> int | None:
+    """Number of the first event after `after` from which on a valve was said to be in this position only."""
+    first: int | None = None
+    for n, said in past.stated(tag):
+        if said != position:
+            first = None
+        elif first is None and n > after:
+            first = n
+    return first
+
+
 def _no_rise(past: Past, empty: Empty, now: Moment) -> bool:
-    """Vent shut for ten minutes after the wall was warm, and the low gauge did not climb meanwhile."""
-    if past.position(empty.isolator) != "open":
-        return False
-    shut: int | None = None
-    for n, position in past.stated(empty.vent):
-        if position != "shut":
-            shut = None
-        elif shut is None and n > _proof_at(past, "wall"):
-            shut = n
-    if shut is None:
+    """Vent shut for ten minutes after the wall was warm, and the low gauge did not climb meanwhile.
+
+    A gauge shut off from the vessel does not climb either: its isolator is open from before the first reading.
+    """
+    shut = _unbroken(past, empty.vent, "shut", _proof_at(past, "wall"))
+    joined = _unbroken(past, empty.isolator, "open", -1)
+    if shut is None or joined is None:
         return False
     at_shut = past.events[shut][1]
     readings = past.readings(empty.low_gauge, shut)
     if now.lasted(at_shut) < 600.0 or not readings or readings[0][2].age(at_shut) > 120.0:
         return False
-    _, newest, at = readings[-1]
+    (first, low, _), (_, high, at) = readings[0], readings[-1]
+    if first < joined or not low.in_range or not high.in_range:
+        return False
     if at.lasted(at_shut) < 600.0 or now.age(at) > 120.0:
         return False
-    return newest.value - readings[0][1].value < LARGEST_RISE
+    return high.value - low.value < LARGEST_RISE
 
 
 def empty_proved(past: Past) -> bool:
-    """All four proofs in one entry of one line, and the let-down valve open now and as this line leaves it."""
+    """All four proofs in one entry of one line, and the let-down valve open now and as this line leaves it.
+
+    A line that seals closes something in anew: what was proved before it proves nothing any more.
+    """
     proved, finished = 0, False
     for event, _ in past.events:
+        if isinstance(event, WentOn | TakenUp):
+            entered = past.plan.lines[event.to if isinstance(event, WentOn) else event.line]
+            finished = finished and not entered.seals
         if past.enters(event):
             proved = 0
         if isinstance(event, Proved):

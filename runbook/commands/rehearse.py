@@ -1,0 +1,102 @@
+"""`runbook rehearse FILE`: the same run on a simulated vessel, with the second person played.
+
+On screens, as prompts and lines (--plain), or without anybody (--headless), where the ideal operator does it and
+the same seed gives the same run.
+"""
+
+from __future__ import annotations
+
+import asyncio
+import json
+import sys
+from dataclasses import asdict
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+from runbook.commands.arguments import Arguments
+from runbook.errors import ExitCode, InputUnusable
+from runbook.procedure.shelf import find_procedure
+
+if TYPE_CHECKING:
+    from runbook.rehearsal.headless import Outcome
+
+
+def main(argv: list[str]) -> int:
+    """Rehearse one procedure; returns the exit code."""
+    parser = Arguments(prog="runbook rehearse", description=__doc__)
+    parser.add_argument("file", metavar="FILE", help="a procedure file, or the name of a shipped one")
+    parser.add_argument("--headless", action="store_true", help="no screen: the ideal operator does it")
+    parser.add_argument("--plain", action="store_true", help="prompts and lines instead of screens")
+    parser.add_argument("--seed", type=int, default=1, metavar="N", help="of the instruments' errors (1)")
+    parser.add_argument("--json", action="store_true", help="with --headless: one document, SI")
+    parser.add_argument("--logbook", metavar="DIR", type=Path, help="where the record goes")
+    parser.add_argument("--ascii", action="store_true", help="no braille and no box characters")
+    asked = parser.parse_args(argv)
+    if asked.json and not asked.headless:
+        raise InputUnusable("--json goes with --headless")
+    path = find_procedure(asked.file)
+    if asked.headless:
+        return _headless(path, asked.seed, asked.json, asked.logbook)
+    if asked.plain:
+        from runbook.commands.plain import rehearse_plain
+
+        return rehearse_plain(path, asked.seed, asked.logbook)
+    return _on_screens(path, asked)
+
+
+def _on_screens(path: Path, asked: Any) -> int:
+    from runbook.bench.launch import check_terminal, run_screens
+
+    check_terminal("rehearse")
+    from runbook.bench.entries import title_of
+    from runbook.bench.journey import Session, today
+    from runbook.bench.screens.listing import Entry
+    from runbook.run.logbook import Logbook, logbook_folder
+
+    start = Entry("rehearse", title_of(path), str(path.parent), str(path))
+    session = Session(Logbook(logbook_folder(asked.logbook)), today(), start=start, seed=asked.seed)
+    return run_screens(session, asked.ascii)
+
+
+def _headless(path: Path, seed: int, as_json: bool, logbook: Path | None) -> int:
+    from runbook.rehearsal.headless import rehearse
+
+    outcome = asyncio.run(rehearse(path, seed, _journal(path, logbook)))
+    if as_json:
+        print(json.dumps(as_document(outcome), indent=2, allow_nan=False))
+    else:
+        print(f"REHEARSAL of {path}, seed {seed}: {outcome.outcome}")
+        if outcome.reason:
+            print(f"  {outcome.reason}")
+        print(f"  {outcome.steps_done} steps in {outcome.duration_s / 3600:.2f} h of simulated time")
+        print(f"  highest pressure {outcome.highest_pressure / 1e5:.1f} bar(a), {outcome.events} events")
+    return int(ExitCode.GOOD if outcome.outcome == "completed" else ExitCode.NOT_GOOD)
+
+
+def as_document(outcome: Outcome) -> dict[str, Any]:
+    """The documented keys."""
+    found = asdict(outcome)
+    return {
+        "outcome": found["outcome"],
+        "reason": found["reason"],
+        "steps_done": found["steps_done"],
+        "duration_s": found["duration_s"],
+        "highest_pressure_Pa": found["highest_pressure"],
+        "least_margin_Pa": found["least_margin"],
+        "events": found["events"],
+    }
+
+
+def _journal(path: Path, folder: Path | None) -> Any:
+    """Headless rehearsals keep a record only where they are told to: CI must not fill anybody's logbook."""
+    if folder is None:
+        return None
+    from runbook.procedure.reader import read_procedure
+    from runbook.run.clock import SystemClock
+    from runbook.run.journal import Journal, JournalWriter
+    from runbook.run.logbook import Logbook
+
+    vessel = read_procedure(path).apparatus.tag
+    target = Logbook(folder).new_run_path(vessel, SystemClock().now(), rehearsal=True)
+    print(f"record: {target}", file=sys.stderr)
+    return JournalWriter(Journal.create(target))

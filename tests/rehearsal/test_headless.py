@@ -1,0 +1,97 @@
+"""A rehearsal without a screen: the shipped procedure from the first step to the record."""
+
+from __future__ import annotations
+
+import asyncio
+import json
+from pathlib import Path
+
+import pytest
+
+from runbook.commands.rehearse import main
+from runbook.rehearsal.headless import rehearse
+from runbook.run.journal import Journal, JournalWriter, read, verify
+from tests.assess.scenes import changed_files
+
+
+def test_the_shipped_procedure_is_completed(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """Every line is passed through the one door, the pressure stays under the ceiling, the keys are as documented."""
+    code = main([str(changed_files(tmp_path)), "--headless", "--seed", "3", "--json"])
+    found = json.loads(capsys.readouterr().out)
+    assert list(found) == [
+        "outcome",
+        "reason",
+        "steps_done",
+        "duration_s",
+        "highest_pressure_Pa",
+        "least_margin_Pa",
+        "events",
+    ]
+    assert (code, found["outcome"], found["reason"]) == (0, "completed", None)
+    assert found["steps_done"] >= 25
+    assert 73e5 < found["highest_pressure_Pa"] < 95.8e5
+    assert found["least_margin_Pa"] > 0
+
+
+def test_one_seed_gives_one_run(tmp_path: Path) -> None:
+    """The same to the last digit, and another seed another one."""
+    path = changed_files(tmp_path)
+    first, again, other = (asyncio.run(rehearse(path, seed)) for seed in (5, 5, 6))
+    assert first == again
+    assert first.least_margin != other.least_margin
+
+
+def test_the_record_of_a_rehearsal_is_whole(tmp_path: Path) -> None:
+    """The journal verifies, begins with RunOpened marked as rehearsal and ends with RunClosed."""
+    journal = tmp_path / "run.jsonl"
+    asyncio.run(rehearse(changed_files(tmp_path), 3, JournalWriter(Journal.create(journal))))
+    assert verify(journal).good
+    records = read(journal).records
+    assert records[0].kind == "RunOpened"
+    assert records[0].data["rehearsal"] is True
+    assert records[-1].kind == "RunClosed"
+
+
+def test_a_charge_too_heavy_is_refused_while_the_cell_is_open(tmp_path: Path) -> None:
+    """180 g, the acceptance range widened so that only the interlock can: refused at closing by RD1."""
+    path = changed_files(
+        tmp_path,
+        {
+            "mass: 117 g ± 2 g": "mass: 180 g ± 2 g",
+            "Load dry ice until the scale shows 140 g": "Load dry ice until the scale shows 200 g",
+            "load: 140 g ± 10 g": "load: 200 g ± 10 g",
+            "accept: 105 g to 150 g": "accept: 105 g to 250 g",
+            "accept: 115 g to 119 g": "accept: 115 g to 250 g",
+        },
+    )
+    journal = tmp_path / "run.jsonl"
+    asyncio.run(rehearse(path, 3, JournalWriter(Journal.create(journal))))
+    records = read(journal).records
+    plan = records[0].data["plan"]
+    assert isinstance(plan, dict)
+    quick = next(i for i, line in enumerate(plan["lines"]) if line["kind"] == "quick")
+    closing = next(i for i, r in enumerate(records) if r.kind == "WentOn" and r.data["to"] == quick)
+    weighed = [
+        float(str(r.data["value"])) for r in records[:closing] if r.kind == "ReadingTaken" and r.data["tag"] == "BS1"
+    ]
+    assert weighed[0] > 0.180
+    assert weighed[-1] < 0.136
+    blocked = [
+        margin
+        for r in records[:closing]
+        if r.kind == "Answered" and isinstance(answer := r.data["answer"], dict)
+        for margin in answer["ahead"]
+        if margin["judgement"] == "blocked"
+    ]
+    assert {(m["limit"], m["cause"]) for m in blocked if m["limit"] == "RD1"} == {("RD1", "heat stuck on")}
+
+
+def test_180_g_is_refused_by_the_acceptance_range_of_the_hold(tmp_path: Path) -> None:
+    """Loaded with 200 g and read at once, the hold is not passed: the reading lies outside 105 to 150 g."""
+    path = changed_files(
+        tmp_path,
+        {"load: 140 g ± 10 g": "load: 200 g ± 10 g", "accept: 105 g to 150 g": "accept: 195 g to 196 g"},
+    )
+    found = asyncio.run(rehearse(path, 3))
+    assert found.outcome == "refused"
+    assert found.highest_pressure < 2e5

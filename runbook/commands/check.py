@@ -121,9 +121,7 @@ def _print(file: str, plan: Plan | None, problems: tuple[Problem, ...]) -> None:
     from runbook.assess.verdict import amount
 
     for finding in plan.findings:
-        print(
-            f"{file}:{finding.line}:{finding.column}: {finding.severity}: {finding.message} [{finding.rule}]"
-        )
+        print(f"{file}:{finding.line}:{finding.column}: {finding.severity}: {finding.message} [{finding.rule}]")
     print(f"{file}: {plan.verdict.upper()} of the figures in this file, approved by {plan.approved}")
     print(f"  {'step':<6}{'governs':<12}{'what':<20}{'worst':>14}{'allowed':>14}   left alone")
     for line in plan.lines:

@@ -41,11 +41,7 @@ def main(argv: list[str]) -> int:
         )
         # Beyond the models is an input that cannot be used here: there is no answer to judge.
         return int(ExitCode.FAILED if error.exit_code is ExitCode.FAILED else ExitCode.UNUSABLE)
-    print(
-        json.dumps(as_json(name, state, landmarks), indent=2)
-        if asked.json
-        else as_text(name, state, landmarks)
-    )
+    print(json.dumps(as_json(name, state, landmarks), indent=2) if asked.json else as_text(name, state, landmarks))
     return int(ExitCode.GOOD)
 
 

@@ -6,6 +6,7 @@ edge finds any of the seven questions.
 
 from __future__ import annotations
 
+import re
 from typing import Final
 
 from runbook.bench.rows import EMPTY, Row, beside, cut, last_beside, padded, row, wrapped
@@ -16,6 +17,9 @@ LABEL: Final = 10
 """[columns] of the label and the gap after it."""
 
 
+GAP: Final = "    "
+"""Between two clauses of one sentence of the run."""
+_AT: Final = re.compile(r" at -?[0-9.]+ °C")
 LONG_WORST: Final = "this step at worst"
 SHORT_WORST: Final = "worst"
 """The same on a narrow terminal."""
@@ -34,7 +38,7 @@ def labelled(label: str, rows: list[Row], style: str = "label") -> list[Row]:
 def header(view: HeaderView, width: int) -> Row:
     """Title, place, record and clock on one row; REHEARSAL before all of them and never cut."""
     right = f"{view.record}  {view.clock} "
-    place = f"{view.place}    "
+    place = f"  {view.place}    "
     loud = f" {view.rehearsal} " if view.rehearsal else ""
     room = width - len(loud) - len(right) - 1
     if room < len(place) + 12:
@@ -83,13 +87,26 @@ def ask(view: AskView, width: int, glyphs: Glyphs = UNICODE) -> list[Row]:
     return last_beside(rows, row((view.key, "key")), room) if view.key else rows
 
 
-def alone(view: AloneView, width: int) -> list[Row]:
-    """Two clauses and AT REST; all of it reversed where it is not."""
+def alone(view: AloneView, width: int, height: int) -> list[Row]:
+    """Two clauses and AT REST; where it is not, the verdict reversed, and the clauses where there is room."""
     room = width - LABEL
     if not view.at_rest:
-        words = f"{view.verdict}: {view.words}" if view.words else view.verdict
-        return [padded(one, room, "loud") for one in wrapped(words, room)]
-    return last_beside(wrapped(view.words, room), row((view.verdict, "yes")), room)
+        verdict = [padded(one, room, "loud") for one in wrapped(view.verdict, room)]
+        words = wrapped(view.words, room)
+        return [*verdict, *words] if len(verdict) + len(words) <= height else verdict
+    rows: list[Row] = []
+    for clauses in (view.words, *_shorter(view.words)):
+        rows = last_beside(wrapped(clauses, room), row((view.verdict, "yes")), room)
+        if len(rows) <= height:
+            break
+    return rows
+
+
+def _shorter(words: str) -> tuple[str, ...]:
+    """The same clauses closer together; then with the temperature of the first alone."""
+    first, *others = words.split(GAP)
+    bare = (_AT.sub("", other) for other in others)
+    return "  ".join((first, *others)), "  ".join((first, *bare))
 
 
 def ceiling(view: CeilingView, width: int, height: int, glyphs: Glyphs = UNICODE) -> list[Row]:

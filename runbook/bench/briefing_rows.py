@@ -70,7 +70,9 @@ def _day(plan: Plan, request: BindRequest, width: int) -> list[Row]:
 
 def _numbers(plan: Plan, width: int) -> list[Row]:
     bounds = plan.bounds
-    rows = _pair("ceiling", _pressure(plan.ceiling, plan) + (f" by {plan.ceiling_by}" if plan.ceiling_by else ""), width)
+    rows = _pair(
+        "ceiling", _pressure(plan.ceiling, plan) + (f" by {plan.ceiling_by}" if plan.ceiling_by else ""), width
+    )
     for name, mass, reason in (
         ("least charge", bounds.least_kg, bounds.least_reason),
         ("best charge", bounds.best_kg, bounds.best_reason),
@@ -114,5 +116,3 @@ def _findings(findings: tuple[Finding, ...], width: int) -> list[Row]:
         rows += [EMPTY] if not rows else []
         rows += wrapped(f" {one.severity}, line {one.line}: {one.message}", width - 1, style)
     return rows
-
-

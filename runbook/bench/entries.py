@@ -54,7 +54,9 @@ def recorded(logbook: Logbook) -> tuple[tuple[Entry, ...], tuple[str, ...]]:
     except JournalError as error:
         return (), (str(error),)
     said = [run.damaged for run in runs if run.damaged]
-    found = [Entry("resume", _title(run), f"{run.vessel}, begun {run.begun[:16]}", str(run.path)) for run in unfinished(runs)]
+    found = [
+        Entry("resume", _title(run), f"{run.vessel}, begun {run.begun[:16]}", str(run.path)) for run in unfinished(runs)
+    ]
     for vessel in dict.fromkeys(run.vessel for run in runs if run.vessel):
         skipped: list[RunFile] = []
         try:

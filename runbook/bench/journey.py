@@ -22,7 +22,7 @@ from runbook.bench.screens.record import RecordScreen
 from runbook.bench.screens.run import RunScreen
 from runbook.bench.screens.setup import SetUpScreen
 from runbook.bench.simulated import Simulated
-from runbook.errors import ExitCode, JournalError, RunbookError
+from runbook.errors import ExitCode, RunbookError
 from runbook.run.acts import Note
 from runbook.run.clock import Clock, ScaledClock, SystemClock
 from runbook.run.conductor import Conductor
@@ -192,7 +192,8 @@ def _set_up(bound: Bound, request: BindRequest) -> SetUpScreen:
 def played(roles: tuple[str, ...]) -> tuple[Participant, ...]:
     """The people of a rehearsal: the one who sits here, and a played one for every other role."""
     return tuple(
-        Participant("You" if i == 0 else f"{role} (played)", (role,), str(111 * (i + 1))) for i, role in enumerate(roles)
+        Participant("You" if i == 0 else f"{role} (played)", (role,), str(111 * (i + 1)))
+        for i, role in enumerate(roles)
     )
 
 

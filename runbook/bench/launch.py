@@ -8,11 +8,11 @@ import os
 import sys
 
 from runbook.bench.app import BenchApp
+from runbook.bench.card import card_lines
 from runbook.bench.journey import Session
 from runbook.drawing import ASCII, UNICODE
 from runbook.errors import ExitCode, InputUnusable
 from runbook.run.conductor import Conductor
-from runbook.run.sentences import card_lines
 
 
 def check_terminal(command: str) -> None:
@@ -48,7 +48,7 @@ def run_screens(session: Session, ascii_only: bool = False) -> int:
 def _print_card(desk: Conductor) -> None:
     """What to do at the bench, on paper or in the scrollback, now that no screen says it."""
     with contextlib.suppress(OSError):
-        print("\n".join(card_lines(desk.plan, desk.ledger)))
+        print("\n".join(card_lines(desk)))
 
 
 def _forget_terminal() -> None:

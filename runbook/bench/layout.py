@@ -39,9 +39,7 @@ class Layout:
 
 _COMPACT: Final = Layout(4, 4, 2, 2, 2, 2, frozenset({"ask", "ceiling"}), False)
 _USUAL: Final = Layout(5, 4, 1, 3, 2, 2, frozenset({"ask", "ceiling", "see", "agree", "keys"}), False)
-_TALL: Final = Layout(
-    6, 4, 2, 3, 4, 2, frozenset({"do", "ask", "alone", "ceiling", "see", "agree", "keys"}), False
-)
+_TALL: Final = Layout(6, 4, 2, 3, 4, 2, frozenset({"do", "ask", "alone", "ceiling", "see", "agree", "keys"}), False)
 
 
 def layout(columns: int, rows: int) -> Layout | None:

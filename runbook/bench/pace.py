@@ -27,8 +27,8 @@ class Pace(Protocol):
         """Stop the clock, or let it go on."""
         ...
 
-    def jump(self) -> None:
-        """To the next moment at which something is asked for."""
+    def jump(self, seconds: float) -> None:
+        """This much later at once [s]."""
         ...
 
     def follow(self, ledger: Ledger) -> None:

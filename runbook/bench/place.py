@@ -56,7 +56,7 @@ class _Shared:
 class Place(_Shared, Screen[R], Generic[R]):
     """A whole screen."""
 
-    CSS = """
+    DEFAULT_CSS = """
     Place { layers: base small; layout: vertical; overflow: hidden; }
     Place > #body { height: 1fr; }
     """
@@ -102,7 +102,7 @@ class Place(_Shared, Screen[R], Generic[R]):
 class Panel(_Shared, ModalScreen[R], Generic[R]):
     """A panel over the lowest rows of the screen before it."""
 
-    CSS = """
+    DEFAULT_CSS = """
     Panel { layers: base small; background: transparent; align: left bottom; overflow: hidden; }
     Panel > #panel { width: 100%; height: auto; max-height: 100%; background: $background; border-top: heavy $accent; }
     """

@@ -34,7 +34,9 @@ def request_from_record(opened: RunOpened, folder: Path) -> BindRequest:
     found = _APPARATUS.search(opened.procedure_text)
     named = Path(found[1].strip("'\"")) if found else Path("apparatus.yaml")
     if named.is_absolute() or ".." in named.parts:
-        raise JournalError(f"The apparatus file {named} lies outside the procedure's folder: the run cannot be taken up.")
+        raise JournalError(
+            f"The apparatus file {named} lies outside the procedure's folder: the run cannot be taken up."
+        )
     procedure = folder / Path(opened.request.procedure_path).name
     apparatus = folder / named
     apparatus.parent.mkdir(parents=True, exist_ok=True)

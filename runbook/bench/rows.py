@@ -19,8 +19,8 @@ Span = tuple[str, str]
 
 STYLES: Final = {
     "plain": "",
-    "label": "bold $text-muted",
-    "dim": "$text-muted",
+    "label": "bold",
+    "dim": "dim",
     "strong": "bold",
     "yes": "bold $text-success",
     "not yet": "bold $text-warning",
@@ -38,7 +38,9 @@ STYLES: Final = {
 
 
 _NUMBER: Final = re.compile(r"[(±<>~-]*[0-9][0-9.,:]*")
-_UNIT: Final = re.compile(r"(°C|K|bar|bar\(g\)|bar\(a\)|psi[ga]?|[kM]?Pa(\([ga]\))?|g|kg|mm|min|s|h|%|K/min|mL|L)[.,;:)]*")
+_UNIT: Final = re.compile(
+    r"(°C|K|bar|bar\(g\)|bar\(a\)|psi[ga]?|[kM]?Pa(\([ga]\))?|g|kg|mm|mL|L|min|s|h|%|K/min)[.,;:)]*"
+)
 
 
 @dataclass(frozen=True, slots=True)
@@ -78,25 +80,34 @@ def wrapped(text: str, width: int, style: str = "plain", lead: int = 0) -> list[
 
 
 def wrap(text: str, width: int, lead: int = 0) -> list[str]:
-    """The lines of `text`, none wider than `width` columns; an own line break is kept, empty text gives none.
+    """The lines of `text`, none wider than `width` columns; empty text gives none.
+
+    Own line breaks are kept, and spaces at the start of a paragraph indent all of its lines.
 
     A number stays beside its unit: '34' at the end of one line and '°C' on the next is read as 34 of anything.
     """
     lines: list[str] = []
     for paragraph in text.splitlines():
-        line = ""
-        for word in _words(printable(paragraph)):
-            if line and cell_len(line) + 1 + cell_len(word) > _room(lines, width, lead):
-                lines.append(line)
-                line = ""
-            line = f"{line} {word}" if line else word
-            while cell_len(line) > _room(lines, width, lead):
-                piece = _fitting(line, _room(lines, width, lead))
-                lines.append(piece)
-                line = line[len(piece) :]
-        if line:
-            lines.append(line)
+        body = printable(paragraph)
+        indent = " " * min(len(body) - len(body.lstrip(" ")), max(0, width - lead - 1))
+        for line in _wrapped_words(_words(body.strip(" ")), width - len(indent), 0 if lines else lead):
+            lines.append(indent + line)
     return lines
+
+
+def _wrapped_words(words: list[str], width: int, lead: int) -> list[str]:
+    lines: list[str] = []
+    line = ""
+    for word in words:
+        if line and cell_len(line) + 1 + cell_len(word) > _room(lines, width, lead):
+            lines.append(line)
+            line = ""
+        line = f"{line} {word}" if line else word
+        while cell_len(line) > _room(lines, width, lead):
+            piece = _fitting(line, _room(lines, width, lead))
+            lines.append(piece)
+            line = line[len(piece) :]
+    return [*lines, line] if line else lines
 
 
 def _room(lines: list[str], width: int, lead: int) -> int:

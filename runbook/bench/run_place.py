@@ -1,4 +1,4 @@
-"""Keys that are the same wherever a run is stood in: reading, signing, notes, pictures, valves, the rehearsal's clock."""
+"""Keys that are the same wherever a run is stood in: reading, signing, notes, pictures, valves, speed."""
 
 from __future__ import annotations
 
@@ -18,7 +18,7 @@ from runbook.bench.screens.pages import KeysScreen, PicturesScreen
 from runbook.bench.screens.question import Question
 from runbook.bench.screens.read import ReadPanel
 from runbook.bench.screens.state import StatePanel
-from runbook.bench.viewing import picture_view, tags
+from runbook.bench.viewing import next_moment, picture_view, tags
 from runbook.run.acts import Attend
 
 if TYPE_CHECKING:
@@ -48,7 +48,7 @@ class RunPlace(Place[None]):
         super().__init__()
         self.desk = desk
 
-    def on_key(self, event: events.Key) -> None:
+    async def on_key(self, event: events.Key) -> None:
         """A digit typed anywhere opens the reading field with that digit."""
         if event.character is not None and event.character in "0123456789":
             event.stop()
@@ -104,9 +104,13 @@ class RunPlace(Place[None]):
     def action_pace(self, what: str) -> None:
         """The clock of a rehearsal."""
         pace = self.bench.pace
-        if pace is not None:
-            {"slower": pace.slower, "faster": pace.faster, "pause": pace.pause, "jump": pace.jump}[what]()
-            self.bench.changed()
+        if pace is None:
+            return
+        if what == "jump":
+            pace.jump(next_moment(self.desk.standing()))
+        else:
+            {"slower": pace.slower, "faster": pace.faster, "pause": pace.pause}[what]()
+        self.bench.changed()
 
     def action_quiet(self) -> None:
         """The bell has been heard."""

@@ -16,7 +16,7 @@ from typing import Any, Final
 from runbook.answers import BindRequest, Instrument, Plan
 from runbook.codec import to_plain
 from runbook.quantities import pressure_to_unit, to_unit, unit
-from runbook.run.clock import Moment, ScaledClock
+from runbook.run.clock import ScaledClock
 from runbook.run.opening import Participant
 from runbook.run.state import Ledger
 
@@ -24,29 +24,7 @@ SPEEDS: Final = (1.0, 2.0, 5.0, 10.0, 20.0, 60.0, 120.0, 300.0, 600.0)
 """[1] steps of the speed keys."""
 _DEADLINE_S: Final = 10.0
 """[s] for one look."""
-_JUMP_S: Final = 300.0
-"""[s] where nothing is asked for at any known moment."""
-_EARLY_S: Final = 5.0
-"""[s] before it: what is asked for should be on the screen before it is overdue."""
 CHILD: Final = ("-m", "runbook.rehearsal.child")
-
-
-def next_moment(ledger: Ledger, now: Moment) -> float:
-    """How long until something is asked for [s]."""
-    line = ledger.present
-    if line is None:
-        return _JUMP_S
-    good = ledger.last_answer.good_for_s if ledger.last_answer is not None else None
-    waits = []
-    for need in line.reads:
-        longest = min(x for x in (need.every_s, need.fresh_s, good) if x is not None)
-        taken = ledger.in_entry(need.tag)
-        waits.append(longest - now.lasted(taken[-1].at if taken else ledger.entry.at))
-    if line.witness is not None:
-        waits.append(line.witness.wait_s - now.lasted(ledger.entry.at) + _EARLY_S)
-    if line.quick:
-        waits.append(60.0)
-    return max(1.0, min(waits, default=_JUMP_S) - _EARLY_S)
 
 
 def typed_value(value: float, one: Instrument, plan: Plan) -> str:
@@ -67,7 +45,6 @@ class Simulated:
         self.clock = clock
         self._played = {one.name: one.number for one in played}
         self._plan: Plan | None = None
-        self._ledger: Ledger | None = None
         self._shown: dict[str, float] = {}
         self._process: asyncio.subprocess.Process | None = None
         self._looking: asyncio.Task[None] | None = None
@@ -79,8 +56,11 @@ class Simulated:
         self._plan = plan
         try:
             self._process = await asyncio.create_subprocess_exec(
-                sys.executable, *CHILD,
-                stdin=asyncio.subprocess.PIPE, stdout=asyncio.subprocess.PIPE, stderr=asyncio.subprocess.DEVNULL,
+                sys.executable,
+                *CHILD,
+                stdin=asyncio.subprocess.PIPE,
+                stdout=asyncio.subprocess.PIPE,
+                stderr=asyncio.subprocess.DEVNULL,
                 start_new_session=True,
             )
         except OSError:
@@ -145,14 +125,12 @@ class Simulated:
         else:
             self.clock.pause()
 
-    def jump(self) -> None:
-        """To the next moment at which something is asked for."""
-        if self._ledger is not None:
-            self.clock.skip(next_moment(self._ledger, self.clock.now()))
+    def jump(self, seconds: float) -> None:
+        """This much later at once [s]."""
+        self.clock.skip(seconds)
 
     def follow(self, ledger: Ledger) -> None:
         """Look at the simulated vessel, unless a look is under way."""
-        self._ledger = ledger
         if self._plan is None or (self._looking is not None and not self._looking.done()):
             return
         asked = {

@@ -5,9 +5,10 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from runbook.answers import Instrument, Plan
-from runbook.errors import QuantityError
 from runbook.apparatus.dial import DIMENSION
+from runbook.errors import QuantityError
 from runbook.quantities import Level, reading_from_typed
+
 
 @dataclass(frozen=True, slots=True)
 class Understood:

@@ -20,7 +20,7 @@ from runbook.bench.widgets.lines import Lines
 class AskPanel(Panel[str | None]):
     """The text, once `wrong` finds nothing wrong with it; None: left."""
 
-    CSS = """
+    DEFAULT_CSS = """
     AskPanel #entry { height: 1; padding: 0 1; }
     """
     KEYS: ClassVar[Keys] = (("Enter", "take it"), ("Esc", "back"))

@@ -80,8 +80,14 @@ class BriefingScreen(Place[tuple[Bound, BindRequest] | None]):
         if self.bound is not None:
             return briefing_rows(self.bound.plan, self.request, width)
         if self._said:
-            return [EMPTY, *wrapped(" This cannot be used as it stands:", width - 1, "strong"), EMPTY,
-                    *wrapped(self._said, width - 1), EMPTY, *wrapped(" Mend it, then Enter reads it again.", width - 1)]
+            return [
+                EMPTY,
+                *wrapped(" This cannot be used as it stands:", width - 1, "strong"),
+                EMPTY,
+                *wrapped(self._said, width - 1),
+                EMPTY,
+                *wrapped(" Mend it, then Enter reads it again.", width - 1),
+            ]
         return [EMPTY, *wrapped(" Computing the numbers; the first time takes about two seconds.", width - 1)]
 
     # -- keys -------------------------------------------------------------------------------------------

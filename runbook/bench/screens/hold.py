@@ -41,7 +41,7 @@ def own_reading(ledger: Ledger, hold: Hold, signer: str) -> Taken | None:
 class HoldScreen(Place[bool]):
     """True when the hold point was signed."""
 
-    CSS = """
+    DEFAULT_CSS = """
     HoldScreen #entry { height: 1; padding: 0 1; }
     HoldScreen #field { width: 40; }
     """

@@ -44,7 +44,7 @@ HEADINGS = {
 class ListScreen(Place[Entry | None]):
     """The chosen entry; None: leave."""
 
-    CSS = """
+    DEFAULT_CSS = """
     ListScreen OptionList { height: 1fr; border: none; padding: 0 1; background: $background; }
     ListScreen OptionList:focus { border: none; }
     ListScreen #said { padding: 0 1; color: $text-warning; }

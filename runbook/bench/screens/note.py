@@ -28,7 +28,7 @@ _DRAFT = "note"
 class NotePanel(Panel[bool]):
     """True when the note was recorded."""
 
-    CSS = """
+    DEFAULT_CSS = """
     NotePanel #entry { height: 1; padding: 0 1; }
     """
     HEADING = "NOTE"

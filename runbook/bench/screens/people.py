@@ -22,7 +22,7 @@ from runbook.run.opening import Participant
 class PeopleScreen(Place[tuple[Participant, ...] | None]):
     """The people, once they can take every role; None: back."""
 
-    CSS = """
+    DEFAULT_CSS = """
     PeopleScreen .person { height: 1; padding: 0 1; }
     PeopleScreen .person Lines { width: 22; }
     PeopleScreen .name { width: 30; margin: 0 2 0 0; }

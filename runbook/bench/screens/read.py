@@ -31,7 +31,7 @@ if TYPE_CHECKING:
 class ReadPanel(Panel[bool]):
     """True when at least one reading was recorded."""
 
-    CSS = """
+    DEFAULT_CSS = """
     ReadPanel #entry { height: 1; padding: 0 1; }
     ReadPanel #field { width: 40; }
     """

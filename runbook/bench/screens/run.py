@@ -45,7 +45,7 @@ RUN_KEYS: Keys = (
 class RunScreen(RunPlace):
     """Where a run is stood in from the first step to the last."""
 
-    CSS = """
+    DEFAULT_CSS = """
     RunScreen { layers: base small; layout: vertical; overflow: hidden; }
     RunScreen .rule { color: $text-muted; }
     RunScreen #words { width: 1fr; }
@@ -135,9 +135,10 @@ class RunScreen(RunPlace):
         if ledger.gap_open:
             if GapScreen not in up:
                 self.app.push_screen(GapScreen(self.desk))
-        elif line is not None and line.quick and len(ledger.entry.quick) < len(line.quick):
-            if QuickScreen not in up:
-                self.app.push_screen(QuickScreen(self.desk))
+            return
+        items_left = line is not None and len(ledger.entry.quick) < len(line.quick)
+        if items_left and QuickScreen not in up:
+            self.app.push_screen(QuickScreen(self.desk))
 
     def make_view(self) -> RunView:
         """What the run has to show now."""
@@ -158,7 +159,7 @@ class RunScreen(RunPlace):
                 case "ask":
                     rows = bands.ask(view.ask, width, glyphs)
                 case "alone":
-                    rows = bands.alone(view.alone, width)
+                    rows = bands.alone(view.alone, width, height)
                 case "ceiling":
                     rows = bands.ceiling(view.ceiling, width, height, glyphs)
                 case "see":

@@ -12,8 +12,8 @@ from textual.widget import Widget
 
 from runbook.bench.acting import do
 from runbook.bench.place import Keys
-from runbook.bench.run_place import RunPlace
 from runbook.bench.rows import EMPTY, Row, beside, padded, row, wrapped
+from runbook.bench.run_place import RunPlace
 from runbook.bench.style import ARM_S
 from runbook.bench.widgets.lines import Lines
 from runbook.run.acts import Act, Finish, MakeSafe, SafeActDone
@@ -80,8 +80,13 @@ class SafeScreen(RunPlace):
         if ledger.halted:
             rows += [EMPTY, *wrapped(f" THE RUN IS HALTED: {ledger.halted}", width - 1, "blocked")]
         seen = row(
-            "   If you see: ", ("G", "key"), " gas escaping   ", ("W", "key"), " a mark on a window   ",
-            ("F", "key"), " fire, alarm, somebody hurt",
+            "   If you see: ",
+            ("G", "key"),
+            " gas escaping   ",
+            ("W", "key"),
+            " a mark on a window   ",
+            ("F", "key"),
+            " fire, alarm, somebody hurt",
         )
         rows += [EMPTY, seen]
         return rows + (wrapped(f" {self._said}", width - 1, "blocked") if self._said else [])

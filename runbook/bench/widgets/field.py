@@ -36,7 +36,7 @@ class Field(Input):
             """For `@on(Field.Typed, '#id')`."""
             return self.field
 
-    def __init__(self, text: str = "", *, id: str, hidden: bool = False, hint: str = "") -> None:  # noqa: A002 - Textual's own name
+    def __init__(self, text: str = "", *, id: str, hidden: bool = False, hint: str = "") -> None:
         """A field that begins with `text`; `hidden` shows dots instead of what is typed."""
         super().__init__(value=text, id=id, password=hidden, placeholder=hint, select_on_focus=False, compact=True)
 

@@ -17,7 +17,7 @@ class Line(Widget):
     Line { width: 1fr; height: 1; }
     """
 
-    def __init__(self, make: Callable[[int], Row], *, id: str | None = None) -> None:  # noqa: A002 - Textual's own name
+    def __init__(self, make: Callable[[int], Row], *, id: str | None = None) -> None:
         """`make(width)` gives the row."""
         super().__init__(id=id)
         self._make = make

@@ -18,7 +18,7 @@ class Lines(Widget):
     Lines { width: 1fr; height: auto; }
     """
 
-    def __init__(self, make: Callable[[int], list[Row]] | None = None, *, id: str | None = None) -> None:  # noqa: A002 - Textual's own name
+    def __init__(self, make: Callable[[int], list[Row]] | None = None, *, id: str | None = None) -> None:
         """`make(width)` gives the rows; None: nothing yet."""
         super().__init__(id=id)
         self._make = make

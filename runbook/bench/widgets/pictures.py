@@ -46,7 +46,7 @@ class Pictures(Widget):
     Pictures { width: 1fr; height: 1fr; padding: 0 0 0 2; }
     """
 
-    def __init__(self, glyphs: Glyphs, *, id: str | None = None) -> None:  # noqa: A002 - Textual's own name
+    def __init__(self, glyphs: Glyphs, *, id: str | None = None) -> None:
         """Nothing yet."""
         super().__init__(id=id)
         self._glyphs = glyphs

@@ -40,16 +40,18 @@ def fold(ledger: Ledger, event: Event, at: Moment) -> Ledger:
     ledger = _HANDLERS[type(event)](ledger, event, at)
     if type(event) in _NO_FACTS:
         return ledger
+    key = ledger.key
     if type(event) not in _ANSWERS:
-        if was_open and ledger.plan is not None and ledger.seen.since and closed(ledger) != "open":
+        if was_open and ledger.seen.since and closed(ledger) != "open":
             # Closed anew: what was measured after an earlier closing was of another charge.
-            ledger = replace(ledger, seen=replace(ledger.seen, since=(), wants_beside=False))
-            ledger = replace(ledger, observations_json=observations_json(ledger.seen))
-        ledger = replace(ledger, key=key_of(ledger))
-    known = ledger.answer is not None
-    if known == (ledger.unknown_since is None):
+            seen = replace(ledger.seen, since=(), wants_beside=False)
+            ledger = replace(ledger, seen=seen, observations_json=observations_json(seen))
+        key = key_of(ledger)
+    known = isinstance(ledger.answers.get(key), Answer)
+    unknown_since = None if known else at if ledger.unknown_since is None else ledger.unknown_since
+    if key == ledger.key and unknown_since == ledger.unknown_since:
         return ledger
-    return replace(ledger, unknown_since=None if known else at)
+    return replace(ledger, key=key, unknown_since=unknown_since)
 
 
 def fold_all(pairs: Iterable[tuple[Event, Moment]]) -> Ledger:
@@ -183,20 +185,20 @@ def _source(ledger: Ledger, event: ev.SourceStated, at: Moment) -> Ledger:
 
 
 def _answered(ledger: Ledger, event: ev.Answered, at: Moment) -> Ledger:
-    ledger = replace(ledger, last_answer=event.answer)
-    return _remember(ledger, event.answer)
+    return replace(ledger, last_answer=event.answer, answers=_with(ledger, event.answer))
 
 
 def _no_answer(ledger: Ledger, event: ev.NoAnswer, at: Moment) -> Ledger:
-    return _remember(ledger, event.unanswered)
+    return replace(ledger, answers=_with(ledger, event.unanswered))
 
 
-def _remember(ledger: Ledger, found: Answer | Unanswered) -> Ledger:
+def _with(ledger: Ledger, found: Answer | Unanswered) -> dict[str, Answer | Unanswered]:
+    """The answers that are remembered with a new one."""
     answers = {key: value for key, value in ledger.answers.items() if key != found.key}
     while len(answers) >= REMEMBERED:
         del answers[next(iter(answers))]
     answers[found.key] = found
-    return replace(ledger, answers=answers)
+    return answers
 
 
 def _turned(ledger: Ledger, event: ev.TurnedBack, at: Moment) -> Ledger:

@@ -11,10 +11,15 @@ from dataclasses import dataclass
 
 from runbook.answers import ChargeBox, Observation
 from runbook.apparatus.instruments import permissible_error
-from runbook.assess.scene import Scene
+from runbook.assess.scene import GAS_CONSTANT, Scene
 from runbook.charge.filling import mass_from_height
 from runbook.charge.geometry import Shape, ShapeKind
 from runbook.errors import RunbookError
+
+GAS_LEFT = "gas left"
+"""What a box rests on that was inferred after letting down: never what the charge record keeps."""
+_FAR_BELOW = 0.5
+"""Share of the saturation pressure under which neither liquid nor solid stays [1]."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -138,6 +143,29 @@ def viewed_shape(scene: Scene) -> Shape:
     """
     apparatus = scene.apparatus
     return Shape(ShapeKind(apparatus.shape), apparatus.diameter.value, apparatus.volume.free.value)
+
+
+def gas_left(
+    scene: Scene, box: ChargeBox, temperature: Observation | None, pressure: Observation | None
+) -> ChargeBox | None:
+    """What is left after letting down when the vent is shut again: gas alone, where the readings say so.
+
+    Far below the saturation pressure at the wall's temperature neither liquid nor solid can stay. None where
+    the readings do not say that; then everything may still be in.
+    """
+    if temperature is None or pressure is None:
+        return None
+    highest = pressure.value + _error(scene, pressure) + (scene.barometer.high_Pa - scene.barometer.middle_Pa)
+    coldest = temperature.value - _error(scene, temperature)
+    fluid = scene.substance
+    if not fluid.triple_temperature < coldest < fluid.critical_temperature:
+        return None
+    if highest > _FAR_BELOW * fluid.saturation(coldest).pressure:
+        return None
+    # Real gas below saturation is denser than an ideal one by less than the share it may come near to it.
+    density = highest * fluid.molar_mass / (GAS_CONSTANT * coldest) / (1.0 - _FAR_BELOW)
+    most = density * scene.volume[1]
+    return ChargeBox(0.0, min(most, box.high_kg), box.proved, (GAS_LEFT,), box.contradiction)
 
 
 def _error(scene: Scene, one: Observation) -> float:

@@ -19,7 +19,7 @@ from runbook.answers import (
 from runbook.apparatus.spaces import isolated
 from runbook.assess.agreement import Computed, agreement, computed_pressure, reading_U
 from runbook.assess.ahead import look, standing_valves
-from runbook.assess.boxes import charge_box
+from runbook.assess.boxes import charge_box, gas_left
 from runbook.assess.corners import Worst, temperature_at_pressure
 from runbook.assess.futures import CONNECTED, left_alone
 from runbook.assess.limits import (
@@ -53,8 +53,11 @@ class Readings:
 def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     """Everything the interlock leans on. Raises OutsideValidity nowhere: unknown is part of the answer."""
     box = charge_box(scene, question.charge, question.observations, question.closed != "open")
-    state = _state(scene, lines, question, box)
     readings = _readings(scene, question)
+    after_letting_down = question.line >= 0 and lines[question.line].during.letting_down
+    if box is not None and after_letting_down and question.closed != "open":
+        box = gas_left(scene, box, readings.temperature, readings.pressure) or box
+    state = _state(scene, lines, question, box)
     rate = worst_rate(scene, state, lines[question.line] if question.line >= 0 else None)
     wall = _wall(scene, state, readings.temperature, rate)
     state = replace(state, hot=wall[1], cold=wall[0])

@@ -218,7 +218,11 @@ class Conductor:
             asked = question(self.plan, self.ledger)
             if asked is None or self.ledger.answer is not None:
                 return
-            found = await self.engine.ask(asked)
+            try:
+                found = await self.engine.ask(asked)
+            except Exception as error:
+                # Whatever went wrong in the physics, the answer is unknown and the run goes on knowing that.
+                found = Unanswered(asked.key, f"{type(error).__name__}: {error}")
             self._tried = (asked.key, self.clock.now())
             if asked.key != self.ledger.key:
                 continue

@@ -113,7 +113,8 @@ def _after(before: ChargeRecord | None, ledger: Ledger, sealed: bool, record: Re
     answer = ledger.last_answer
     if not sealed or ledger.plan is None or answer is None or answer.charge is None:
         return before
-    if closed(ledger) == "open" and before is not None:
+    if before is not None and (closed(ledger) == "open" or "gas left" in answer.charge.by):
+        # Letting down has begun: until all four proofs are made, what was sealed in may still be there.
         return before
     return ChargeRecord(answer.charge, ledger.plan.fluid, record.at, ledger.plan.procedure)
 

@@ -67,9 +67,7 @@ def test_an_over_filled_plan_is_outside_limits(tmp_path: Path, capsys: pytest.Ca
     assert any("RD1" in f["message"] and "heat stuck on" in f["message"] for f in found["findings"])
 
 
-def test_a_file_that_cannot_be_read_exits_2_with_a_position(
-    tmp_path: Path, capsys: pytest.CaptureFixture[str]
-) -> None:
+def test_a_file_that_cannot_be_read_exits_2_with_a_position(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     """A wrong unit: verdict unreadable, steps empty, every finding located."""
     code, found = checked(changed_files(tmp_path, {"mass: 117 g ± 2 g": "mass: 117 bar ± 2 g"}), capsys)
     assert (code, found["verdict"], found["steps"]) == (2, "unreadable", [])
@@ -77,9 +75,7 @@ def test_a_file_that_cannot_be_read_exits_2_with_a_position(
     assert all(f["line"] > 0 and f["column"] > 0 for f in found["findings"])
 
 
-def test_the_text_form_puts_findings_first_with_their_place(
-    tmp_path: Path, capsys: pytest.CaptureFixture[str]
-) -> None:
+def test_the_text_form_puts_findings_first_with_their_place(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     """file:line:column, severity, what; then the verdict with who approved the figures."""
     path = changed_files(tmp_path, {"mass: 117 g ± 2 g": "mass: 180 g ± 2 g"})
     assert main([str(path), *ON]) == 1

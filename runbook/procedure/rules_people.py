@@ -71,11 +71,12 @@ def performer(procedure: Procedure) -> str:
 def _own_work(procedure: Procedure, lines: tuple[Line, ...], i: int, step: HoldStep) -> Iterator[Found]:
     signer = step.hold.signed_by
     done = [_who(procedure, line) for line in lines]
-    if signer in {w for w in done[max(0, i - 1) : i + 2] if w is not None}:
+    if signer in _signed_for(lines, done, i):
         yield Found(
             "signs own work",
             (*lines[i].route, "hold", "signed_by"),
-            f"'{signer}' performs the step beside this hold: who performed never signs, name another role",
+            f"'{signer}' performs one of the steps this hold signs for, those since the hold before it or the "
+            "beginning of the part: who performed never signs, name another role",
         )
     elif {w for w in done if w is not None} == {signer}:
         yield Found(
@@ -83,6 +84,16 @@ def _own_work(procedure: Procedure, lines: tuple[Line, ...], i: int, step: HoldS
             (*lines[i].route, "hold", "signed_by"),
             f"'{signer}' performs every step: a hold is signed by somebody else",
         )
+
+
+def _signed_for(lines: tuple[Line, ...], done: list[str | None], i: int) -> set[str]:
+    """Roles that perform what hold i signs for: since the hold before it, or the beginning of its part."""
+    found: set[str] = set()
+    for n in range(i - 1, -1, -1):
+        if isinstance(lines[n].step, HoldStep) or lines[n].route[:2] != lines[i].route[:2]:
+            break
+        found |= {role for role in (done[n],) if role is not None}
+    return found
 
 
 def _who(procedure: Procedure, line: Line) -> str | None:

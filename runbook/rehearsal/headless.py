@@ -162,4 +162,4 @@ class _Run:
     def _said(self) -> str:
         if self.last_reason is None:
             return "nothing more happened"
-        return reason_words(self.conductor.plan, self.last_reason)
+        return reason_words(self.conductor.plan, self.conductor.ledger, self.last_reason)

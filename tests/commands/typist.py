@@ -18,6 +18,7 @@ from runbook.run.clock import FakeClock
 from runbook.run.conductor import Conductor
 from runbook.run.journal import Journal, JournalWriter
 from runbook.run.opening import people, run_opened
+from runbook.run.proofs import not_proved
 from runbook.run.state import Ledger
 
 
@@ -99,6 +100,8 @@ class Typist(Input):
                 return f"valve {tag} {position}"
             case acts.MakeSafe():
                 return "safe"
+            case acts.Prove(proof=proof) if not_proved(self._desk.ledger, self._desk.clock.now(), proof):
+                return "wait 0.4"
             case _:
                 return "done"
 

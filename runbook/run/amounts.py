@@ -87,7 +87,10 @@ def reading(plan: Plan, tag: str, value: float | None, symbol: str = "") -> str:
     found = unit(shown)
     if found.reference is not None:
         return say_level(value, shown, plan.barometer, _digits(shown))
-    return say(value, shown, _decimals(dial.half_division if dial is not None else 0.0, found.factor))
+    text = say(value, shown, _decimals(dial.half_division if dial is not None else 0.0, found.factor))
+    number, _, rest = text.partition(" ")
+    # A whole number is no less exact on a dial whose half divisions are not whole.
+    return f"{number.rstrip('0').rstrip('.') if '.' in number else number} {rest}"
 
 
 def uncertainty(plan: Plan, tag: str, U: float) -> str:

@@ -6,7 +6,7 @@ from typing import Any
 
 import pytest
 
-from runbook.answers import Need, Phase
+from runbook.answers import Need, Phase, Unanswered
 from runbook.run import acts
 from runbook.run.acts import Act
 from runbook.run.decide import decide
@@ -16,6 +16,7 @@ from runbook.run.events import (
     Halted,
     LeftTool,
     MadeSafe,
+    NoAnswer,
     Noted,
     QuickConfirmed,
     ReadingTaken,
@@ -172,8 +173,8 @@ def test_make_safe_is_never_refused() -> None:
     made = plan(line(1, raises=True))
     assert isinstance(decide(made, Ledger.start(), begun(made).clock.now(), acts.MakeSafe()), MadeSafe)
     run = begun(made)
-    for change in (lambda: None, run.lost, lambda: run.put(GapOpened("x")), lambda: run.put(Halted("x"))):
-        change()
+    for event in (NoAnswer(Unanswered(run.ledger.key, "x")), GapOpened("x"), Halted("x")):
+        run.put(event)
         for seen in ("", "relief", "window", "fire"):
             assert isinstance(run.must(acts.MakeSafe(seen)), MadeSafe)
 

@@ -213,6 +213,14 @@ def test_gap_answers_are_of_known_words() -> None:
     assert run.ledger.source == "do not know"
 
 
+def test_before_the_first_event_nothing_but_make_safe() -> None:
+    """Without an open run there is nothing to read into."""
+    run = Run(plan(line(1)))
+    for act in EVERY:
+        assert run.codes(act) == ["run not opened"]
+    assert run.act(acts.Tick()) is None
+
+
 # -- the clock ---------------------------------------------------------------------------------------------
 
 
@@ -273,6 +281,14 @@ def test_an_overdue_reading_makes_margins_unknown(fresh: float, every: float, go
     assert run.act(acts.Tick()) is None
     run.clock.advance(1.0)
     assert isinstance(run.must(acts.Tick()), TurnedBack)
+
+
+def test_a_reading_asked_once_is_never_overdue() -> None:
+    """What is read at the end of a step makes nothing unknown while the step lasts."""
+    run = raising(reads=(BS1,))
+    run.answered(good_for_s=None)
+    run.clock.advance(1e4)
+    assert run.act(acts.Tick()) is None
 
 
 def test_the_first_line_is_not_turned_back_before_it_is_entered() -> None:

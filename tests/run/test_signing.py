@@ -50,6 +50,7 @@ def test_performers_are_those_since_the_hold_before() -> None:
     made = plan(line(1, who="second"), hold(), line(3, who="teacher"), quick(), hold(), line(6, who="second"))
     assert performers(made, 4) == {"teacher", "performer"}
     assert performers(made, 1) == {"second"}
+    assert performers(plan(line(1), hold()), 1) == frozenset()
 
 
 def test_a_measuring_hold_wants_two_readings() -> None:
@@ -98,6 +99,15 @@ def test_a_third_reading_decides() -> None:
     run.read("HS1", 0.0315, by="Bo", blind=True)
     assert run.codes(SIGN) == ["readings differ"]
     run.read("HS1", 0.0315, by="Cy")
+    assert run.codes(SIGN) == []
+
+
+def test_a_third_of_the_signers_own_may_bear_the_other_out() -> None:
+    """The signer reads again in sight and comes to what the other read: then the blind one was wrong."""
+    run = at_hold(measuring=True)
+    run.read("HS1", 0.0275)
+    run.read("HS1", 0.0315, by="Bo", blind=True)
+    run.read("HS1", 0.0275, by="Bo")
     assert run.codes(SIGN) == []
 
 

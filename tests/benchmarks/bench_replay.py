@@ -1,7 +1,7 @@
 """How long a run of ten thousand events takes to be folded again, alone and from the lines of its journal.
 
-Run by hand: `python tests/benchmarks/bench_replay.py`. It ends with an error where the
-property library was loaded for it. The time from the journal's lines has reading, marks and validation in it, which dominate.
+Run by hand: `python tests/benchmarks/bench_replay.py`. It ends with an error where the property library was loaded
+for it. The time from the journal's lines has reading, marks and validation in it, which dominate.
 """
 
 from __future__ import annotations

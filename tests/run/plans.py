@@ -69,6 +69,7 @@ INSTRUMENTS = (
     instrument("TT1", "temperature", "degC", 193.15, 373.15, 0.3, 0.05),
     instrument("BS1", "mass", "g", 0.0, 3.0, 0.0005, 0.00005),
     instrument("HS1", "liquid height", "mm", 0.0, 0.08, 0.001, 0.0005),
+    instrument("GD1", "carbon dioxide", "%", 0.0, 0.05, 0.001, 0.00005),
 )
 
 

@@ -271,6 +271,15 @@ def test_after_a_gap_how_warm_it_was_does_not_count() -> None:
     assert carried(run, "BS1") == [0.120, 0.118]
 
 
+def test_the_air_of_the_room_is_no_part_of_a_question() -> None:
+    """What a gas meter shows changes nothing that is computed of the vessel."""
+    run = begun(plan(line(1)))
+    key = run.ledger.key
+    run.read("GD1", 0.002)
+    assert carried(run, "GD1") == []
+    assert run.ledger.key == key
+
+
 def test_no_question_before_the_beginning_and_after_the_end() -> None:
     """Nothing is asked where there is no run."""
     made = plan(replace(line(1), kind=LineKind.DO))

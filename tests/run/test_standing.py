@@ -8,7 +8,7 @@ import pytest
 
 from runbook.answers import Judgement, Need
 from runbook.run import acts
-from runbook.run.events import GapOpened, Halted, TurnedBack
+from runbook.run.events import GapOpened, Halted, MadeSafe, RunClosed, TurnedBack
 from runbook.run.standing import Standing, standing
 from tests.run.plans import (
     AGREES,
@@ -138,6 +138,43 @@ def test_what_a_hold_and_a_proof_want() -> None:
     assert [(w.need.tag, w.purpose) for w in look(proving).wanted] == [("TT1", "proof")]
 
 
+def test_nothing_is_wanted_where_nothing_goes_on() -> None:
+    """Make safe, a halted and an ended run ask for no reading."""
+    for event in (Halted("x"), RunClosed("halted"), MadeSafe("C", ("HEAT OFF.",), "Never.", "")):
+        run = begun(plan(line(1, reads=(PG1,))))
+        run.must(acts.GoOn())
+        assert look(run).wanted
+        run.put(event)
+        assert look(run).wanted == ()
+
+
+def test_readings_after_a_quick_sequence_are_wanted_after_it() -> None:
+    """Nobody is asked to type while the sequence runs."""
+    run = begun(plan(quick(read_after=(BS1,))))
+    run.must(acts.GoOn())
+    assert look(run).wanted == ()
+    run.must(acts.QuickDone(0))
+    assert look(run).wanted == ()
+    run.must(acts.QuickDone(1))
+    assert [w.need.tag for w in look(run).wanted] == ["BS1"]
+
+
+def test_a_blind_reading_that_is_in_is_not_wanted_again() -> None:
+    """Once the signer has read, and once the hold is signed, nothing more is asked for."""
+    run = begun(plan(hold(read=HS1)))
+    run.must(acts.GoOn())
+    run.read("HS1", 0.030, by="Bo", blind=True)
+    assert look(run).wanted == ()
+
+
+def test_a_proof_of_an_instrument_nobody_has_wants_nothing() -> None:
+    """A plan that names a gauge the vessel lacks does not end in an error on the screen."""
+    run = begun(plan(empty(), instruments=()))
+    run.must(acts.GoOn())
+    run.must(acts.Prove("vent"))
+    assert look(run).wanted == ()
+
+
 def test_a_reading_out_of_range_is_wanted_again() -> None:
     """What was read outside its range is asked for again, with what to do."""
     run = begun(plan(line(1, reads=(BS1,)), line(2)))
@@ -161,6 +198,11 @@ def test_the_ruler_has_now_worst_and_ceiling() -> None:
     unknown = look(run).ceiling
     assert (unknown.now, unknown.judgement) == (None, Judgement.BLOCKED)
     assert unknown.ceiling == ROOM + 94.8e5
+    gone = (margin(-1e5), margin(2e5, judgement=Judgement.NARROW))
+    assert look(warming(now=gone)).ceiling.judgement is Judgement.BLOCKED
+    assert look(warming(now=gone[1:])).ceiling.judgement is Judgement.NARROW
+    open_vessel = look(warming(now=())).ceiling
+    assert (open_vessel.judgement, open_vessel.ceiling) == (Judgement.CLEAR, ROOM + 94.8e5)
 
 
 def test_left_alone_is_the_answers_else_the_plans() -> None:
@@ -259,6 +301,33 @@ def test_unknown_margins_count_down_to_the_way_back() -> None:
     run.clock.advance(30.0)
     assert look(run).unknown_s == pytest.approx(30.0)
     assert look(run).unknown_left_s == pytest.approx(70.0)
+
+
+def test_nothing_counts_down_where_nothing_can_be_turned_back() -> None:
+    """Before the first line, turned back and in make safe no way back is announced."""
+    run = begun(plan(line(1, raises=True)))
+    run.clock.advance(30.0)
+    assert look(run).unknown_left_s is None
+    run = warming(good_for_s=100.0)
+    run.read("PG1", ROOM + 63e5)
+    run.clock.advance(30.0)
+    run.put(TurnedBack(1, "RD1"))
+    assert look(run).unknown_left_s is None
+
+
+def test_make_safe_stays_as_it_was_begun() -> None:
+    """The acts on the screen are those of the event, whatever phase comes after."""
+    run = warming()
+    run.must(acts.MakeSafe("window"))
+    run.answered()
+    seen = look(run).safe
+    assert (seen.phase, seen.may_wait) == ("I", "no")
+    assert seen.acts[0].startswith("HEAT OFF")
+
+
+def test_only_where_emptiness_is_shown_are_there_proofs() -> None:
+    """Other steps show none."""
+    assert look(warming()).proofs == ()
 
 
 def test_make_safe_is_always_ready() -> None:

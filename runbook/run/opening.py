@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import hashlib
 from collections.abc import Iterable
 from dataclasses import dataclass
 
@@ -14,6 +13,7 @@ from runbook.run.journal import Record
 from runbook.run.ledger import Ledger, fold
 from runbook.run.logbook import Logbook, RunFile
 from runbook.run.questions import closed
+from runbook.run.signing import number_sha256
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,11 +36,6 @@ class ChargeRecord:
     """UTC of the last event that said so."""
     procedure: str
     """Of the run that left it so."""
-
-
-def number_sha256(name: str, number: str) -> str:
-    """How a signing number stands in the record: SHA-256 of 'name:number'."""
-    return hashlib.sha256(f"{name}:{number}".encode()).hexdigest()
 
 
 def people(participants: Iterable[Participant], roles: tuple[str, ...]) -> tuple[Person, ...]:

@@ -40,8 +40,9 @@ def _on_dial(route: Route, read: ReadStep, one: Instrument) -> Iterator[Found]:
     low, high = _ends(read)
     bottom, top = _number(one.dial.low), _number(one.dial.high)
     for end in (low, high):
-        # A gauge's own error about its zero lies below the first mark and is read there as 'at its pin'.
-        slack = permissible_error(one, end) if end is not None and one.reads == "pressure" else 0.0
+        # A zero check accepts what the gauge may be off, which lies below its first mark: half a division is read.
+        off = permissible_error(one, bottom) + one.division.value / 2.0
+        slack = off * (1.0 + 1e-9) if one.reads == "pressure" else 0.0
         if end is not None and not bottom - slack - 1e-9 * abs(bottom) <= end <= top * (1.0 + 1e-12):
             yield Found(
                 "reading outside dial",

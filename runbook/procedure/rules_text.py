@@ -15,138 +15,17 @@ from runbook.procedure.document import Route
 from runbook.procedure.lines import Found, lines_of, texts_of
 from runbook.procedure.model import DoStep, Procedure, QuickStep, StepWarning
 
-VERBS: Final = frozenset(
-    [
-        "add",
-        "adjust",
-        "allow",
-        "apply",
-        "ask",
-        "attach",
-        "begin",
-        "blow",
-        "bring",
-        "brush",
-        "call",
-        "carry",
-        "check",
-        "clamp",
-        "clean",
-        "clear",
-        "close",
-        "collect",
-        "compare",
-        "confirm",
-        "connect",
-        "cool",
-        "count",
-        "cover",
-        "darken",
-        "detach",
-        "disconnect",
-        "do",
-        "dry",
-        "drain",
-        "dim",
-        "drop",
-        "empty",
-        "fill",
-        "fit",
-        "fix",
-        "follow",
-        "give",
-        "go",
-        "hang",
-        "heat",
-        "insert",
-        "install",
-        "keep",
-        "leave",
-        "let",
-        "lift",
-        "light",
-        "listen",
-        "load",
-        "lock",
-        "loosen",
-        "look",
-        "lower",
-        "make",
-        "mark",
-        "measure",
-        "mount",
-        "move",
-        "note",
-        "observe",
-        "open",
-        "place",
-        "plug",
-        "point",
-        "pour",
-        "press",
-        "prove",
-        "pull",
-        "purge",
-        "push",
-        "put",
-        "raise",
-        "read",
-        "record",
-        "release",
-        "remove",
-        "repeat",
-        "replace",
-        "report",
-        "reset",
-        "return",
-        "rinse",
-        "rotate",
-        "screw",
-        "seal",
-        "send",
-        "set",
-        "shake",
-        "show",
-        "shut",
-        "slide",
-        "stand",
-        "start",
-        "step",
-        "stir",
-        "stop",
-        "store",
-        "swap",
-        "sweep",
-        "switch",
-        "tag",
-        "take",
-        "tap",
-        "tare",
-        "tell",
-        "test",
-        "tie",
-        "tighten",
-        "tilt",
-        "touch",
-        "turn",
-        "undo",
-        "unplug",
-        "unscrew",
-        "use",
-        "vent",
-        "ventilate",
-        "verify",
-        "wait",
-        "warm",
-        "wash",
-        "watch",
-        "wear",
-        "weigh",
-        "wipe",
-        "write",
-    ]
-)
+_VERBS: Final = """add adjust allow apply ask attach begin blow bring brush call carry check clamp clean clear close
+collect compare confirm connect cool count cover darken detach disconnect do dry drain dim drop empty fill find
+fit fix follow give go hang have heat insert install keep lead leave let lift light listen load lock loosen look lower make
+mark measure mount move note observe open place plug point pour press prove pull purge push put raise read
+record release remove repeat replace report reset return rinse rotate screw seal send set shake show shut slide
+stand start step stir stop store swap sweep switch tag take tap tare tell test tie tighten tilt touch turn undo
+unplug unscrew use vent ventilate verify wait warm wash watch wear weigh wipe write"""
+VERBS: Final = frozenset(_VERBS.split())
 """Verbs a step may begin with."""
+_NO_ACT: Final = frozenset({"let", "wait", "watch", "step", "leave"})
+"""Verbs that go on with the act before them."""
 _CONDITIONS: Final = ("if", "when", "while", "until", "once", "where", "before", "after", "with", "do", "never")
 _MODAL: Final = re.compile(
     r"\b(should|must|shall|may|is to|are to)\b(\s+not)?\s+(be\b|have\b|[a-z]+ed\b)", re.IGNORECASE
@@ -166,8 +45,9 @@ def wording(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
     """Rules 'verb first', 'one act', 'active voice', 'number instead', 'condition first' and 'long sentence'."""
     del apparatus
     for route, text in texts_of(procedure):
-        for sentence in _sentences(text):
-            yield from _one(route, sentence, is_step=route[-1] == "do")
+        for i, sentence in enumerate(_sentences(text)):
+            # The first says what to do; what follows may say why.
+            yield from _one(route, sentence, is_step=route[-1] == "do", first=i == 0)
 
 
 def messages(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
@@ -196,8 +76,8 @@ def messages(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
         )
 
 
-def _one(route: Route, sentence: str, is_step: bool) -> Iterator[Found]:
-    if not _is_act(sentence):
+def _one(route: Route, sentence: str, is_step: bool, first: bool) -> Iterator[Found]:
+    if first and not _is_act(sentence):
         yield Found(
             "verb first",
             route,
@@ -205,7 +85,7 @@ def _one(route: Route, sentence: str, is_step: bool) -> Iterator[Found]:
             "warning",
         )
     doubled = re.search(r"(?:,| and| then|;)\s+([a-z]+)\s+(?:the|it|[A-Z])", sentence)
-    if is_step and doubled is not None and doubled[1] in VERBS:
+    if is_step and doubled is not None and doubled[1] in VERBS - _NO_ACT:
         yield Found(
             "one act", route, f"two acts in one step ('{doubled[1]}' begins the second): make two steps", "advice"
         )

@@ -25,7 +25,7 @@ def protection(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
     read = {r.with_ for line in lines_of(procedure) for _, r in readings_of(line)}
     moved = {tag for line in lines_of(procedure) for _, valves, _, _ in acts_of(line) for tag in valves}
     moved |= set(procedure.at_start)
-    guards = [(d.tag, d.kind) for d in apparatus.relief]
+    guards: list[tuple[str, str]] = [(d.tag, d.kind) for d in apparatus.relief]
     guards += [(i.tag, i.reads + " meter") for i in apparatus.instruments if i.of == "room air"]
     for tag, what in guards:
         if tag not in read and tag not in moved and tag not in said:

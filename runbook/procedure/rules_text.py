@@ -17,8 +17,8 @@ from runbook.procedure.model import DoStep, Procedure, QuickStep, StepWarning
 
 _VERBS: Final = """add adjust allow apply ask attach begin blow bring brush call carry check clamp clean clear close
 collect compare confirm connect cool count cover darken detach disconnect do dry drain dim drop empty fill find
-fit fix follow give go hang have heat insert install keep lead leave let lift light listen load lock loosen look lower make
-mark measure mount move note observe open place plug point pour press prove pull purge push put raise read
+fit fix follow give go hang have heat insert install keep lead leave let lift light listen load lock loosen look lower
+make mark measure mount move note observe open place plug point pour press prove pull purge push put raise read
 record release remove repeat replace report reset return rinse rotate screw seal send set shake show shut slide
 stand start step stir stop store swap sweep switch tag take tap tare tell test tie tighten tilt touch turn undo
 unplug unscrew use vent ventilate verify wait warm wash watch wear weigh wipe write"""

@@ -16,6 +16,7 @@ COMMANDS = {
     "check": "prove procedures within their vessels' limits",
     "state": "the state of a charge at a temperature",
     "new": "write a commented start of a file",
+    "schema": "what an editor needs to help while a file is written",
     "logbook": "list, show and verify what was recorded",
     "about": "versions and a self-check",
 }

@@ -1,0 +1,55 @@
+"""`runbook new apparatus|procedure [FILE]`: a commented start of a file. Never writes over anything."""
+
+from __future__ import annotations
+
+import os
+import sys
+from pathlib import Path
+
+from runbook.commands.arguments import Arguments
+from runbook.errors import ExitCode, InputUnusable
+
+_NAMES = {"apparatus": "apparatus/my-vessel.yaml", "procedure": "my-demonstration.yaml"}
+"""Where a start goes when no file is named: so that the two find each other."""
+
+
+_OR = " or ".join(_NAMES.values())
+
+
+def main(argv: list[str]) -> int:
+    """Write the start and say what to do next; returns the exit code."""
+    parser = Arguments(prog="runbook new", description=__doc__)
+    parser.add_argument("kind", choices=sorted(_NAMES), help="what to write")
+    parser.add_argument("file", nargs="?", metavar="FILE", help=f"where (default: {_OR})")
+    asked = parser.parse_args(argv)
+    path = Path(asked.file or _NAMES[asked.kind])
+    _write(path, _text(asked.kind, path))
+    print(path)
+    then = "then run: runbook check" if asked.kind == "procedure" else "then write: runbook new procedure"
+    print(f"Replace every figure in {path} by yours, {then}", file=sys.stderr)
+    return int(ExitCode.GOOD)
+
+
+def _text(kind: str, path: Path) -> str:
+    from runbook.procedure.start import APPARATUS, PROCEDURE
+
+    if kind == "apparatus":
+        return APPARATUS
+    beside = sorted((path.parent / "apparatus").glob("*.yaml"))
+    # With one vessel beside it there is nothing to choose.
+    name = beside[0].name if len(beside) == 1 else Path(_NAMES["apparatus"]).name
+    return PROCEDURE.format(apparatus=f"apparatus/{name}")
+
+
+def _write(path: Path, text: str) -> None:
+    try:
+        path.parent.mkdir(parents=True, exist_ok=True)
+        with path.open("x", encoding="utf-8") as file:
+            file.write(text)
+            file.flush()
+            os.fsync(file.fileno())
+    except FileExistsError:
+        raise InputUnusable(f"{path} exists already and is left as it is: name another file") from None
+    except (OSError, ValueError) as error:
+        why = getattr(error, "strerror", None) or "its name cannot be used"
+        raise InputUnusable(f"{path} cannot be written: {why}") from None

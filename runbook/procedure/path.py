@@ -139,7 +139,9 @@ def _verb(given: Any) -> str | None:
     elif isinstance(given, str):
         found = [given] if given in WORDS else []
     elif isinstance(given, dict):
-        found = [key for key in given if key in VERBS and (key not in WORDS or key == "open_containment")]
+        found = [key for key in given if key in VERBS]
+        if len(found) == 1 and found[0] in WORDS and found[0] != "open_containment":
+            found = []
     else:
         found = []
     return f"({found[0]})" if len(found) == 1 else None

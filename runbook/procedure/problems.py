@@ -23,8 +23,12 @@ def model_problems(error: ValidationError, document: Document, model: type[BaseM
     """Every error of a validation, located; those that follow from what was refused before are left out."""
     told = {(p.line, p.column) for p in document.problems}
     found: list[Problem] = []
-    for one in error.errors(include_url=False):
+    errors = error.errors(include_url=False)
+    misspelt = {(e["loc"][:-1], _meant(e, model)) for e in errors if e["type"] == "extra_forbidden"}
+    for one in errors:
         if one["type"] == "follows" or one["input"] is UNREADABLE:
+            continue
+        if one["type"] == "missing" and (one["loc"][:-1], str(one["loc"][-1])) in misspelt:
             continue
         route = node_route(one["loc"], document)
         at = _place(one, route, document)
@@ -57,6 +61,10 @@ def place_of(route: Route, document: Document) -> Place:
 def nearest(word: str, known: Sequence[str]) -> str:
     """' (did you mean 'x'?)' where one of the known words is near, else nothing."""
     folded = {k.casefold(): k for k in known}
+    for name, kept in folded.items():
+        # Two letters in the wrong order make a short word look like no other.
+        if sorted(name) == sorted(word.casefold()):
+            return f" (did you mean '{kept}'?)"
     close = difflib.get_close_matches(word[:60].casefold(), folded, n=1, cutoff=0.6)
     return f" (did you mean '{folded[close[0]]}'?)" if close else ""
 
@@ -94,6 +102,12 @@ def _unknown_key(one: ErrorDetails, model: type[BaseModel]) -> str:
     near = nearest(key, known)
     also = "" if near or not known else f": the keys here are {_list(known)}"
     return f"'{key}' is not a key here{near}{also}"
+
+
+def _meant(one: ErrorDetails, model: type[BaseModel]) -> str:
+    """The key that an unknown one was probably meant to be; empty where none is near."""
+    near = nearest(str(one["loc"][-1]), _keys_at(model, one["loc"][:-1]))
+    return near.split("'")[1] if near else ""
 
 
 def _keys_at(model: type[BaseModel], loc: Sequence[str | int]) -> list[str]:
@@ -145,6 +159,8 @@ def _resolved(here: Any, definitions: Any) -> Any:
 
 def _missing(one: ErrorDetails) -> str:
     key = one["loc"][-1]
+    if isinstance(key, int):
+        return f"one more entry is wanted here: there are only {key}"
     if key == "source":
         return "a rating without a source is no rating: say in 'source' where it comes from"
     return f"'{key}' is missing"
@@ -194,12 +210,18 @@ def _text_wanted(one: ErrorDetails) -> str:
     return f'text is wanted here: quote it: "{given}"'
 
 
+def _no_quantity(one: ErrorDetails) -> str:
+    if isinstance(one["input"], dict | tuple):
+        return f"one quantity is wanted here, not {_shown(one['input'])}"
+    return one["msg"]
+
+
 def _count(one: ErrorDetails, key: str) -> Any:
     return (one.get("ctx") or {}).get(key, "")
 
 
 SENTENCES: Final[dict[str, Callable[[ErrorDetails], str]]] = {
-    "quantity": lambda e: e["msg"],
+    "quantity": _no_quantity,
     "own": lambda e: e["msg"],
     "kind": _no_kind,
     "verb": _no_verb,

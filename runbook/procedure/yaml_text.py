@@ -65,6 +65,7 @@ class _Reader:
         try:
             for event in self._events():
                 if not self._take(event):
+                    self.root = UNREADABLE
                     return
         except yaml.reader.ReaderError as error:
             at = _place_of(self.text, error.position)

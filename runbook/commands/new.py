@@ -43,7 +43,7 @@ def _text(kind: str, path: Path) -> str:
 
 def _write(path: Path, text: str) -> None:
     try:
-        path.parent.mkdir(parents=True, exist_ok=True)
+        _folder(path.parent)
         with path.open("x", encoding="utf-8") as file:
             file.write(text)
             file.flush()
@@ -53,3 +53,10 @@ def _write(path: Path, text: str) -> None:
     except (OSError, ValueError) as error:
         why = getattr(error, "strerror", None) or "its name cannot be used"
         raise InputUnusable(f"{path} cannot be written: {why}") from None
+
+
+def _folder(folder: Path) -> None:
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+    except FileExistsError:
+        raise NotADirectoryError(0, f"{folder} is a file") from None

@@ -52,7 +52,8 @@ def resolve(word: str) -> Plain:
         raise Refused(f"'{word}' is a number to other bases: write it with decimal digits, or quote it")
     other = _yaml_1_1(word)
     if other != "text":
-        raise Refused(f'{word} is read as {other} by some programs: if text is meant, quote it: "{word}"')
+        shown = word if len(word) <= _LONGEST_NUMBER else word[:_LONGEST_NUMBER] + "…"
+        raise Refused(f'{shown} is read as {other} by some programs: if text is meant, quote it: "{shown}"')
     return word
 
 

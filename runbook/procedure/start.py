@@ -101,7 +101,7 @@ parts:
           read: {{what: mass, with: BS1, accept: 105 g to 150 g, if_not: Stop here.}}
       # Between closing and rest nobody types and nobody is waited for.
       - quick:
-          - {{do: Shut V2 at 117 g, the scale falling, path: seal, valves: {{V2: shut}}, latest: 9 min, if_not: Stop.}}
+          - {{do: Shut V2 at 117 g on the way down, path: seal, valves: {{V2: shut}}, latest: 9 min, if_not: Stop.}}
           - {{do: Shut the shield and step back, latest: 2 min, if_not: Open V2.}}
         read_after:
           - {{what: mass, with: BS1, accept: 115 g to 119 g, if_not: Make safe.}}

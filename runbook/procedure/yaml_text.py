@@ -251,8 +251,9 @@ def read_document(data: bytes, file: str) -> Document:
     except UnicodeDecodeError as error:
         before = data[: error.start].decode("utf-8", "replace")
         at = _place_of(before, len(before))
+        lines = split_lines(data.decode("utf-8", "replace"))
         message = f"the byte 0x{data[error.start]:02X} is not UTF-8: save the file as UTF-8 text"
-        return Document(file, UNREADABLE, {}, {}, (), (Problem(file, *at, message),))
+        return Document(file, UNREADABLE, {}, {}, lines, (located(file, lines, at, message),))
     lines = split_lines(text)
     reader = _Reader(file, text, lines)
     reader.read()

@@ -1,0 +1,217 @@
+"""The writing rules: each finds its mistake in an otherwise good file, in its place, and nothing in the good one."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import pytest
+
+from runbook.answers import Hazard
+from runbook.procedure.model import DoStep
+from runbook.procedure.steps import HazardName
+from runbook.procedure.writing import findings
+from tests.procedure.files import PROCEDURE, found, read, word_at
+
+ERRORS = [
+    # rule, old, new, where the finding stands
+    ("unknown tag", "with: BS1, accept: 105", "with: BS9, accept: 105", "BS9"),
+    ("unknown tag", "through: V2, pause", "through: V8, pause", "V8"),
+    ("unknown tag", "by_means_of: H1", "by_means_of: H2", "H2"),
+    ("unknown tag", "low_gauge: PG2", "low_gauge: PG3", "PG3"),
+    ("unknown tag", "wall: TT1, vent: V2", "wall: TT1, vent: V3", "V3"),
+    ("unknown tag", "isolator: V3", "isolator: V2", "V2"),
+    ("unknown tag", "valves: {H1: unplugged}", "valves: {H9: unplugged}", "unplugged"),
+    ("unknown tag", "open_containment: V1", "open_containment: V2", "V2"),
+    ("unknown tag", "do: Press tare", "do: Press V9 tare", "Press V9"),
+    ("unknown tag", "at_start: {V1: open", "at_start: {V7: shut, V1: open", "shut"),
+    ("start position", "V3: open, H1", "H1", "{V1"),
+    ("position", "H1: unplugged}", "H1: shut}", "shut"),
+    ("position", "at_start: {V1: open", 'at_start: {V1: "on"', '"on"'),
+    ("wrong instrument", "{what: mass, with: BS1, accept: 105 g", "{what: mass, with: TT1, accept: 105 g", "TT1"),
+    (
+        "text and valves",
+        "do: Shut V3\n        who: performer\n        valves: {V3: shut}",
+        "do: Shut V3\n        who: performer",
+        "Shut V3",
+    ),
+    ("role not declared", "called: teacher", "called: officer", "officer"),
+    ("role not declared", "key_with: second", "key_with: porter", "porter"),
+    ("role not declared", "who: teacher}", "who: caretaker}", "caretaker"),
+    ("checks own text", "checked_by: T. Okoro", "checked_by: r.  amsel", "r.  amsel"),
+    ("review date", "review_by: 2032-03-02", "review_by: 2031-03-02", "2031-03-02"),
+    (
+        "signs own work",
+        "signed_by: second\n          because: once",
+        "signed_by: performer\n          because: once",
+        "performer",
+    ),
+    (
+        "hold at an end",
+        "      - do: Hang the tag EMPTY on V2\n        who: second",
+        "      - hold: {signed_by: second, because: it is over}",
+        "hold",
+    ),
+    (
+        "hold at an end",
+        "      - do: Set the laptop to stay awake, on mains power\n        who: performer",
+        "      - hold: {signed_by: second, because: it begins}",
+        "hold",
+    ),
+    (
+        "order",
+        "      - do: Press tare\n        who: performer",
+        "      - do: Warm the cell\n        who: performer\n        path: {warm_to: 33 degC, by_means_of: H1}",
+        "{warm_to",
+    ),
+    (
+        "order",
+        "      - do: Shut V3\n        who: performer",
+        "      - do: Warm the cell\n        who: performer\n        path: {warm_to: 33 degC, by_means_of: H1}",
+        "{warm_to",
+    ),
+    ("order", "      - show_empty: {low_gauge: PG2, isolator: V3, wall: TT1, vent: V2}\n", "", "{open_containment"),
+    (
+        "order",
+        "      - do: Press tare\n        who: performer",
+        "      - do: Let the gas out\n        who: performer\n        path: {let_down_to: 0 bar(g), through: V2}",
+        "{let_down",
+    ),
+    ("order", "at_start: {V1: open, V2: open, V3: open", "at_start: {V1: shut, V2: shut, V3: open", "{load"),
+    ("seal", "path: seal, valves: {V2: shut}", "valves: {V2: shut}", "{V2"),
+    ("seal", "path: seal, valves: {V2: shut}", "path: seal", "seal"),
+    ("charge", "charge: {mass: 117 g ± 2 g, loaded_as: dry ice}", "charge: already loaded", "{load"),
+    ("charge", "path: {load: 140 g ± 10 g}", "path: {load: 80 g ± 10 g}", "80 g"),
+    (
+        "gauge isolated",
+        "valves: {V3: shut}",
+        "valves: {V3: shut}\n        read:\n          - {what: pressure, with: PG2}",
+        "PG2",
+    ),
+    ("no act outside limits", "accept: 115 g to 119 g, if_not: Make safe.", "accept: 115 g to 119 g", "{what: mass"),
+    ("reading outside dial", "accept: 115 g to 119 g", "accept: 115 g to 19 kg", "115 g to 19 kg"),
+    ("reading outside dial", "accept: 18 degC to 26 degC", "accept: 18 degC to 126 degC", "18 degC to 126"),
+    ("instrument too coarse", "accept: 115 g to 119 g", "accept: 116.9 g to 117.1 g", "116.9"),
+    (
+        "instrument too coarse",
+        "accept: 27 mm to 32 mm, if_not: Make safe.}   #",
+        "accept: 27 mm to 28 mm, if_not: Make safe.}   #",
+        "27 mm",
+    ),
+    (
+        "witness before a rise",
+        "      - do: Load dry ice",
+        "      - witness: {called: teacher, because: it is loaded, wait: 1 min}\n      - do: Load dry ice",
+        "witness",
+    ),
+    ("warning parts", "avoid: Wear the cryogenic gloves.", "avoid: See warning above.", "See"),
+    ("warning parts", "word: WARNING", "word: NOTICE", "NOTICE"),
+    ("room", "hottest: 30 degC", "hottest: 3 degC", "3 degC"),
+]
+
+
+@pytest.mark.parametrize(("rule", "old", "new", "at"), ERRORS)
+def test_an_error_is_found_at_its_place(tmp_path: Path, rule: str, old: str, new: str, at: str) -> None:
+    """The rule finds the mistake where it was made; the good file gives it no reason."""
+    assert found(tmp_path, rule) == []
+    problems = found(tmp_path, rule, {old: new})
+    assert problems, f"{rule} found nothing"
+    assert any(word_at(tmp_path / PROCEDURE, p).startswith(at) for p in problems), [str(p) for p in problems]
+    assert all(p.severity in ("error", "warning") for p in problems)
+
+
+WARNINGS = [
+    ("verb first", "do: Press tare", "do: The tare is pressed", "warning"),
+    ("one act", "do: Press tare", "do: Press tare and read the scale", "advice"),
+    ("active voice", "do: Press tare", "do: When still tare should be pressed", "warning"),
+    ("number instead", "do: Press tare", "do: Press tare gently", "warning"),
+    ("condition first", "do: Press tare", "do: Press tare when nothing moves", "advice"),
+    ("long sentence", "do: Press tare", "do: Press tare" + " and so on" * 12, "advice"),
+    ("high on the dial", "accept: 48 bar(g) to 75 bar(g)", "accept: 48 bar(g) to 150 bar(g)", "advice"),
+    ("set point at the cut-out", "set_to: 34 degC", "set_to: 37.5 degC", "warning"),
+]
+
+
+@pytest.mark.parametrize(("rule", "old", "new", "severity"), WARNINGS)
+def test_wording_is_warned_of_not_refused(tmp_path: Path, rule: str, old: str, new: str, severity: str) -> None:
+    """How a sentence reads is for people to judge: a warning or an advice, never an error."""
+    assert found(tmp_path, rule) == []
+    assert [p.severity for p in found(tmp_path, rule, {old: new})] == [severity]
+
+
+def test_the_shipped_procedure_is_clean(tmp_path: Path) -> None:
+    """No rule finds anything in it, not even an advice."""
+    assert [str(p) for p in findings(read(tmp_path))] == []
+
+
+def test_the_shipped_procedure_is_a_real_one(tmp_path: Path) -> None:
+    """Twenty steps or more in four parts, four holds of which two measure, a witness, a quick sequence, the proofs."""
+    procedure = read(tmp_path).procedure
+    kinds = [type(s).__name__ for part in procedure.parts for s in part.steps]
+    holds = [s.hold for part in procedure.parts for s in part.steps if hasattr(s, "hold")]
+    assert len(procedure.parts) == 4
+    assert len(kinds) >= 20
+    assert len(holds) >= 4
+    assert sum(h.read is not None for h in holds) == 2
+    assert kinds.count("WitnessStep") == 1
+    assert kinds.count("QuickStep") == 1
+    assert kinds.count("EmptyStep") == 1
+    warned = [s.do for part in procedure.parts for s in part.steps if isinstance(s, DoStep) and s.warning is not None]
+    assert any("Load" in text for text in warned)
+    assert any("Warm" in text for text in warned)
+    assert any("gas out" in text for text in warned)
+
+
+def test_plastic_that_carries_carbon_dioxide_cannot_be_judged(tmp_path: Path) -> None:
+    """Acrylic and polycarbonate soften in carbon dioxide above 10 bar; below, and in other fluids, they may stay."""
+    for material, wanted in (("acrylic", 1), ("polycarbonate", 1), ("sapphire", 0)):
+        vessel = {"what: two sapphire windows": f"what: two windows, material: {material}"}
+        problems = found(tmp_path, "plastic in carbon dioxide", None, vessel)
+        assert len(problems) == wanted
+        assert all("cannot be judged" in p.message and p.severity == "error" for p in problems)
+    low = {"what: two sapphire windows": "what: two windows, material: acrylic", "bursts_at: 130": "bursts_at: 10"}
+    assert found(tmp_path, "plastic in carbon dioxide", None, low) == []
+    other = {"fluid: carbon dioxide": "fluid: sulfur hexafluoride"}
+    assert found(tmp_path, "plastic in carbon dioxide", other, {"what: body": "what: body, material: acrylic"}) == []
+
+
+def test_relief_that_can_be_shut_off_is_an_error(tmp_path: Path) -> None:
+    """Relief behind a valve protects nothing of what is before it."""
+    vessel = {"kind: bursting disc, space: cell": "kind: bursting disc, space: low gauge line"}
+    (problem,) = found(tmp_path, "relief behind a valve", None, vessel)
+    assert problem.severity == "error"
+    assert found(tmp_path, "trapped space", None, vessel)
+
+
+def test_a_tolerance_closer_than_the_code_is_doubted(tmp_path: Path) -> None:
+    """ASME VIII-1 allows a disc of 130 bar 5 %: a file that says 1 % is warned."""
+    (problem,) = found(tmp_path, "relief tolerance", None, {"tolerance: 5 %": "tolerance: 1 %"})
+    assert "RD1" in problem.message
+    assert problem.severity == "warning"
+
+
+def test_a_protective_device_that_no_step_checks_is_an_advice(tmp_path: Path) -> None:
+    """Each relief device and room meter is read, moved or named by some step."""
+    (problem,) = found(tmp_path, "protective device unused", {"RD1 and RV2": "RD1"})
+    assert "RV2" in problem.message
+    assert problem.severity == "advice"
+
+
+def test_an_old_charge_is_proved_again_before_it_is_warmed(tmp_path: Path) -> None:
+    """A procedure for a loaded vessel that warms it without a height or a weighing is refused by rule."""
+    good = read(tmp_path)
+    step = next(s for part in good.procedure.parts for s in part.steps if isinstance(s, DoStep) and "Warm" in s.do)
+    part = good.procedure.parts[2].model_copy(update={"steps": (step,)})
+    start = dict(good.procedure.at_start) | {"V1": "shut", "V2": "shut"}
+    changed = good.procedure.model_copy(update={"charge": "already loaded", "parts": (part,), "at_start": start})
+    from runbook.procedure.rules_order import order
+
+    said = [f for f in order(changed, good.apparatus) if f.rule == "charge"]
+    assert len(said) == 1
+    assert "proved again" in said[0].message
+
+
+def test_hazard_names_are_those_of_the_answers() -> None:
+    """What an author may add is one of the eight hazards, by its name."""
+    from typing import get_args
+
+    assert get_args(HazardName) == tuple(h.value for h in Hazard)

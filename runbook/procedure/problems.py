@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import difflib
 from collections.abc import Callable, Sequence
+from functools import cache
 from typing import Any, Final
 
 from pydantic import BaseModel, ValidationError
@@ -18,13 +19,17 @@ from runbook.procedure.document import UNREADABLE, Document, Place, Route
 from runbook.procedure.path import VERBS, WORDS
 from runbook.procedure.steps import KINDS
 
+MOST: Final = 200
+"""Problems told of one file: whoever made more mends these first."""
+
 
 def model_problems(error: ValidationError, document: Document, model: type[BaseModel]) -> list[Problem]:
     """Every error of a validation, located; those that follow from what was refused before are left out."""
     told = {(p.line, p.column) for p in document.problems}
     found: list[Problem] = []
     errors = error.errors(include_url=False)
-    misspelt = {(e["loc"][:-1], _meant(e, model)) for e in errors if e["type"] == "extra_forbidden"}
+    extra = [e for e in errors if e["type"] == "extra_forbidden"]
+    misspelt = {(e["loc"][:-1], _meant(e, model)) for e in extra[:MOST]}
     for one in errors:
         if one["type"] == "follows" or one["input"] is UNREADABLE:
             continue
@@ -35,6 +40,8 @@ def model_problems(error: ValidationError, document: Document, model: type[BaseM
         if at in told:
             continue
         found.append(document.problem(at, _sentence(one, route, model)))
+        if len(found) >= MOST:
+            break
     return _without_duplicates(found)
 
 
@@ -110,9 +117,15 @@ def _meant(one: ErrorDetails, model: type[BaseModel]) -> str:
     return near.split("'")[1] if near else ""
 
 
+@cache
+def _schema(model: type[BaseModel]) -> dict[str, Any]:
+    """Its JSON schema; slow to make, and asked for once a misspelt key."""
+    return model.model_json_schema()
+
+
 def _keys_at(model: type[BaseModel], loc: Sequence[str | int]) -> list[str]:
     """The keys of the mapping at a location, from the schema; none where it cannot be found."""
-    schema = model.model_json_schema()
+    schema = _schema(model)
     definitions = schema.get("$defs", {})
     here: Any = schema
     for part in loc:

@@ -19,6 +19,7 @@ import yaml
 from runbook.errors import Problem
 from runbook.procedure.document import UNREADABLE, Document, Place, Route, located, split_lines
 from runbook.procedure.scalars import Nothing, Refused, resolve
+from runbook.procedure.yaml_words import bad_key, moves_cursor, short, yaml_message
 
 LARGEST: Final = 1_000_000
 """Bytes of a file: a hundred times the longest procedure."""
@@ -71,7 +72,7 @@ class _Reader:
             at = _place_of(self.text, error.position)
             self.say(at, f"the character U+{_code(error.character):04X} may not stand in a file: take it out")
         except yaml.MarkedYAMLError as error:
-            self.say(*_yaml_message(error, self.lines))
+            self.say(*yaml_message(error, self.lines))
         if self.root is UNREADABLE and not self.problems:
             self.problems.append(Problem(self.file, 1, 1, "the file is empty: 'runbook new' writes a start"))
 
@@ -149,7 +150,7 @@ class _Reader:
         self._place(at, self._value(event.value, at) if plain else self._quoted(event.value, at))
 
     def _quoted(self, text: str, at: Place) -> Any:
-        if _moves_cursor(text):
+        if moves_cursor(text):
             self.say(at, "the text holds a line break or a control character: write it as one plain line")
             return UNREADABLE
         return text
@@ -174,11 +175,11 @@ class _Reader:
         if frame.flow:
             self.say(
                 key_at,
-                f"'{_short(frame.key)}' has no value: a comma ended the sentence before it. "
+                f"'{short(frame.key)}' has no value: a comma ended the sentence before it. "
                 "Quote the sentence, or put it on its own line",
             )
         else:
-            self.say(key_at, f"'{_short(frame.key)}' has no value: write one, or take the line away")
+            self.say(key_at, f"'{short(frame.key)}' has no value: write one, or take the line away")
 
     def _loses_tail(self, event: yaml.ScalarEvent) -> bool:
         """A comment follows on the same line that does not look like one: text may have been lost."""
@@ -198,10 +199,10 @@ class _Reader:
         if word is None:
             frame.dropped = True
             return
-        wrong = _bad_key(word, plain)
+        wrong = bad_key(word, plain)
         if not wrong and word in frame.items:
             first = self.keys[(*frame.route, word)]
-            wrong = f"'{_short(word)}' stands here a second time (first in line {first[0]}): keep one"
+            wrong = f"'{short(word)}' stands here a second time (first in line {first[0]}): keep one"
         if wrong:
             self.say(at, wrong)
             frame.dropped = True
@@ -261,52 +262,9 @@ def read_document(data: bytes, file: str) -> Document:
     return Document(file, reader.root, reader.values, reader.keys, lines, problems)
 
 
-def _bad_key(word: str, plain: bool) -> str:
-    """What is wrong with a key, or nothing."""
-    if _moves_cursor(word):
-        return "the key holds a line break or a control character"
-    if not plain:
-        return "" if word else "a key is empty"
-    if word == "<<":
-        return "'<<' merges another mapping: write its entries out here"
-    try:
-        found = resolve(word)
-    except Nothing:
-        return "a key is missing before the colon"
-    except Refused as why:
-        return str(why)
-    return "" if isinstance(found, str) else f'{_short(word)} is no key: quote it: "{_short(word)}"'
-
-
 def _after(mark: Any, columns: int) -> Place:
     """Place of a mark of the YAML library, which counts from 0, and some columns after it."""
     return (1, 1) if mark is None else (mark.line + 1, mark.column + 1 + columns)
-
-
-def _moves_cursor(text: str) -> bool:
-    """Whether a text holds what would break a line of a screen; the two hard blanks do not."""
-    return any(not c.isprintable() and c not in "\u00a0\u202f" for c in text)
-
-
-def _yaml_message(error: yaml.MarkedYAMLError, lines: tuple[str, ...]) -> tuple[Place, str]:
-    """Place and sentence of a text that is no YAML."""
-    mark = error.problem_mark or error.context_mark
-    at = (1, 1) if mark is None else (mark.line + 1, mark.column + 1)
-    line = lines[at[0] - 1] if at[0] <= len(lines) else ""
-    what = error.problem or "something is wrong"
-    started = ""
-    if error.context_mark is not None and error.context_mark.line + 1 != at[0]:
-        started = f" in what began in line {error.context_mark.line + 1}"
-        line += lines[error.context_mark.line]
-    if "mapping values" in what:
-        return at, "a colon and a blank make a key, inside text too: quote the text"
-    if "'\\t'" in what or "\t" in line[: at[1]]:
-        return at, "a tab cannot be used to indent: use blanks"
-    if "%" in what or "@" in what or "`" in what:
-        return at, f"a text cannot begin with this character: quote it ({what})"
-    if " #" in line:
-        return at, f"this is no YAML{started} ({what}): ' #' begins a comment, quote the text if it belongs to it"
-    return at, f"this is no YAML{started} ({what}): check quotes, brackets, commas and indentation"
 
 
 def _place_of(text: str, index: int) -> Place:
@@ -316,7 +274,3 @@ def _place_of(text: str, index: int) -> Place:
 
 def _code(character: Any) -> int:
     return character if isinstance(character, int) else ord(str(character)[:1] or "\0")
-
-
-def _short(word: str) -> str:
-    return word if len(word) <= 40 else word[:40] + "…"

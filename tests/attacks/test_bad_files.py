@@ -13,6 +13,7 @@ from hypothesis import strategies as st
 
 from runbook.__main__ import main
 from runbook.errors import FileProblems
+from runbook.procedure.problems import MOST
 from runbook.procedure.reader import read_procedure
 from runbook.procedure.yaml_text import LARGEST, MOST_NODES, read_document
 from tests.procedure.files import PROCEDURE, SHIPPED, VESSEL, only, read, refused, word_at, written
@@ -72,6 +73,13 @@ def test_thirty_thousand_entries_are_refused(tmp_path: Path) -> None:
     """The count of entries has a limit."""
     text = "\n".join(f"k{i}: 1" for i in range(MOST_NODES))
     assert "entries" in only(bytes_at(tmp_path, text.encode())).message
+
+
+def test_thousands_of_mistakes_are_told_as_far_as_anybody_reads(tmp_path: Path) -> None:
+    """A file of unknown keys ends soon, with the first of them."""
+    text = "\n".join(f"k{i}: 1" for i in range(9_000))
+    problems = refused(bytes_at(tmp_path, text.encode()))
+    assert len(problems) == MOST
 
 
 def test_a_bomb_of_aliases_is_refused_where_it_begins(tmp_path: Path) -> None:
@@ -238,7 +246,9 @@ def test_an_apparatus_outside_the_folder_is_never_read(tmp_path: Path, named: st
     (inner / "apparatus" / "link.yaml").symlink_to(tmp_path / "secret.yaml")
     with pytest.raises(FileProblems) as caught:
         read_procedure(path)
-    assert "secret" not in str(caught.value).replace(named, "").replace("secret.yaml", "")
+    (problem,) = caught.value.problems
+    if ".." in named or named[0] == "/" or "link" in named:
+        assert "out of this file's folder" in problem.message
     assert "very-secret" not in str(caught.value)
 
 

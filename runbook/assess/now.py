@@ -134,8 +134,8 @@ def _assemble(
         valid=reach.pressure.value is not None,
         good_for_s=None if distance.seconds is None else max(0.0, 0.5 * distance.seconds),
         phases=in_phases,
-        pressure=computed.pressure if computed else None,
-        pressure_U=computed.U if computed else None,
+        pressure=computed.pressure if computed else _in_the_open(scene, state),
+        pressure_U=computed.U if computed else _barometer_U(scene, state),
         region=str(computed.region) if computed else None,
         liquid_height=height,
         distance=distance,
@@ -281,6 +281,15 @@ def _proved(
         # At critical density and thinner liquid never fills the vessel; denser than any liquid it always does.
         return density < scene.substance.critical_density or scene.substance.is_critical(density)
     return hottest_of(scene, verb) < full
+
+
+def _in_the_open(scene: Scene, state: VesselState) -> float | None:
+    """An open vessel that nobody has let down stands at the room's pressure [Pa]."""
+    return None if state.closed or state.letting_down else scene.barometer.middle_Pa
+
+
+def _barometer_U(scene: Scene, state: VesselState) -> float | None:
+    return None if _in_the_open(scene, state) is None else 0.5 * (scene.barometer.high_Pa - scene.barometer.low_Pa)
 
 
 def _pressure_left(ahead: tuple[Margin, ...]) -> float | None:

@@ -18,19 +18,23 @@ Asked = list[tuple[int, str, Moment]]
 """(number of events so far, key of the question then, when), oldest first."""
 
 
-def phase(past: Past, seen: str) -> str:
-    """The phase whose acts are shown: the first of those the vessel may be in."""
+def phase(past: Past, seen: str, standing: Answer | None) -> str:
+    """The phase whose acts are shown: the first of those the vessel may be in.
+
+    standing: the known answer to the question as it stands. Without it the last answer may be of a vessel that
+    has been closed since, so the plan's phases of this line are possible too: the worst since then.
+    """
     if seen in SEEN:
         return SEEN[seen]
     known, line = past.last_known(), past.line()
-    if known is not None:
-        phases = known.phases
-    elif line is not None:
-        phases = line.phases
-    elif past.plan.charge is None:
-        phases = (Phase.A,)
-    else:
-        phases = past.plan.lines[past.first].phases
+    phases: tuple[Phase, ...] = known.phases if known is not None else ()
+    if standing is None:
+        if line is not None:
+            phases = (*phases, *line.phases)
+        elif past.plan.charge is not None:
+            phases = (*phases, *past.plan.lines[past.first].phases)
+        elif not phases:
+            phases = (Phase.A,)
     return next(letter for letter in WORST_FIRST if letter in phases)
 
 

@@ -139,7 +139,7 @@ class Run:
             case QuickConfirmed():
                 return None if event.late == late(past, now) else f"model: late {not event.late}"
             case MadeSafe():
-                worst = phase(past, event.seen)
+                worst = phase(past, event.seen, self.answer())
                 return None if event.phase == worst and event.acts else f"model: phase {worst}"
             case Signed() if isinstance(act, acts.Sign):
                 return None if number_fits(past, act.by, act.number) else "signed with a wrong number"

@@ -138,8 +138,8 @@ def _opens(scene: Scene, line: Walked) -> bool:
 
 
 def _proved_by(walked: Sequence[Walked], index: int) -> bool:
-    """A weighing or height after closing stands at or before this line."""
-    for line in walked[: index + 1]:
+    """A weighing or height after closing stands before this line: while it lasts nothing is proved yet."""
+    for line in walked[:index]:
         if not line.after.closed:
             continue
         step = line.step

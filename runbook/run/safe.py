@@ -75,12 +75,16 @@ class _At:
 
 
 def phase_of(plan: Plan, ledger: Ledger, seen: str) -> Phase:
-    """The phase that governs: what was seen, else the worst of those that the last answer found possible."""
+    """The phase that governs: what was seen, else the worst of those that may be possible.
+
+    While nothing answers for the vessel as it stands, the last answer may be of a vessel that has been closed
+    since: so the plan's phases of this line count as well.
+    """
     if seen in SEEN:
         return SEEN[seen]
     possible = ledger.last_answer.phases if ledger.last_answer is not None else ()
-    if not possible:
-        possible = _planned(plan, ledger)
+    if ledger.answer is None or not possible:
+        possible = (*possible, *_planned(plan, ledger))
     # Nothing known at all: as if it were closed with solid in it and nobody knew how much.
     return next((phase for phase in ORDER if phase in possible), Phase.B)
 
@@ -89,7 +93,7 @@ def _planned(plan: Plan, ledger: Ledger) -> tuple[Phase, ...]:
     if ledger.present is not None:
         return ledger.present.phases
     if plan.charge is None or not plan.lines:
-        return (Phase.A,)
+        return (Phase.A,) if ledger.last_answer is None else ()
     return plan.lines[plan.parts[ledger.part].first].phases
 
 

@@ -20,7 +20,7 @@ from runbook.assess.bounds import charge_bounds
 from runbook.assess.plan_line import FORBIDDEN_TO_RELEASE, plan_line
 from runbook.assess.scene import Scene, open_scene
 from runbook.assess.verdict import line_findings, verdict_of
-from runbook.assess.walk import Walked, outside_tags, start_state, walk
+from runbook.assess.walk import VesselState, Walked, outside_tags, start_state, walk
 from runbook.procedure.model import (
     LetDownTo,
 )
@@ -43,8 +43,8 @@ def bind(
     return plan_of(open_scene(loaded, barometer_Pa, charge), on)
 
 
-def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None) -> Plan:
-    """The plan of a scene that is open already."""
+def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, part: int = 0) -> Plan:
+    """The plan of a scene that is open already; part: the one that is begun with, from 0."""
     walked = walk(scene) if lines is None else lines
     loaded, apparatus, procedure = scene.loaded, scene.apparatus, scene.procedure
     plan_lines = tuple(plan_line(scene, walked, i) for i in range(len(walked)))
@@ -57,6 +57,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None) -> 
     source = apparatus.heat_source
     lets_down = next((w.verb.through for w in walked if isinstance(w.verb, LetDownTo)), None)
     outside = outside_tags(scene)
+    begun = _begun(scene, walked, part)
     return Plan(
         procedure=procedure.name,
         apparatus=apparatus.name,
@@ -83,11 +84,11 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None) -> 
         instruments=tuple(_instrument(scene, i.tag) for i in apparatus.instruments),
         roles=tuple(procedure.roles),
         bring=tuple(procedure.bring),
-        valves=tuple(sorted(start_state(scene).valves.items())),
+        valves=tuple(sorted(begun.valves.items())),
         valve_lets_go=tuple((v.tag, v.let_go) for v in apparatus.valves),
         outside_valves=outside,
         source_tag=None if source is None else source.tag,
-        source=start_state(scene).source,
+        source=begun.source,
         source_away=source is not None and source.taken_away_in_one_motion,
         let_down_valve=lets_down or next((t for t in outside if any(v.tag == t for v in apparatus.valves)), None),
         release_forbidden=scene.substance.name in FORBIDDEN_TO_RELEASE,
@@ -95,6 +96,12 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None) -> 
         lines=plan_lines,
         make_safe_also=tuple((a.do, a.who or "") for a in procedure.make_safe_also),
     )
+
+
+def _begun(scene: Scene, walked: Sequence[Walked], part: int) -> VesselState:
+    """How the vessel stands where the run begins: as the file says, or as the parts before leave it."""
+    before = [line for line in walked if line.part < part]
+    return before[-1].after if before else start_state(scene)
 
 
 def _parts(scene: Scene, walked: Sequence[Walked]) -> tuple[PlanPart, ...]:

@@ -66,10 +66,12 @@ def reply(bound: Bound, asked: dict[str, Any]) -> dict[str, Any]:
                 request.charge,
                 height_m=request.height_m,
                 hottest_K=request.room_hottest_K,
+                # A later part finds the vessel as the parts before it leave it.
+                cell_closed=request.cell_closed and request.part == 0,
             )
             bound.lines = walk(scene)
             bound.scene = scene
-            plan = plan_of(scene, date.fromisoformat(request.on), bound.lines)
+            plan = plan_of(scene, date.fromisoformat(request.on), bound.lines, request.part)
             return {
                 "key": key,
                 "plan": to_plain(plan),

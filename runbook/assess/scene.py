@@ -40,6 +40,8 @@ class Scene:
     assume: Assumptions = ALL
     hottest_K: float | None = None
     """Hottest the room may become today [K]; None: as the procedure says."""
+    cell_closed: bool = False
+    """Somebody says that the vessel is closed already, whatever the procedure begins with."""
     substance: Substance = field(init=False)
     looked: dict[tuple[int, float | None, tuple[tuple[str, str], ...]], tuple[Margin, ...]] = field(
         init=False, default_factory=dict
@@ -99,8 +101,9 @@ class Scene:
 
     @property
     def starts_loaded(self) -> bool:
-        """The procedure is written for a vessel that is loaded when it begins."""
-        return isinstance(self.procedure.charge, str) or self.procedure.charge.loaded_as == "already loaded"
+        """The vessel is loaded when it begins: the procedure says so, or somebody does."""
+        charge = self.procedure.charge
+        return self.cell_closed or isinstance(charge, str) or charge.loaded_as == "already loaded"
 
     @property
     def brim_full(self) -> float:
@@ -162,12 +165,14 @@ def open_scene(
     assume: Assumptions = ALL,
     height_m: float | None = None,
     hottest_K: float | None = None,
+    cell_closed: bool = False,
 ) -> Scene:
     """A scene at the barometer read [Pa], else at the room's height, else anywhere.
 
-    height_m: above sea level [m]; hottest_K: hottest room [K]; None: as the procedure says. Raises
+    height_m: above sea level [m]; hottest_K: hottest room [K]; None: as the procedure says. cell_closed: it is
+    closed already, with what the record says or, without one, with as much as it can hold. Raises
     InputUnusable for a fluid that is not known, OutsideValidity for an impossible barometer.
     """
     stated = loaded.procedure.room.height
     height = height_m if height_m is not None else None if stated is None else stated.value
-    return Scene(loaded, barometer(reading_Pa, height), charge, assume, hottest_K)
+    return Scene(loaded, barometer(reading_Pa, height), charge, assume, hottest_K, cell_closed)

@@ -81,6 +81,8 @@ def start_state(scene: Scene) -> VesselState:
     state = "none" if source is None else positions.get(source.tag, "do not know")
     valves = {v.tag: positions.get(v.tag, "do not know") for v in scene.apparatus.valves}
     valves |= {o.tag: positions.get(o.tag, "do not know") for o in scene.apparatus.openings}
+    if scene.cell_closed:
+        valves |= {tag: "shut" for tag in outside_tags(scene)}
     loaded = scene.starts_loaded
     return VesselState(
         loaded=loaded,

@@ -11,6 +11,7 @@ from pathlib import Path
 from runbook.commands.arguments import Arguments, iso_date
 from runbook.errors import InputUnusable
 from runbook.procedure.shelf import find_procedure
+from runbook.quantities import Dimension, parse
 
 
 def main(argv: list[str]) -> int:
@@ -19,6 +20,9 @@ def main(argv: list[str]) -> int:
     parser.add_argument("file", metavar="FILE", nargs="?", help="a procedure file, or the name of a shipped one")
     parser.add_argument("--plain", action="store_true", help="prompts and lines instead of screens")
     parser.add_argument("--part", type=int, default=1, metavar="N", help="the part of the day to begin with (1)")
+    parser.add_argument(
+        "--closed", metavar="MASS", help="with --plain: the vessel is closed already with this much in it, or '?'"
+    )
     parser.add_argument("--on", metavar="DATE", help="judge certificates on this date (default: today)")
     parser.add_argument("--resume", metavar="RUN", type=Path, help="take up an unfinished run: its record file")
     parser.add_argument("--logbook", metavar="DIR", type=Path, help="where the record goes")
@@ -33,8 +37,15 @@ def main(argv: list[str]) -> int:
     if asked.plain:
         from runbook.commands.plain import bench_plain
 
-        return bench_plain(path, on, _part(asked.part), asked.logbook)
+        return bench_plain(path, on, _part(asked.part), asked.logbook, _closed(asked.closed))
     return _on_screens("bench", path, on, asked.logbook, asked.ascii)
+
+
+def _closed(mass: str | None) -> float | None:
+    """Mass stated to be closed in [kg]; infinite: nobody knows; None: the vessel is not closed."""
+    if mass is None:
+        return None
+    return float("inf") if mass == "?" else parse(mass, Dimension.MASS)
 
 
 def _part(number: int) -> int:

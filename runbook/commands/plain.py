@@ -11,6 +11,7 @@ import contextlib
 import sys
 import tempfile
 from collections.abc import Iterator
+from math import isfinite
 from pathlib import Path
 
 from runbook.answers import BindRequest, ChargeBox, Plan
@@ -34,9 +35,9 @@ def rehearse_plain(path: Path, seed: int, logbook: Path | None) -> int:
     return asyncio.run(_rehearse(path, seed, Logbook(logbook_folder(logbook))))
 
 
-def bench_plain(path: Path, on: str, part: int, logbook: Path | None) -> int:
-    """A run in lines; returns the exit code."""
-    return asyncio.run(_bench(path, on, part, Logbook(logbook_folder(logbook))))
+def bench_plain(path: Path, on: str, part: int, logbook: Path | None, closed_kg: float | None = None) -> int:
+    """A run in lines; closed_kg: charge stated to be closed in already [kg]; returns the exit code."""
+    return asyncio.run(_bench(path, on, part, Logbook(logbook_folder(logbook)), closed_kg))
 
 
 def resume_plain(path: Path) -> int:
@@ -75,11 +76,14 @@ async def _rehearse(path: Path, seed: int, logbook: Logbook) -> int:
         await pace.close()
 
 
-async def _bench(path: Path, on: str, part: int, logbook: Logbook) -> int:
+async def _bench(path: Path, on: str, part: int, logbook: Logbook, closed_kg: float | None) -> int:
     given = Input()
     vessel = read_procedure(path).apparatus.tag
     engine = ChildEngine()
-    request = BindRequest(str(path), on, charge=_held(logbook, vessel) if part else None, part=part)
+    held = _held(logbook, vessel) if part else None
+    if closed_kg is not None and isfinite(closed_kg):
+        held = ChargeBox(closed_kg, closed_kg, False, ("stated",))
+    request = BindRequest(str(path), on, charge=held, part=part, cell_closed=closed_kg is not None)
     with _loading():
         bound = await engine.bind(request)
     plan = bound.plan

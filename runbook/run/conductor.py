@@ -85,9 +85,17 @@ class Conductor:
         return standing(self.plan, self.ledger, self.clock.now())
 
     async def open(self, opened: RunOpened) -> None:
-        """Begin a run. Raises JournalError where its first event cannot be written."""
+        """Begin a run. Raises JournalError where its first event cannot be written.
+
+        A vessel that is closed already and, left alone, is not at rest, or not known to be, opens on make safe.
+        """
         await self._write(opened)
         self._ask()
+        if opened.request is not None and opened.request.cell_closed:
+            await self.settled()
+            answer = self.ledger.answer
+            if answer is None or not answer.left_alone.at_rest:
+                self._draw_first(MakeSafe())
 
     async def resume(self, records: Iterable[Record], why: str) -> None:
         """Take an unfinished run up again: fold what was written, then the four questions. Raises JournalError."""

@@ -7,12 +7,15 @@ edge finds any of the seven questions.
 from __future__ import annotations
 
 import re
+from collections.abc import Callable
 from typing import Final
 
 from runbook.bench.rows import EMPTY, Row, beside, cut, last_beside, padded, row, wrapped
-from runbook.bench.view import AgreeView, AloneView, AskView, CeilingView, DoView, HeaderView, SeeView
+from runbook.bench.view import AgreeView, AloneView, AskView, CeilingView, DoView, HeaderView, RunView, SeeView
 from runbook.drawing import UNICODE, Glyphs, ruler_picture
 
+Fit = Callable[[int, int, int], list[Row]]
+"""(width, height, page) -> exactly `height` rows."""
 LABEL: Final = 10
 """[columns] of the label and the gap after it."""
 
@@ -70,21 +73,30 @@ def _warning(text: str, room: int, glyphs: Glyphs) -> list[Row]:
     return [Row((*lead.spans, *first.spans)), *others]
 
 
-def ask(view: AskView, width: int, glyphs: Glyphs = UNICODE) -> list[Row]:
-    """Shape, word, reasons, what clears it, key: at most four rows where the words allow it."""
+def ask(view: AskView, width: int, height: int, page: int = 0, glyphs: Glyphs = UNICODE) -> list[Row]:
+    """Shape and word, each reason with what clears it, and the key, which stays whatever else is paged."""
     room = width - LABEL
     shape = {"yes": glyphs.yes, "not yet": glyphs.not_yet, "blocked": glyphs.blocked}[view.state]
     lead = f"{shape} {view.word}"
-    indent = max(len(lead) + 2, 12 if view.word else 0)
-    reasons = [line for reason in view.reasons for line in wrapped(reason, room - indent)]
-    first = row((lead.ljust(indent), view.state))
-    rows = [Row((*first.spans, *(reasons[0].spans if reasons else ())))]
-    rows += [Row(((" " * indent, "plain"), *one.spans)) for one in reasons[1:]]
-    clears = [line for clear in view.clears for line in wrapped(clear, room - indent)]
-    lead = "clears it".ljust(indent) if view.clears else ""
-    for i, one in enumerate(clears):
-        rows.append(Row(((lead if i == 0 else " " * indent, "dim"), *one.spans)))
-    return last_beside(rows, row((view.key, "key")), room) if view.key else rows
+    indent = max(len(lead) + 2, 12)
+    rows: list[Row] = []
+    for what, clears in view.items:
+        rows += _indented("", what, indent, room)
+        rows += _indented("clears it", clears, indent, room)
+    first = rows[0].spans[1:] if rows else ()
+    rows[:1] = [Row(((lead.ljust(indent), view.state), *first))]
+    key = row((view.key, "key"))
+    if len(rows) > height:
+        return fitted(rows, height, room, page, key)
+    if len(rows) < height or not view.key:
+        return last_beside(rows, key, room) if view.key else rows
+    joined = beside(rows[-1], key, room)
+    return [*rows[:-1], joined] if joined is not rows[-1] else fitted(rows, height, room, page, key, forced=True)
+
+
+def _indented(lead: str, text: str, indent: int, room: int) -> list[Row]:
+    lines = wrapped(text, room - indent)
+    return [Row((((lead if i == 0 else "").ljust(indent), "dim"), *one.spans)) for i, one in enumerate(lines)]
 
 
 def alone(view: AloneView, width: int, height: int) -> list[Row]:
@@ -103,10 +115,10 @@ def alone(view: AloneView, width: int, height: int) -> list[Row]:
 
 
 def _shorter(words: str) -> tuple[str, ...]:
-    """The same clauses closer together; then with the temperature of the first alone."""
+    """The same clauses closer together; then with fewer temperatures."""
     first, *others = words.split(GAP)
-    bare = (_AT.sub("", other) for other in others)
-    return "  ".join((first, *others)), "  ".join((first, *bare))
+    bare = [_AT.sub("", other) for other in others]
+    return "  ".join((first, *others)), "  ".join((first, *bare)), "  ".join((_AT.sub("", first), *bare))
 
 
 def ceiling(view: CeilingView, width: int, height: int, glyphs: Glyphs = UNICODE) -> list[Row]:
@@ -154,17 +166,24 @@ def agree(view: AgreeView, width: int, glyphs: Glyphs = UNICODE) -> list[Row]:
     return last_beside([Row((*lead.spans, *first.spans)), *others], row((view.age, "dim")), room)
 
 
-def fitted(rows: list[Row], height: int, width: int, page: int = 0) -> list[Row]:
-    """`rows` on exactly `height` rows; what does not fit is counted at the end of the last, page by page."""
-    if len(rows) <= height:
+def fitted(
+    rows: list[Row], height: int, width: int, page: int = 0, key: Row = EMPTY, *, forced: bool = False
+) -> list[Row]:
+    """`rows` on exactly `height` rows; what does not fit is counted at the end of the last, page by page.
+
+    `key` stands at the very end of the last row and is never paged away; `forced` where it alone does not fit.
+    """
+    if len(rows) <= height and not forced:
         return rows + [EMPTY] * (height - len(rows))
     if height < 1:
         return []
     pages = -(-len(rows) // height)
-    start = min((page % pages) * height, len(rows) - height)
+    start = min((page % pages) * height, max(0, len(rows) - height))
     shown = rows[start : start + height]
-    hidden = len(rows) - height
+    hidden = max(1, len(rows) - height)
     more = row((f"{hidden} of {len(rows)} lines more", "not yet"))
+    if key.spans:
+        more = Row((*more.spans, ("  ", "plain"), *key.spans))
     return [*shown[:-1], _marked(shown[-1], more, width)]
 
 
@@ -180,3 +199,22 @@ def _marked(last: Row, more: Row, width: int) -> Row:
         if left <= 0:
             break
     return beside(Row(tuple(spans)), more, width)
+
+
+def band_rows(name: str, view: RunView, width: int, height: int, page: int, glyphs: Glyphs) -> list[Row]:
+    """One band with its label, on exactly `height` rows."""
+    match name:
+        case "do":
+            rows = do(view.do, width, height, page, glyphs)
+        case "ask":
+            rows = ask(view.ask, width, height, page, glyphs)
+        case "alone":
+            rows = alone(view.alone, width, height)
+        case "ceiling":
+            rows = ceiling(view.ceiling, width, height, glyphs)
+        case "see":
+            rows = see(view.see, width)
+        case _:
+            rows = agree(view.agree, width, glyphs)
+    label = {"ask": "ON?", "agree": "AGREE?"}.get(name, name.upper())
+    return labelled(label, fitted(rows, height, width - LABEL, page))

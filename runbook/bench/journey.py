@@ -23,13 +23,14 @@ from runbook.bench.screens.run import RunScreen
 from runbook.bench.screens.setup import SetUpScreen
 from runbook.bench.simulated import Simulated
 from runbook.errors import ExitCode, RunbookError
+from runbook.procedure.reader import read_procedure
 from runbook.run.acts import Note
 from runbook.run.clock import Clock, ScaledClock, SystemClock
 from runbook.run.conductor import Conductor
 from runbook.run.engine import Bound, ChildEngine
 from runbook.run.journal import Journal, JournalWriter, read
-from runbook.run.logbook import Logbook
-from runbook.run.opening import Participant, people, run_opened
+from runbook.run.logbook import Logbook, RunFile
+from runbook.run.opening import Participant, charge_record, people, run_opened
 from runbook.run.record import record_lines
 
 if TYPE_CHECKING:
@@ -106,8 +107,12 @@ class Session:
         rehearsal = entry.kind == "rehearse"
         if rehearsal:
             app.rehearsal_mark = "REHEARSAL"
-        request = BindRequest(entry.path, issue_date(Path(entry.path)) if rehearsal else self.on)
-        briefed = await app.push_screen_wait(BriefingScreen(engine.bind, request, self._held(entry)))
+        known = read_procedure(Path(entry.path))
+        # A rehearsal is about the steps: certificates are judged on the procedure's own date.
+        on = str(known.procedure.issue.date) if rehearsal else self.on
+        held, said = (None, "") if rehearsal else self._held(known.apparatus.tag)
+        request = BindRequest(entry.path, on, charge=held, cell_closed=held is not None)
+        briefed = await app.push_screen_wait(BriefingScreen(engine.bind, request, held, rehearsal, said))
         if briefed is None:
             app.rehearsal_mark = ""
             return None
@@ -159,9 +164,12 @@ class Session:
         app.take(desk)
         return desk
 
-    def _held(self, entry: Entry) -> ChargeBox | None:
-        """What the vessel's charge record says; the vessel's tag is known once the plan is, so it is looked up late."""
-        return None
+    def _held(self, vessel: str) -> tuple[ChargeBox | None, str]:
+        """What the vessel's charge record says is in it, and what of its history cannot be read."""
+        skipped: list[RunFile] = []
+        record = charge_record(self.logbook, vessel, skipped)
+        said = " ".join(f"{run.path.name} cannot be read: {run.damaged}" for run in skipped)
+        return (None if record is None else record.box), said
 
     async def _run(self, app: BenchApp, desk: Conductor) -> int:
         app.push_screen(RunScreen(desk))
@@ -195,13 +203,6 @@ def played(roles: tuple[str, ...]) -> tuple[Participant, ...]:
         Participant("You" if i == 0 else f"{role} (played)", (role,), str(111 * (i + 1)))
         for i, role in enumerate(roles)
     )
-
-
-def issue_date(path: Path) -> str:
-    """The procedure's own date, by which a rehearsal judges certificates. Raises RunbookError."""
-    from runbook.procedure.reader import read_procedure
-
-    return str(read_procedure(path).procedure.issue.date)
 
 
 def today() -> str:

@@ -59,9 +59,9 @@ class RunPlace(Place[None]):
         self._read("")
 
     def _read(self, typed: str) -> None:
-        found = tags(self.desk)
+        found, asked = tags(self.desk)
         if found:
-            self.app.push_screen(ReadPanel(self.desk, found, typed))
+            self.app.push_screen(ReadPanel(self.desk, found, asked, typed))
 
     def action_sign(self) -> None:
         """Sign the hold point, or say that the witness is here."""

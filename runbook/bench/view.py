@@ -44,8 +44,8 @@ class AskView:
     state: str
     """'yes', 'not yet' or 'blocked'."""
     word: str
-    reasons: tuple[str, ...]
-    clears: tuple[str, ...]
+    items: tuple[tuple[str, str], ...]
+    """(what, what clears it or nothing), the first the one to read."""
     key: str
     """The key that goes with it."""
 

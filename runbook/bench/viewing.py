@@ -25,6 +25,7 @@ from runbook.bench.view import (
 from runbook.drawing import Ruler
 from runbook.quantities import pressure_to_unit
 from runbook.run.conductor import Conductor
+from runbook.run.reasons import Code
 from runbook.run.sentences import (
     agreement_age,
     agreement_pair,
@@ -49,19 +50,22 @@ from runbook.run.standing import Standing
 KEPT_BACK: Final = "Kept back until the signer's own reading is in."
 _STATES: Final = {"yes": "yes", "finished": "yes", "not yet": "not yet"}
 """Permission -> how it is painted; everything else is painted as blocked."""
+_TAG: Final = "\0"
+"""Stands for the instrument while sentences are compared."""
 _JUMP_S: Final = 300.0
 """[s] where nothing is asked for at any known moment."""
 _EARLY_S: Final = 5.0
 """[s] before it: what is asked for should be on the screen before it is overdue."""
 
 
-def tags(desk: Conductor) -> tuple[str, ...]:
-    """Instruments to read: those wanted first, in order of need, then all others."""
+def tags(desk: Conductor) -> tuple[tuple[str, ...], int]:
+    """Instruments to read, and how many of them are asked for: these come first, in order of need."""
     standing = desk.standing()
     wanted = [w.need.tag for w in standing.wanted if not w.blind]
     if standing.hold is not None and standing.hold.tag:
         wanted.append(standing.hold.tag)
-    return tuple(dict.fromkeys((*wanted, *(one.tag for one in desk.plan.instruments))))
+    asked = len(dict.fromkeys(wanted))
+    return tuple(dict.fromkeys((*wanted, *(one.tag for one in desk.plan.instruments)))), asked
 
 
 def may_go_on(desk: Conductor) -> bool:
@@ -161,23 +165,36 @@ def _who(standing: Standing, line: PlanLine) -> str:
 
 
 def _ask(desk: Conductor, standing: Standing) -> AskView:
-    plan, ledger = desk.plan, desk.ledger
     word = permission_words(standing).partition(" ")[2]
-    pairs = reasons_words(plan, ledger, standing.reasons)
-    reasons = [what for what, _ in pairs]
-    clears = tuple(dict.fromkeys(clear for _, clear in pairs if clear))
-    if standing.permission in ("yes", "blocked"):
-        reasons.insert(0, next_words(standing))
+    asked = {w.need.tag for w in standing.wanted}
+    # A reading that is wanted is said with its time, not twice.
+    reasons = tuple(r for r in standing.reasons if r.code is not Code.READING_WANTED or r.tag not in asked)
+    items = list(reasons_words(desk.plan, desk.ledger, reasons))
+    if standing.permission in ("yes", "blocked") and not standing.turned_back:
+        items.insert(0, (next_words(standing), ""))
     if unknown := unknown_words(standing):
-        reasons.append(unknown)
-    if standing.permission == "yes":
-        clears = ()
+        items.append((unknown, ""))
     if standing.permission in ("yes", "not yet"):
-        due = "; ".join(wanted_words(w) for w in standing.wanted[:2])
-        reasons += [due] if due else []
-    return AskView(
-        _STATES.get(standing.permission, "blocked"), word, tuple(dict.fromkeys(reasons)), clears, _key(standing)
-    )
+        items += [(words, "") for words in _wanted(standing)]
+    return AskView(_STATES.get(standing.permission, "blocked"), word, _each_once(items), _key(standing))
+
+
+def _wanted(standing: Standing) -> tuple[str, ...]:
+    """What is to be read and when; instruments that are due together in one sentence."""
+    grouped: dict[str, list[str]] = {}
+    for one in standing.wanted:
+        grouped.setdefault(wanted_words(one).replace(one.need.tag, _TAG), []).append(one.need.tag)
+    return tuple(words.replace(_TAG, " and ".join(tags)) for words, tags in grouped.items())
+
+
+def _each_once(items: list[tuple[str, str]]) -> tuple[tuple[str, str], ...]:
+    """No sentence twice: several reasons are often cleared by the same act."""
+    said: set[str] = set()
+    found = []
+    for what, clears in items:
+        found.append(("" if what in said else what, "" if clears in said else clears))
+        said |= {what, clears}
+    return tuple(item for item in found if any(item))
 
 
 def _key(standing: Standing) -> str:
@@ -195,7 +212,9 @@ def _key(standing: Standing) -> str:
         return "F4 sign hold"
     if standing.witness is not None:
         return "F4 is here"
-    return "F3 read" if standing.wanted else ""
+    if standing.wanted:
+        return "F3 read"
+    return "F9 make safe" if standing.permission == "blocked" else ""
 
 
 # -- ALONE, CEILING ------------------------------------------------------------------------------------------

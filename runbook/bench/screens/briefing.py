@@ -40,12 +40,19 @@ class BriefingScreen(Place[tuple[Bound, BindRequest] | None]):
         Binding("pageup", "scroll(-1)", show=False),
     ]
 
-    def __init__(self, bind: Bind, request: BindRequest, recorded: ChargeBox | None) -> None:
-        """Begin with `request`; `recorded` is what the vessel's charge record says is in it."""
+    def __init__(
+        self, bind: Bind, request: BindRequest, recorded: ChargeBox | None, rehearsal: bool, warning: str = ""
+    ) -> None:
+        """Begin with `request`; `recorded` is what the vessel's charge record says is in it.
+
+        A simulated vessel that is closed holds what the procedure plans. `warning` stands above the numbers.
+        """
         super().__init__()
         self._bind = bind
         self.request = request
         self._recorded = recorded
+        self._rehearsal = rehearsal
+        self._warning = warning
         self.bound: Bound | None = None
         self._said = ""
 
@@ -78,7 +85,8 @@ class BriefingScreen(Place[tuple[Bound, BindRequest] | None]):
 
     def _rows(self, width: int) -> list[Row]:
         if self.bound is not None:
-            return briefing_rows(self.bound.plan, self.request, width)
+            warning = [EMPTY, *wrapped(f" {self._warning}", width - 1, "blocked")] if self._warning else []
+            return [*warning, *briefing_rows(self.bound.plan, self.request, width)]
         if self._said:
             return [
                 EMPTY,
@@ -109,6 +117,10 @@ class BriefingScreen(Place[tuple[Bound, BindRequest] | None]):
             return
         part = (self.request.part + 1) % len(self.bound.plan.parts)
         self.request = replace(self.request, part=part)
+        if self._rehearsal and (part > 0) != self.request.cell_closed:
+            # Nobody rehearses a later part with an empty cell.
+            self.action_cell()
+            return
         self._compute()
 
     def action_cell(self) -> None:
@@ -116,8 +128,11 @@ class BriefingScreen(Place[tuple[Bound, BindRequest] | None]):
         if self.bound is None:
             return
         closed = not self.request.cell_closed
-        self.request = replace(self.request, cell_closed=closed, charge=self._recorded if closed else None)
-        if closed and self._recorded is None:
+        held = self._recorded
+        if self._rehearsal:
+            held = ChargeBox(*self.bound.plan.planned_kg, True, ("plan",))
+        self.request = replace(self.request, cell_closed=closed, charge=held if closed else None)
+        if closed and held is None:
             self.bench.say("This vessel has no charge record here: a closed cell counts as brim-full.", loud=True)
         self._compute()
 

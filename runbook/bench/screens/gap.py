@@ -13,6 +13,7 @@ from runbook.bench.place import Keys, Place
 from runbook.bench.rows import EMPTY, Row, row, wrapped
 from runbook.bench.widgets.lines import Lines
 from runbook.run.acts import GapAnswers
+from runbook.run.sentences import GAP_QUESTIONS
 
 if TYPE_CHECKING:
     from runbook.run.conductor import Conductor
@@ -34,12 +35,13 @@ class GapScreen(Place[None]):
         self._desk = desk
         self._why = why
         plan = desk.plan
-        vent = plan.let_down_valve or "the vent"
+        named = {"source": plan.source_tag or "", "vent": plan.let_down_valve or ""}
+        words = [f"{text} {f'({tag})' if (tag := named.get(key)) else ''}".strip() for key, text in GAP_QUESTIONS]
         self._questions: tuple[tuple[str, tuple[str, ...]], ...] = (
-            (f"{plan.source_tag or 'The heat source'} is", ("off", "unplugged", "on", _UNKNOWN)),
-            (f"{vent} is", ("open", "shut", _UNKNOWN)),
-            ("Has anything been touched?", ("no", "yes", _UNKNOWN)),
-            ("Who is here?", tuple(person.name for person in desk.ledger.people)),
+            (words[0], ("off", "unplugged", "on", _UNKNOWN)),
+            (words[1], ("open", "shut", _UNKNOWN)),
+            (words[2], ("no", "yes", _UNKNOWN)),
+            (words[3], tuple(person.name for person in desk.ledger.people)),
         )
         self._chosen: list[str] = [_UNKNOWN, _UNKNOWN, _UNKNOWN]
         self._here: list[str] = []
@@ -57,7 +59,7 @@ class GapScreen(Place[None]):
             rows.append(EMPTY)
             answer = ", ".join(self._here) or "nobody yet" if i == 3 else self._chosen[i]
             style = "strong" if i == self._at else "plain"
-            rows.append(row((f" {i + 1}. {question} ".ljust(34), style), (answer, style if i <= self._at else "dim")))
+            rows.append(row((f" {i + 1}. {question} ".ljust(46), style), (answer, style if i <= self._at else "dim")))
             if i == self._at:
                 for k, option in enumerate(options):
                     mark = "x" if option in ([*self._here] if i == 3 else [self._chosen[i]]) else " "

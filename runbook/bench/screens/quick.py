@@ -7,35 +7,22 @@ from collections.abc import Iterable
 from typing import TYPE_CHECKING, ClassVar
 
 from textual import events
+from textual.containers import VerticalScroll
 from textual.widget import Widget
 
-from runbook.answers import PlanLine
 from runbook.bench.acting import do
 from runbook.bench.place import Keys, Place
-from runbook.bench.rows import EMPTY, Row, padded, row, wrapped
+from runbook.bench.rows import EMPTY, Row, padded, wrapped
 from runbook.bench.style import ARM_S
+from runbook.bench.viewing import run_view
 from runbook.bench.widgets.lines import Lines
+from runbook.bench.widgets.margins import Margins
 from runbook.run.acts import QuickDone
-from runbook.run.clock import Moment
-from runbook.run.state import Ledger
+from runbook.run.sentences import duration
+from runbook.run.standing import QuickState
 
 if TYPE_CHECKING:
     from runbook.run.conductor import Conductor
-
-
-def seconds_left(ledger: Ledger, line: PlanLine, now: Moment) -> float:
-    """Until the present item's latest time [s]; negative when it has passed."""
-    done = ledger.entry.quick
-    since = done[-1].at if done else ledger.entry.at
-    return line.quick[len(done)].latest_s - now.lasted(since)
-
-
-def countdown(seconds: float) -> str:
-    """'1 min 05 s left', or how long ago the latest time passed."""
-    whole = int(abs(seconds))
-    minutes, rest = divmod(whole, 60)
-    words = f"{minutes} min {rest:02d} s" if minutes else f"{rest} s"
-    return f"{words} left" if seconds >= 0.0 else f"LATE by {words}"
 
 
 class QuickScreen(Place[None]):
@@ -54,7 +41,8 @@ class QuickScreen(Place[None]):
 
     def body(self) -> Iterable[Widget]:
         """All items, the present one large."""
-        yield Lines(self._rows, id="items")
+        yield VerticalScroll(Lines(self._rows, id="items"), can_focus=False)
+        yield Margins(self.bench.glyphs)
 
     def update_run(self) -> None:
         """The countdown as it is now; gone when all is confirmed or the run is elsewhere."""
@@ -64,34 +52,20 @@ class QuickScreen(Place[None]):
                 self.dismiss(None)
             return
         self.query_one("#items", Lines).refresh(layout=True)
+        self.query_one(Margins).show(run_view(self._desk, self.bench.rehearsal_mark))
         self.refresh_lines()
 
     def _rows(self, width: int) -> list[Row]:
-        ledger, line = self._desk.ledger, self._line
-        if line is None:
-            return []
-        done = len(ledger.entry.quick)
         rows: list[Row] = []
-        for i, item in enumerate(line.quick):
+        for i, item in enumerate(self._desk.standing().quick):
             rows.append(EMPTY)
-            if i < done:
-                late = ", late" if ledger.entry.quick[i].late else ""
-                rows += wrapped(f" {i + 1}  done{late}: {item.text}", width - 1, "dim")
-            elif i > done:
+            if item.done:
+                rows += wrapped(f" {i + 1}  done{', late' if item.late else ''}: {item.text}", width - 1, "dim")
+            elif item.left_s is None:
                 rows += wrapped(f" {i + 1}  then: {item.text}", width - 1)
             else:
-                rows += self._present(i + 1, item.text, item.if_not, seconds_left(ledger, line, self._now()), width)
+                rows += _present(i + 1, item, item.left_s, width)
         return rows + (wrapped(f" {self._said}", width - 1, "blocked") if self._said else [])
-
-    def _present(self, number: int, text: str, if_not: str, left: float, width: int) -> list[Row]:
-        late = left < 0.0
-        rows = [padded(one, width - 1, "loud") for one in wrapped(f" {number}  {text}", width - 2, "strong")]
-        rows.append(row(("    ", "plain"), (countdown(left), "blocked" if late else "strong")))
-        words = f"    {'NOW: ' if late else 'If not by then: '}{if_not}"
-        return rows + wrapped(words, width - 1, "loud" if late else "plain")
-
-    def _now(self) -> Moment:
-        return self._desk.clock.now()
 
     async def on_key(self, event: events.Key) -> None:
         """Enter confirms the present item, but not in the same press as the one before it."""
@@ -108,3 +82,11 @@ class QuickScreen(Place[None]):
     async def _confirm(self) -> None:
         self._said = await do(self._desk, QuickDone(len(self._desk.ledger.entry.quick)))
         self.update_run()
+
+
+def _present(number: int, item: QuickState, left: float, width: int) -> list[Row]:
+    late = left < 0.0
+    rows = [padded(one, width - 1, "loud") for one in wrapped(f" {number}  {item.text}", width - 2, "strong")]
+    rows += wrapped(f"    {f'LATE by {duration(left)}' if late else f'{duration(left)} left'}", width - 1, "strong")
+    words = f"    {'NOW: ' if late else 'If not by then: '}{item.if_not}"
+    return rows + wrapped(words, width - 1, "loud" if late else "plain")

@@ -43,9 +43,10 @@ class ReadPanel(Panel[bool]):
         Binding("f4", "who", show=False, priority=True),
     ]
 
-    def __init__(self, desk: Conductor, tags: tuple[str, ...], typed: str = "") -> None:
-        """Readings of `tags`, those asked for first; begins with `typed`."""
+    def __init__(self, desk: Conductor, tags: tuple[str, ...], asked: int, typed: str = "") -> None:
+        """Readings of `tags`; the first `asked` are asked for, one after the other. Begins with `typed`."""
         super().__init__()
+        self._asked = asked
         self._desk = desk
         self._tags = tags
         self._at = 0
@@ -130,7 +131,7 @@ class ReadPanel(Panel[bool]):
         self._recorded = True
         self.bench.drafts.pop(self._key, None)
         self._at += 1
-        if self._at >= len(self._tags):
+        if self._at >= self._asked:
             self.dismiss(True)
             return
         self._again()

@@ -145,30 +145,11 @@ class RunScreen(RunPlace):
         return run_view(self.desk, self.bench.rehearsal_mark)
 
     def _show(self, name: str, view: RunView, fresh: bool) -> None:
-        glyphs = self.bench.glyphs
         band = self.query_one(f"#band-{name}", Band)
         if fresh:
             band.first_page()
-        label = {"ask": "ON?", "agree": "AGREE?"}.get(name, name.upper())
-
-        def fit(width: int, height: int, page: int) -> list[Row]:
-            room = width - bands.LABEL
-            match name:
-                case "do":
-                    rows = bands.do(view.do, width, height, page, glyphs)
-                case "ask":
-                    rows = bands.ask(view.ask, width, glyphs)
-                case "alone":
-                    rows = bands.alone(view.alone, width, height)
-                case "ceiling":
-                    rows = bands.ceiling(view.ceiling, width, height, glyphs)
-                case "see":
-                    rows = bands.see(view.see, width)
-                case _:
-                    rows = bands.agree(view.agree, width, glyphs)
-            return bands.labelled(label, bands.fitted(rows, height, room, page))
-
-        band.show(fit)
+        glyphs = self.bench.glyphs
+        band.show(lambda width, height, page: bands.band_rows(name, view, width, height, page, glyphs))
 
     # -- keys -------------------------------------------------------------------------------------------
 

@@ -15,7 +15,9 @@ from runbook.bench.place import Keys
 from runbook.bench.rows import EMPTY, Row, beside, padded, row, wrapped
 from runbook.bench.run_place import RunPlace
 from runbook.bench.style import ARM_S
+from runbook.bench.viewing import run_view
 from runbook.bench.widgets.lines import Lines
+from runbook.bench.widgets.margins import Margins
 from runbook.run.acts import Act, Finish, MakeSafe, SafeActDone
 
 if TYPE_CHECKING:
@@ -23,6 +25,11 @@ if TYPE_CHECKING:
 
 _SEEN = {"g": "relief", "w": "window", "f": "fire"}
 """Key -> what a person sees that the tool cannot."""
+_SEES = (
+    ("G", "gas escaping, relief open, disc burst"),
+    ("W", "a mark, a crack or frost on a window; a joint that weeps"),
+    ("F", "fire, a gas alarm, somebody hurt"),
+)
 
 
 class SafeScreen(RunPlace):
@@ -41,10 +48,12 @@ class SafeScreen(RunPlace):
     def body(self) -> Iterable[Widget]:
         """The acts, then what never to do."""
         yield VerticalScroll(Lines(self._rows, id="acts"), can_focus=False)
+        yield Margins(self.bench.glyphs)
 
     def update_run(self) -> None:
         """The acts as they stand now."""
         self.query_one("#acts", Lines).refresh(layout=True)
+        self.query_one(Margins).show(run_view(self._desk, self.bench.rehearsal_mark))
         self.refresh_lines()
 
     @property
@@ -74,21 +83,17 @@ class SafeScreen(RunPlace):
             else:
                 rows += wrapped(f"   {i + 1}  done: {act}", width - 1, "dim")
         if safe.never:
-            rows += [EMPTY, *wrapped(f" NEVER: {safe.never}", width - 1, "blocked")]
+            rows += [EMPTY, *wrapped(f" {safe.never}", width - 1, "blocked")]
+        may_wait = self._desk.standing().safe.may_wait
+        if may_wait:
+            rows += wrapped(f" May one wait? {may_wait.capitalize()}.", width - 1)
         if not undone:
             rows += [EMPTY, *_big("All acts are confirmed. Enter ends the run.", width)]
         if ledger.halted:
             rows += [EMPTY, *wrapped(f" THE RUN IS HALTED: {ledger.halted}", width - 1, "blocked")]
-        seen = row(
-            "   If you see: ",
-            ("G", "key"),
-            " gas escaping   ",
-            ("W", "key"),
-            " a mark on a window   ",
-            ("F", "key"),
-            " fire, alarm, somebody hurt",
-        )
-        rows += [EMPTY, seen]
+        rows.append(EMPTY)
+        for key, words in _SEES:
+            rows.append(row(" ", (key, "key"), f"  if you see {words}"))
         return rows + (wrapped(f" {self._said}", width - 1, "blocked") if self._said else [])
 
     async def on_key(self, event: events.Key) -> None:

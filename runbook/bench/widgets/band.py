@@ -2,15 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-
 from textual.content import Content
 from textual.widget import Widget
 
-from runbook.bench.rows import Row, content
-
-Fit = Callable[[int, int, int], list[Row]]
-"""(width, height, page) -> exactly `height` rows."""
+from runbook.bench.bands import Fit
+from runbook.bench.rows import content
 
 
 class Band(Widget):

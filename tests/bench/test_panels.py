@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import pytest
 from textual.widgets import Input
 
+from runbook.answers import Instrument
 from runbook.bench.screens.gap import GapScreen
 from runbook.bench.screens.hold import HoldScreen
 from runbook.bench.screens.leave import LeaveScreen
@@ -182,6 +185,19 @@ async def test_a_quick_sequence(monkeypatch: pytest.MonkeyPatch) -> None:
 
         assert [mark.late for mark in bench.desk.ledger.entry.quick] == [True, False]
         assert isinstance(bench.screen, RunScreen)
+
+
+async def test_a_quick_sequence_of_a_rehearsal_shows_the_simulated_scale() -> None:
+    """Who shuts a vent on the falling scale has to see it fall."""
+    plan = scenes.plan(scenes.LINES[3:])
+    scale = Instrument("BS1", "mass", "scale", "kg", 0.0, 6.0, 5e-4, 0.0, 5e-5, 0.0, "at the cell")
+    pace = FakePace()
+    pace.dials["BS1"] = "0.11705"
+    async with running(replace(plan, instruments=(*plan.instruments, scale)), pace=pace) as bench:
+        await bench.press("enter")
+
+        assert isinstance(bench.screen, QuickScreen)
+        assert "BS1 shows 0.11705 kg" in bench.text
 
 
 async def test_one_press_confirms_one_item() -> None:

@@ -65,7 +65,17 @@ class QuickScreen(Place[None]):
                 rows += wrapped(f" {i + 1}  then: {item.text}", width - 1)
             else:
                 rows += _present(i + 1, item, item.left_s, width)
+        rows += self._simulated(width)
         return rows + (wrapped(f" {self._said}", width - 1, "blocked") if self._said else [])
+
+    def _simulated(self, width: int) -> list[Row]:
+        """What the simulated scales show: at the vessel a person looks at them with hands on the valve."""
+        pace = self.bench.pace
+        if pace is None:
+            return []
+        scales = [one for one in self._desk.plan.instruments if one.reads == "mass"]
+        shown = [f"{one.tag} shows {dial} {one.unit}" for one in scales if (dial := pace.dial(one.tag)) is not None]
+        return [EMPTY, *wrapped(" simulated: " + ", ".join(shown), width - 1, "rehearsal")] if shown else []
 
     async def on_key(self, event: events.Key) -> None:
         """Enter confirms the present item, but not in the same press as the one before it."""

@@ -7,6 +7,7 @@ output, and ends itself when an answer takes too long or the parent is gone.
 
 from __future__ import annotations
 
+import contextlib
 import faulthandler
 import json
 import os
@@ -53,24 +54,28 @@ def versions() -> dict[str, str]:
     return found
 
 
+def opened(request: BindRequest) -> tuple[Scene, tuple[Walked, ...]]:
+    """The scene of a request and its walk. Raises FileProblems, InputUnusable or OutsideValidity."""
+    scene = open_scene(
+        read_procedure(Path(request.procedure_path)),
+        request.barometer_Pa,
+        request.charge,
+        height_m=request.height_m,
+        hottest_K=request.room_hottest_K,
+        # A later part finds the vessel as the parts before it leave it.
+        cell_closed=request.cell_closed and request.part == 0,
+    )
+    return scene, walk(scene)
+
+
 def reply(bound: Bound, asked: dict[str, Any]) -> dict[str, Any]:
     """One reply. Every error of this program becomes a reason; anything else ends the process."""
     key = str(asked.get("key", ""))
     try:
         if asked.get("ask") == "bind":
             request = from_plain(BindRequest, asked["request"])
-            loaded = read_procedure(Path(request.procedure_path))
-            scene = open_scene(
-                loaded,
-                request.barometer_Pa,
-                request.charge,
-                height_m=request.height_m,
-                hottest_K=request.room_hottest_K,
-                # A later part finds the vessel as the parts before it leave it.
-                cell_closed=request.cell_closed and request.part == 0,
-            )
-            bound.lines = walk(scene)
-            bound.scene = scene
+            scene, bound.lines = opened(request)
+            bound.scene, loaded = scene, scene.loaded
             plan = plan_of(scene, date.fromisoformat(request.on), bound.lines, request.part)
             return {
                 "key": key,
@@ -101,8 +106,8 @@ def serve(lines_in: Callable[[], str], line_out: Callable[[str], None]) -> None:
         faulthandler.cancel_dump_traceback_later()
 
 
-def main() -> int:
-    """Serve standard input on a private copy of standard output."""
+def serve_standard(serving: Callable[[Callable[[], str], Callable[[str], None]], None]) -> int:
+    """Serve standard input on a private copy of standard output; the exit code."""
     answers = os.fdopen(os.dup(1), "w", encoding="utf-8")
     # Whatever a library prints goes where it cannot be taken for an answer.
     os.dup2(2, 1)
@@ -111,12 +116,10 @@ def main() -> int:
         answers.write(text + "\n")
         answers.flush()
 
-    try:
-        serve(sys.stdin.readline, line_out)
-    except (BrokenPipeError, KeyboardInterrupt):
-        return 0
+    with contextlib.suppress(BrokenPipeError, KeyboardInterrupt):
+        serving(sys.stdin.readline, line_out)
     return 0
 
 
 if __name__ == "__main__":
-    sys.exit(main())
+    sys.exit(serve_standard(serve))

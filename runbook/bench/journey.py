@@ -7,7 +7,6 @@ import contextlib
 import tempfile
 from collections.abc import Callable
 from dataclasses import dataclass, field
-from datetime import date
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -30,7 +29,7 @@ from runbook.run.conductor import Conductor
 from runbook.run.engine import Bound, ChildEngine
 from runbook.run.journal import Journal, JournalWriter, read
 from runbook.run.logbook import Logbook, RunFile
-from runbook.run.opening import Participant, charge_record, people, run_opened
+from runbook.run.opening import Participant, charge_record, people, played, run_opened
 from runbook.run.record import record_lines
 
 if TYPE_CHECKING:
@@ -195,16 +194,3 @@ async def _warm(engine: ChildEngine) -> None:
 
 def _set_up(bound: Bound, request: BindRequest) -> SetUpScreen:
     return SetUpScreen(bound.plan.bring, request.cell_closed)
-
-
-def played(roles: tuple[str, ...]) -> tuple[Participant, ...]:
-    """The people of a rehearsal: the one who sits here, and a played one for every other role."""
-    return tuple(
-        Participant("You" if i == 0 else f"{role} (played)", (role,), str(111 * (i + 1)))
-        for i, role in enumerate(roles)
-    )
-
-
-def today() -> str:
-    """The date on the wall of this room, not by UTC."""
-    return date.today().isoformat()  # noqa: DTZ011 - certificates are judged by it

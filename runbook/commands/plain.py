@@ -26,7 +26,7 @@ from runbook.run.conductor import Conductor
 from runbook.run.engine import ChildEngine
 from runbook.run.journal import Journal, JournalWriter, read
 from runbook.run.logbook import Logbook, RunFile, logbook_folder
-from runbook.run.opening import Participant, charge_record, people, run_opened
+from runbook.run.opening import Participant, charge_record, people, played, run_opened
 from runbook.run.record import record_lines
 
 
@@ -59,10 +59,7 @@ async def _rehearse(path: Path, seed: int, logbook: Logbook) -> int:
     engine, clock = ChildEngine(), ScaledClock(SystemClock())
     with _loading():
         bound = await engine.bind(request)
-    who = tuple(
-        Participant("You" if n == 0 else f"{role} (played)", (role,), str(111 * (n + 1)))
-        for n, role in enumerate(bound.plan.roles)
-    )
+    who = played(bound.plan.roles)
     print("REHEARSAL: nothing here happens at a vessel. Played, with their signing numbers:")
     print("\n".join(f"  {p.name}, {', '.join(p.roles)}: {p.number}" for p in who))
     target = logbook.new_run_path(bound.plan.vessel, clock.now(), rehearsal=True)

@@ -5,8 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from runbook.answers import Instrument, LineKind, Plan
+from runbook.apparatus.dial import DIMENSION
 from runbook.errors import InputUnusable
-from runbook.quantities import Dimension, Level, reading_from_typed
+from runbook.quantities import Level, reading_from_typed
 from runbook.run.acts import (
     Act,
     Attend,
@@ -26,16 +27,6 @@ from runbook.run.acts import (
 from runbook.run.gate import PROOFS
 from runbook.run.standing import Standing
 from runbook.run.state import Ledger
-
-DIMENSIONS = {
-    "pressure": Dimension.PRESSURE,
-    "temperature": Dimension.TEMPERATURE,
-    "mass": Dimension.MASS,
-    "liquid height": Dimension.LENGTH,
-    "carbon dioxide": Dimension.CONCENTRATION,
-    "oxygen": Dimension.CONCENTRATION,
-}
-"""Dimension of what an instrument reads."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -93,7 +84,7 @@ def reading(plan: Plan, standing: Standing, by: str, words: list[str], *, blind:
         instrument, value = tags[words[0].casefold()], " ".join(words[1:])
     else:
         instrument, value = _wanted(plan, standing, blind), " ".join(words)
-    typed = reading_from_typed(value, instrument.unit, DIMENSIONS[instrument.reads])
+    typed = reading_from_typed(value, instrument.unit, DIMENSION[instrument.reads])
     amount = typed.value.absolute(plan.barometer) if isinstance(typed.value, Level) else typed.value
     return Wish(Read(instrument.tag, amount, value, f"{instrument.tag} {typed.echo}", by, blind), typed.echo)
 

@@ -13,7 +13,7 @@ from dataclasses import asdict
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
-from runbook.commands.arguments import Arguments
+from runbook.commands.arguments import Arguments, iso_date
 from runbook.errors import ExitCode, InputUnusable
 from runbook.procedure.shelf import find_procedure
 
@@ -49,12 +49,12 @@ def _on_screens(path: Path, asked: Any) -> int:
 
     check_terminal("rehearse")
     from runbook.bench.entries import title_of
-    from runbook.bench.journey import Session, today
+    from runbook.bench.journey import Session
     from runbook.bench.screens.listing import Entry
     from runbook.run.logbook import Logbook, logbook_folder
 
     start = Entry("rehearse", title_of(path), str(path.parent), str(path))
-    session = Session(Logbook(logbook_folder(asked.logbook)), today(), start=start, seed=asked.seed)
+    session = Session(Logbook(logbook_folder(asked.logbook)), iso_date(None).isoformat(), start=start, seed=asked.seed)
     return run_screens(session, asked.ascii)
 
 

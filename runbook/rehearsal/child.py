@@ -7,21 +7,17 @@ is and what the run says has been done, and is answered with what every dial sho
 from __future__ import annotations
 
 import json
-import os
 import sys
 from collections.abc import Callable
 from dataclasses import replace
 from datetime import date
-from pathlib import Path
 from typing import Any
 
 from runbook.answers.request import BindRequest
 from runbook.assess.bind import plan_of
-from runbook.assess.scene import open_scene
-from runbook.assess.walk import walk
+from runbook.assess.child import opened, serve_standard
 from runbook.codec import from_plain
 from runbook.errors import RunbookError
-from runbook.procedure.reader import read_procedure
 from runbook.rehearsal.world import World
 from runbook.run.clock import Moment
 from runbook.run.state import Ledger, Stated
@@ -30,12 +26,8 @@ from runbook.run.state import Ledger, Stated
 def open_world(asked: dict[str, Any]) -> World:
     """The world of a request, a seed and a moment. Raises RunbookError."""
     request = from_plain(BindRequest, asked["request"])
-    loaded = read_procedure(Path(request.procedure_path))
-    scene = open_scene(
-        loaded, request.barometer_Pa, request.charge, height_m=request.height_m, hottest_K=request.room_hottest_K
-    )
-    lines = walk(scene)
-    plan = plan_of(scene, date.fromisoformat(request.on), lines)
+    scene, lines = opened(request)
+    plan = plan_of(scene, date.fromisoformat(request.on), lines, request.part)
     return World(scene, lines, plan, int(asked["seed"]), Moment(float(asked["boot"]), 0.0))
 
 
@@ -73,22 +65,5 @@ def serve(lines_in: Callable[[], str], line_out: Callable[[str], None]) -> None:
             line_out(json.dumps({"why": str(error)}))
 
 
-def main() -> int:
-    """Serve standard input on a private copy of standard output."""
-    answers = os.fdopen(os.dup(1), "w", encoding="utf-8")
-    # Whatever a library prints goes where it cannot be taken for an answer.
-    os.dup2(2, 1)
-
-    def line_out(text: str) -> None:
-        answers.write(text + "\n")
-        answers.flush()
-
-    try:
-        serve(sys.stdin.readline, line_out)
-    except (BrokenPipeError, KeyboardInterrupt):
-        return 0
-    return 0
-
-
 if __name__ == "__main__":
-    sys.exit(main())
+    sys.exit(serve_standard(serve))

@@ -18,7 +18,7 @@ from runbook.run.acts import Act, GoOn
 from runbook.run.clock import FakeClock
 from runbook.run.conductor import Conductor
 from runbook.run.journal import JournalWriter
-from runbook.run.opening import Participant, people, run_opened
+from runbook.run.opening import people, played, run_opened
 from runbook.run.reasons import Reason, Refused
 from runbook.run.sentences import reason_words
 
@@ -26,7 +26,6 @@ PATIENCE_S: Final = 24 * 3600.0
 """[s] the operator waits in one line before giving up."""
 _NO_PROGRESS: Final = 400
 """Wishes in one line without an event, after which the operator gives up."""
-_HUNDRED: Final = 100
 _START: Final = FakeClock().now()
 
 
@@ -47,11 +46,6 @@ class Outcome:
     events: int
 
 
-def players(roles: tuple[str, ...]) -> tuple[Participant, ...]:
-    """One played person a role."""
-    return tuple(Participant(f"played {role}", (role,), f"{_HUNDRED + n}") for n, role in enumerate(roles))
-
-
 async def rehearse(
     path: Path, seed: int, journal: JournalWriter | None = None, charge: ChargeBox | None = None, part: int = 0
 ) -> Outcome:
@@ -64,7 +58,7 @@ async def rehearse(
     bound = await engine.bind(request)
     clock = FakeClock(_START.boot, _START.wall)
     conductor = Conductor(journal, clock, engine)
-    who = players(bound.plan.roles)
+    who = played(bound.plan.roles)
     await conductor.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal=True))
     await conductor.settled()
     scene, lines = engine.here.scene, engine.here.lines

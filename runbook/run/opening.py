@@ -38,6 +38,14 @@ class ChargeRecord:
     """Of the run that left it so."""
 
 
+def played(roles: tuple[str, ...]) -> tuple[Participant, ...]:
+    """The people of a rehearsal: the one who sits here, and a played one for every other role."""
+    return tuple(
+        Participant("You" if n == 0 else f"{role} (played)", (role,), str(111 * (n + 1)))
+        for n, role in enumerate(roles)
+    )
+
+
 def people(participants: Iterable[Participant], roles: tuple[str, ...]) -> tuple[Person, ...]:
     """The people of a run. Raises InputUnusable: a role nobody or two people have, a missing name or number."""
     given = tuple(participants)

@@ -9,10 +9,9 @@ import pytest
 
 from runbook.answers import BindRequest, ChargeBox
 from runbook.assess.local import LocalEngine
-from runbook.rehearsal.headless import players
 from runbook.run.clock import FakeClock
 from runbook.run.conductor import Conductor
-from runbook.run.opening import people, run_opened
+from runbook.run.opening import people, played, run_opened
 from tests.assess.scenes import changed_files
 
 
@@ -21,7 +20,7 @@ async def begun(path: Path, request: BindRequest) -> Conductor:
     engine = LocalEngine()
     bound = await engine.bind(request)
     desk = Conductor(None, FakeClock(), engine)
-    await desk.open(run_opened(bound, people(players(bound.plan.roles), bound.plan.roles), request, rehearsal=False))
+    await desk.open(run_opened(bound, people(played(bound.plan.roles), bound.plan.roles), request, rehearsal=False))
     await desk.settled()
     return desk
 

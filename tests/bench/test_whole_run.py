@@ -14,14 +14,13 @@ from runbook.bench.screens.hold import HoldScreen
 from runbook.bench.screens.run import RunScreen
 from runbook.bench.screens.state import _SIGNS, StatePanel
 from runbook.procedure.reader import read_procedure
-from runbook.rehearsal.headless import players
 from runbook.rehearsal.operator import Operator
 from runbook.rehearsal.world import World
 from runbook.run import acts
 from runbook.run.clock import FakeClock
 from runbook.run.conductor import Conductor
 from runbook.run.journal import Journal, JournalWriter, read, verify
-from runbook.run.opening import people, run_opened
+from runbook.run.opening import people, played, run_opened
 from runbook.run.proofs import not_proved
 from tests.bench.pilot import Bench
 from tests.commands.typist import Table
@@ -155,7 +154,7 @@ async def test_the_shipped_procedure_key_by_key(tmp_path: Path, monkeypatch: pyt
     clock = FakeClock()
     journal = tmp_path / "run.jsonl"
     desk = Conductor(JournalWriter(Journal.create(journal)), clock, engine)
-    who = players(bound.plan.roles)
+    who = played(bound.plan.roles)
     await desk.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal=True))
     await desk.settled()
     assert engine.here.scene is not None

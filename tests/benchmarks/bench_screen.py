@@ -35,11 +35,11 @@ Empty().run()
 """
 LIST = """
 import sys
-from runbook.bench.journey import Session, today
+from runbook.bench.journey import Session
 from runbook.bench.launch import run_screens
 from runbook.run.logbook import Logbook
 from pathlib import Path
-run_screens(Session(Logbook(Path(sys.argv[1])), today()))
+run_screens(Session(Logbook(Path(sys.argv[1])), "2031-03-02"))
 """
 RUN = """
 import asyncio, sys

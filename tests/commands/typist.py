@@ -9,7 +9,6 @@ from runbook.assess.local import LocalEngine
 from runbook.bench.simulated import typed_value
 from runbook.commands.plain_session import Input, Session
 from runbook.procedure.reader import read_procedure
-from runbook.rehearsal.headless import players
 from runbook.rehearsal.operator import Operator
 from runbook.rehearsal.world import World
 from runbook.run import acts
@@ -17,7 +16,7 @@ from runbook.run.acts import Act
 from runbook.run.clock import FakeClock
 from runbook.run.conductor import Conductor
 from runbook.run.journal import Journal, JournalWriter
-from runbook.run.opening import people, run_opened
+from runbook.run.opening import people, played, run_opened
 from runbook.run.proofs import not_proved
 from runbook.run.state import Ledger
 
@@ -120,7 +119,7 @@ async def opened(path: Path, journal: Path, seed: int = 3) -> tuple[Session, Typ
     bound = await engine.bind(request)
     clock = FakeClock()
     desk = Conductor(JournalWriter(Journal.create(journal)), clock, engine)
-    who = players(bound.plan.roles)
+    who = played(bound.plan.roles)
     await desk.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal=True))
     await desk.settled()
     scene, lines = engine.here.scene, engine.here.lines

@@ -28,7 +28,7 @@ def open_world(asked: dict[str, Any]) -> World:
     request = from_plain(BindRequest, asked["request"])
     scene, lines = opened(request)
     plan = plan_of(scene, date.fromisoformat(request.on), lines, request.part)
-    return World(scene, lines, plan, int(asked["seed"]), Moment(float(asked["boot"]), 0.0))
+    return World(scene, lines, plan, int(asked["seed"]), Moment(float(asked["boot"]), 0.0), request.part)
 
 
 def look(world: World, asked: dict[str, Any]) -> dict[str, float]:

@@ -63,7 +63,7 @@ async def rehearse(
     await conductor.settled()
     scene, lines = engine.here.scene, engine.here.lines
     assert scene is not None, "bind leaves a scene"
-    world = World(scene, lines, bound.plan, seed, clock.now())
+    world = World(scene, lines, bound.plan, seed, clock.now(), part)
     try:
         return await _Run(conductor, world, Operator(conductor, world, lines, who), clock).go()
     finally:

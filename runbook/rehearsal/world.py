@@ -29,7 +29,10 @@ _LONGEST = 5.0
 class World:
     """Vessel, instruments and room of a rehearsal, moved on with the clock."""
 
-    def __init__(self, scene: Scene, lines: tuple[Walked, ...], plan: Plan, seed: int, now: Moment) -> None:
+    def __init__(
+        self, scene: Scene, lines: tuple[Walked, ...], plan: Plan, seed: int, now: Moment, part: int = 0
+    ) -> None:
+        """A world in which nothing has been done yet; part: the one the run begins with, from 0."""
         source = scene.apparatus.heat_source
         limit = None if source is None else hottest_source(scene, source)
         room = 0.5 * (scene.room_hottest + scene.room_coldest)
@@ -40,7 +43,7 @@ class World:
         self._dials = Dials(plan.instruments, seed)
         self._shown = Shown()
         self._at = now.boot
-        self._line = -1
+        self._line = plan.parts[part].first - 1 if part else -1
         self._low_joined = False
         self.vessel = Vessel(0.0, 0.0, room, room, False)
         self.controls = Controls(True, _WIDE, False, room, plan.barometer)
@@ -52,11 +55,13 @@ class World:
     def follow(self, ledger: Ledger) -> None:
         """Do what the run says has been done."""
         line = self._lines[ledger.line] if 0 <= ledger.line < len(self._lines) else None
-        if line is not None and ledger.line != self._line:
-            self._line = ledger.line
-            if isinstance(line.verb, Load):
-                mass = line.verb.load.value
-                self.vessel = self._simulation.loaded(self.vessel, mass, self.controls.barometer)
+        if ledger.line > self._line:
+            # Somebody quick may have passed several lines since the last look; what they did was done.
+            for passed in self._lines[self._line + 1 : ledger.line + 1]:
+                if isinstance(passed.verb, Load):
+                    mass = passed.verb.load.value
+                    self.vessel = self._simulation.loaded(self.vessel, mass, self.controls.barometer)
+        self._line = ledger.line
         vent_open, bore = self._vent(ledger, line)
         self.controls = replace(self.controls, vent_open=vent_open, bore=bore, heating=self._heating(ledger, line))
 

@@ -8,7 +8,7 @@ from __future__ import annotations
 import math
 from typing import Final
 
-from runbook.answers import Margin, Plan
+from runbook.answers import Margin, Need, Plan
 from runbook.quantities import UNKNOWN, pressure_to_unit, say, say_level, to_unit, unit
 
 _FINE: Final = 1.0e4
@@ -91,6 +91,14 @@ def reading(plan: Plan, tag: str, value: float | None, symbol: str = "") -> str:
     number, _, rest = text.partition(" ")
     # A whole number is no less exact on a dial whose half divisions are not whole.
     return f"{number.rstrip('0').rstrip('.') if '.' in number else number} {rest}"
+
+
+def accepted(plan: Plan, need: Need) -> str:
+    """'105 g to 150 g', 'at most 1.5 bar(g)': the range in which a reading is accepted."""
+    low, high = (reading(plan, need.tag, v, need.unit) for v in (need.low, need.high))
+    if need.low is None:
+        return "anything on its dial" if need.high is None else f"at most {high}"
+    return f"at least {low}" if need.high is None else f"{low} to {high}"
 
 
 def uncertainty(plan: Plan, tag: str, U: float) -> str:

@@ -9,8 +9,9 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import Final
 
-from runbook.answers import Margin, Need, Plan
+from runbook.answers import Margin, Plan
 from runbook.run.amounts import (
+    accepted,
     difference,
     duration,
     grams,
@@ -87,16 +88,9 @@ def _lighter(plan: Plan, ledger: Ledger, reason: Reason) -> str:
     return f"{OTHERWISE} A new reading, if that one was wrong."
 
 
-def _accepted(plan: Plan, need: Need) -> str:
-    low, high = (reading(plan, need.tag, v, need.unit) for v in (need.low, need.high))
-    if need.low is None:
-        return "anything on its dial" if need.high is None else f"at most {high}"
-    return f"at least {low}" if need.high is None else f"{low} to {high}"
-
-
 def _outside(plan: Plan, _: Ledger, r: Reason) -> str:
     said = f"{r.tag} read {reading(plan, r.tag, r.value)}"
-    return f"{said}; accepted is {_accepted(plan, r.need)}." if r.need is not None else f"{said}, outside its dial."
+    return f"{said}; accepted is {accepted(plan, r.need)}." if r.need is not None else f"{said}, outside its dial."
 
 
 def _old(_: Plan, __: Ledger, r: Reason) -> str:

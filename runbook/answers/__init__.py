@@ -5,6 +5,7 @@ with a Question, the other answers with data of this package, and everything her
 as it stands. No logic lives here. All quantities are SI; all pressures are absolute.
 """
 
+from runbook.answers.card import GaugeCard, GaugeRow
 from runbook.answers.lines import Empty, Hold, LineKind, Need, PlanLine, QuickItem, SafetyMessage, Sight, Witness
 from runbook.answers.margins import (
     Agreement,
@@ -36,6 +37,8 @@ __all__ = [
     "Empty",
     "Finding",
     "Future",
+    "GaugeCard",
+    "GaugeRow",
     "Hazard",
     "Hold",
     "Instrument",

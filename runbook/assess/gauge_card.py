@@ -1,0 +1,82 @@
+"""What the gauge will show of the planned charge at each temperature of the lesson, for the card beside its dial.
+
+Of a sealed charge at rest: while the wall warms, the gauge stands lower by what the thermometer is ahead.
+"""
+
+from __future__ import annotations
+
+from math import ceil, floor
+
+from runbook.answers import GaugeCard, GaugeRow
+from runbook.apparatus.ceiling import ceiling
+from runbook.apparatus.instruments import permissible_error
+from runbook.apparatus.model import Instrument
+from runbook.apparatus.relief import lowest_opening
+from runbook.apparatus.spaces import joined_spaces
+from runbook.assess.corners import highest_pressure, temperature_at_pressure
+from runbook.assess.scene import Scene
+from runbook.assess.walk import Walked, hottest_of
+from runbook.errors import OutsideValidity
+from runbook.procedure.model import WarmTo
+from runbook.quantities import Level
+
+_ROWS = 16
+"""More lines than this nobody finds their way in."""
+_STEPS = (1.0, 2.0, 5.0, 10.0, 20.0, 50.0)
+"""[K] distances of the rows, the first that needs no more than _ROWS."""
+
+
+def gauge_card(scene: Scene, lines: tuple[Walked, ...]) -> GaugeCard | None:
+    """The card of the first gauge on the charge's space, for the charge as planned; None where there is none."""
+    apparatus, space = scene.apparatus, scene.charge_space
+    gauge = next((i for i in apparatus.instruments if i.reads == "pressure" and i.of == space), None)
+    if gauge is None:
+        return None
+    shut = {v.tag: "shut" for v in apparatus.valves}
+    lowest = ceiling(apparatus, joined_spaces(apparatus, shut, space))
+    level = None if lowest is None or lowest.level is None else lowest.level
+    hottest = max([scene.room_hottest, *(hottest_of(scene, w.verb) for w in lines if isinstance(w.verb, WarmTo))])
+    return GaugeCard(
+        tag=gauge.tag,
+        unit=gauge.dial.unit,
+        low=_absolute(gauge.dial.low, scene),
+        high=_absolute(gauge.dial.high, scene),
+        division=gauge.division.value,
+        ceiling=None if level is None else level.absolute(scene.barometer.middle_Pa),
+        ceiling_by="" if lowest is None else lowest.tag,
+        rows=tuple(_row(scene, gauge, t) for t in _temperatures(scene.room_coldest, hottest)),
+        hottest_place=_hottest_place(scene, None if level is None else level.absolute(scene.barometer.low_Pa)),
+        relief=tuple(
+            (r.tag, r.kind, lowest_opening(r).absolute(scene.barometer.low_Pa))
+            for r in apparatus.relief
+            if r.space == space
+        ),
+    )
+
+
+def _temperatures(low: float, high: float) -> list[float]:
+    """Round temperatures [K] from below low to above high."""
+    first, last = low - 273.15, high - 273.15
+    step = next((s for s in _STEPS if ceil(last / s) - floor(first / s) < _ROWS), _STEPS[-1])
+    return [273.15 + step * k for k in range(floor(first / step), ceil(last / step) + 1)]
+
+
+def _row(scene: Scene, gauge: Instrument, temperature: float) -> GaugeRow:
+    low_kg, high_kg = scene.planned
+    least, most = scene.volume
+    try:
+        expected = scene.substance.pressure(temperature, 0.5 * (low_kg + high_kg) / scene.apparatus.volume.free.value)
+        low = scene.substance.pressure(temperature, low_kg / most)
+    except (OutsideValidity, ZeroDivisionError):
+        return GaugeRow(temperature, None, None, None)
+    error = permissible_error(gauge, expected) + gauge.division.value / 2.0
+    high = highest_pressure(scene, high_kg, temperature).value
+    return GaugeRow(temperature, low - error, expected, None if high is None else high + error)
+
+
+def _hottest_place(scene: Scene, ceiling_Pa: float | None) -> float | None:
+    return None if ceiling_Pa is None else temperature_at_pressure(scene, scene.planned[1], ceiling_Pa, 0.0)
+
+
+def _absolute(value: float | Level, scene: Scene) -> float:
+    return value.absolute(scene.barometer.middle_Pa) if isinstance(value, Level) else float(value)

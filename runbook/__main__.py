@@ -17,6 +17,7 @@ COMMANDS = {
     "state": "the state of a charge at a temperature",
     "new": "write a commented start of a file",
     "schema": "what an editor needs to help while a file is written",
+    "print": "write a procedure on paper, with the cards for the bench",
     "logbook": "list, show and verify what was recorded",
     "about": "versions and a self-check",
 }

@@ -63,10 +63,10 @@ def _temperatures(low: float, high: float) -> list[float]:
 
 def _row(scene: Scene, gauge: Instrument, temperature: float) -> GaugeRow:
     low_kg, high_kg = scene.planned
-    least, most = scene.volume
+    largest = scene.volume[1]
     try:
         expected = scene.substance.pressure(temperature, 0.5 * (low_kg + high_kg) / scene.apparatus.volume.free.value)
-        low = scene.substance.pressure(temperature, low_kg / most)
+        low = scene.substance.pressure(temperature, low_kg / largest)
     except (OutsideValidity, ZeroDivisionError):
         return GaugeRow(temperature, None, None, None)
     error = permissible_error(gauge, expected) + gauge.division.value / 2.0

@@ -8,7 +8,6 @@ from __future__ import annotations
 import json
 import sys
 from datetime import date
-from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from runbook.commands.arguments import Arguments, iso_date
@@ -37,9 +36,10 @@ def main(argv: list[str]) -> int:
 
 def _check(file: str, on: date) -> tuple[str, Plan | None, tuple[Problem, ...]]:
     from runbook.procedure.reader import read_procedure
+    from runbook.procedure.shelf import find_procedure
 
     try:
-        loaded = read_procedure(Path(file))
+        loaded = read_procedure(find_procedure(file))
         # Physics only for files that read well: a wrong unit is told in a tenth of a second.
         from runbook.assess.bind import bind
 

@@ -17,9 +17,10 @@ from runbook.apparatus.certificates import certificates
 from runbook.apparatus.instruments import permissible_error
 from runbook.apparatus.spaces import joined_spaces
 from runbook.assess.bounds import charge_bounds
+from runbook.assess.mend import mends
 from runbook.assess.plan_line import FORBIDDEN_TO_RELEASE, plan_line
 from runbook.assess.scene import Scene, open_scene
-from runbook.assess.verdict import line_findings, verdict_of
+from runbook.assess.verdict import line_findings, mend_findings, verdict_of
 from runbook.assess.walk import VesselState, Walked, outside_tags, start_state, walk
 from runbook.procedure.model import (
     LetDownTo,
@@ -52,6 +53,9 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
     found = tuple(
         Finding(p.rule, p.severity, p.line, p.column, p.message) for p in writing_findings(loaded)
     ) + line_findings(loaded, walked, plan_lines, dated)
+    verdict = verdict_of(plan_lines, found)
+    if verdict == "outside limits":
+        found += mend_findings(loaded, mends(scene))
     top = _ceiling(scene)
     low, high = scene.barometer.low_Pa, scene.barometer.high_Pa
     source = apparatus.heat_source
@@ -65,7 +69,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
         fluid=scene.substance.name,
         procedure_sha256=loaded.procedure_sha256,
         apparatus_sha256=loaded.apparatus_sha256,
-        verdict=verdict_of(plan_lines, found),
+        verdict=verdict,
         approved=f"{apparatus.approved.by}, {apparatus.approved.role}, {apparatus.approved.date.isoformat()}",
         findings=found,
         barometer=scene.barometer.middle_Pa,

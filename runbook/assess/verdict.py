@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from runbook.answers import Certificate, Effect, Finding, LineKind, Margin, PlanLine
+from runbook.assess.mend import Mend
 from runbook.assess.walk import Walked
 from runbook.procedure.reader import Loaded
 from runbook.quantities import say
@@ -43,6 +44,17 @@ def line_findings(
         ]
         found += _gates(lines, index, at)
     return tuple(found)
+
+
+def mend_findings(loaded: Loaded, found: Sequence[Mend]) -> tuple[Finding, ...]:
+    """What would bring it within limits, each at the value that would change."""
+    said = []
+    for one in found:
+        first = one.edits[0]
+        at = loaded.positions.get(("apparatus",), (1, 1)) if first.in_apparatus else first.at
+        where = f" ({loaded.apparatus_file}:{first.at[0]}:{first.at[1]})" if first.in_apparatus else ""
+        said.append(Finding("mend", "advice", *at, f"within limits with {one.words}, all else as it is{where}"))
+    return tuple(said)
 
 
 def verdict_of(lines: Sequence[PlanLine], findings: Sequence[Finding]) -> str:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import importlib
+import io
 import os
 import sys
 from collections.abc import Callable
@@ -78,6 +79,10 @@ def _command(name: str) -> Callable[[list[str]], int]:
 
 def run() -> None:
     """Entry point of the installed script."""
+    for stream in (sys.stdout, sys.stderr):
+        # A terminal that cannot show a degree sign gets a question mark, not an error.
+        if isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors="replace")
     sys.exit(main())
 
 

@@ -82,6 +82,8 @@ class Finding:
     line: int
     column: int
     message: str
+    file: str = ""
+    """Where it stands, if not in the procedure file."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -145,3 +147,5 @@ class Plan:
     lines: tuple[PlanLine, ...]
     make_safe_also: tuple[tuple[str, str], ...]
     """Author's additions: (text, role)."""
+    path: tuple[tuple[float, float], ...] = ()
+    """The planned charge at fixed density, cold to hot: temperature [K], pressure [Pa]. For pictures only."""

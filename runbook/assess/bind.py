@@ -18,6 +18,7 @@ from runbook.apparatus.instruments import permissible_error
 from runbook.apparatus.spaces import joined_spaces
 from runbook.assess.bounds import charge_bounds
 from runbook.assess.mend import mends
+from runbook.assess.path import planned_path
 from runbook.assess.plan_line import FORBIDDEN_TO_RELEASE, plan_line
 from runbook.assess.scene import Scene, open_scene
 from runbook.assess.verdict import line_findings, mend_findings, verdict_of
@@ -99,6 +100,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
         parts=_parts(scene, walked),
         lines=plan_lines,
         make_safe_also=tuple((a.do, a.who or "") for a in procedure.make_safe_also),
+        path=planned_path(scene, walked),
     )
 
 

@@ -51,9 +51,8 @@ def mend_findings(loaded: Loaded, found: Sequence[Mend]) -> tuple[Finding, ...]:
     said = []
     for one in found:
         first = one.edits[0]
-        at = loaded.positions.get(("apparatus",), (1, 1)) if first.in_apparatus else first.at
-        where = f" ({loaded.apparatus_file}:{first.at[0]}:{first.at[1]})" if first.in_apparatus else ""
-        said.append(Finding("mend", "advice", *at, f"within limits with {one.words}, all else as it is{where}"))
+        file = loaded.apparatus_file if first.in_apparatus else ""
+        said.append(Finding("mend", "advice", *first.at, f"within limits with {one.words}, all else as it is", file))
     return tuple(said)
 
 

@@ -118,32 +118,6 @@ def _print(file: str, plan: Plan | None, problems: tuple[Problem, ...]) -> None:
             print(str(problem), file=sys.stderr)
         print(f"{file}: UNREADABLE, {len(problems)} to mend")
         return
-    from runbook.assess.verdict import amount
+    from runbook.commands.check_report import print_report
 
-    for finding in plan.findings:
-        print(f"{file}:{finding.line}:{finding.column}: {finding.severity}: {finding.message} [{finding.rule}]")
-    print(f"{file}: {plan.verdict.upper()} of the figures in this file, approved by {plan.approved}")
-    print(f"  {'step':<6}{'governs':<12}{'what':<20}{'worst':>14}{'allowed':>14}   left alone")
-    for line in plan.lines:
-        governs = line.ahead[0] if line.ahead else None
-        alone = _alone_words(line.left_alone)
-        if governs is None:
-            print(f"  {line.number:<6}{'-':<12}{'':<20}{'':>14}{'':>14}   {alone}")
-            continue
-        worst = "not known" if governs.worst is None else amount(governs.worst, governs.unit)
-        allowed = "not known" if governs.allowed is None else amount(governs.allowed, governs.unit)
-        print(f"  {line.number:<6}{governs.limit:<12}{governs.kind:<20}{worst:>14}{allowed:>14}   {alone}")
-    for name in ("least", "best", "most"):
-        mass = getattr(plan.bounds, f"{name}_kg")
-        reason = getattr(plan.bounds, f"{name}_reason")
-        print(f"  {name} charge: " + ("none" if mass is None else f"{mass * 1000:.1f} g") + f" ({reason})")
-
-
-def _alone_words(alone: LeftAlone) -> str:
-    from runbook.quantities import say
-
-    ends = [
-        f"{f.cause} {say(f.ends_Pa, 'bar(a)', 1)}" if f.ends_Pa is not None else f"{f.cause}: not known"
-        for f in alone.futures
-    ]
-    return ("at rest: " if alone.at_rest else "NOT AT REST: ") + ", ".join(ends)
+    print_report(file, plan)

@@ -88,3 +88,18 @@ def test_a_missing_file_is_a_sentence(tmp_path: Path, capsys: pytest.CaptureFixt
     """No traceback, exit 2."""
     assert main([str(tmp_path / "none.yaml")]) == 2
     assert "none.yaml" in capsys.readouterr().err
+
+
+def test_steps_that_say_the_same_stand_once(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """An over-filled plan says each limit once, with the numbers of all its steps, not thirty times."""
+    path = changed_files(tmp_path, {"mass: 117 g ± 2 g": "mass: 180 g ± 2 g"})
+    main([str(path), *ON])
+    out = capsys.readouterr().out
+    assert out.count("RD1 pressure, heat stuck on") == 1
+    assert "steps 1.17, 3.3 to 3.5: RD1 pressure, heat stuck on" in out
+
+
+def test_plain_when_piped(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """No escape sequence reaches a file."""
+    main([str(changed_files(tmp_path)), *ON])
+    assert "\x1b" not in capsys.readouterr().out

@@ -26,23 +26,30 @@ class Relief(FileModel):
     """A bursting disc or a relief valve."""
 
     tag: Name
+    """As it stands on its holder. Example: RD1"""
     kind: Literal["bursting disc", "relief valve"]
+    """A disc or a valve. Example: bursting disc"""
     space: Name
+    """The space it relieves. Example: cell"""
     bursts_at: f.LevelField | None = None
-    """Of a disc: rated bursting pressure, gauge."""
+    """Of a disc: rated bursting pressure, gauge. Example: 130 bar(g)"""
     opens_at: f.LevelField | None = None
-    """Of a valve: set pressure, gauge."""
+    """Of a valve: set pressure, gauge. Example: 9 bar(g)"""
     at_temperature: f.TemperatureRangeField | None = None
-    """The coincident temperature of the rating; above it the device is not what its tag says."""
+    """The coincident temperature of the rating; above it the device is not what its tag says. Example: 20 degC to 50
+    degC"""
     manufacturing_range: f.FractionRangeField | None = None
-    """Of a disc: how far its rating may lie from what was ordered, both ends."""
+    """Of a disc: how far its rating may lie from what was ordered, both ends. Example: -4 % to 0 %"""
     tolerance: f.FractionField
-    """Of the opening pressure, half-width."""
+    """Of the opening pressure, half-width. Example: 5 %"""
     run_below: f.FractionField
-    """The vessel is run below this share of the lowest opening pressure."""
+    """The vessel is run below this share of the lowest opening pressure. Example: 80 %"""
     fitted: f.DateField
+    """When. Example: 2031-02-11"""
     valid_until: f.DateOrUnknown
+    """The last day on which it counts, or `not known`. Example: 2032-02-11"""
     source: Text
+    """Where its figures come from. Example: tag on the holder"""
 
     @field_validator("bursts_at", "opens_at")
     @classmethod
@@ -88,36 +95,46 @@ class HeatSource(FileModel):
     """What warms the vessel besides the room."""
 
     tag: Name
+    """As it stands on its plug. Example: H1"""
     kind: Literal["water jacket", "water bath", "heating tape", "heater cartridge", "hot air"]
+    """What it is. Example: water jacket"""
     power: f.PowerField
+    """The most it gives. Example: 60 W"""
     hottest: f.TemperatureField | None = None
-    """Hottest it can become by its nature, such as boiling water."""
+    """Hottest it can become by its nature, such as boiling water. Example: 100 degC"""
     cut_out: f.TemperatureOrUnknown | None = None
-    """Independent of its controller; None: it has none."""
+    """Independent of its controller, or `not known`; left out: it has none. Example: 38 degC ± 1 K"""
     tested: f.DateField | None = None
-    """When the cut-out was last tripped on purpose."""
+    """When the cut-out was last tripped on purpose. Example: 2031-02-12"""
     heat_capacity: f.HeatCapacityField
+    """Of the source itself, water included: what it still gives when it is off. Example: 2.5 kJ/K"""
     taken_away_in_one_motion: bool
+    """Whether a hand can take it from the vessel at once. Example: true"""
 
 
 class Instrument(FileModel):
     """What gives a reading."""
 
     tag: Name
+    """As it stands on its face. Example: PG1"""
     reads: Reads
+    """What it reads. Example: pressure"""
     of: Name
-    """A space for a pressure; else 'wall', 'fluid', 'bath', 'scale', 'window' or 'room air'."""
+    """A space for a pressure; else 'wall', 'fluid', 'bath', 'scale', 'window' or 'room air'. Example: cell"""
     dial: Dial
+    """First and last mark in the unit that is printed there. Example: 0 bar(g) to 160 bar(g)"""
     klass: float | str | None = Field(default=None, alias="class")
-    """EN 837-1 class of a gauge, IEC 60751 class of a thermometer; else None and `error` says it."""
+    """EN 837-1 class of a gauge, IEC 60751 class of a thermometer; where it has none, write `error`. Example: 0.6"""
     error: Bounded | None = None
-    """Permissible error at any point, half-width [SI]."""
+    """Permissible error at any point, half-width; where it has no class. Example: 0.5 g"""
     division: Bounded
-    """Smallest printed or shown step [SI]."""
+    """Smallest printed or shown step. Example: 1 bar"""
     lag: f.TimeField | None = None
-    """Time constant."""
+    """Time constant: how long until it has followed two thirds of a change. Example: 2 min"""
     read_from: Text
+    """Where one stands to read it. Example: shield"""
     valid_until: f.DateOrUnknown
+    """Last day of its certificate, or `not known`. Example: 2032-01-31"""
 
     @field_validator("dial", mode="plain")
     @classmethod

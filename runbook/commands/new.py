@@ -19,14 +19,29 @@ _OR = " or ".join(_NAMES.values())
 def main(argv: list[str]) -> int:
     """Write the start and say what to do next; returns the exit code."""
     parser = Arguments(prog="runbook new", description=__doc__)
-    parser.add_argument("kind", choices=sorted(_NAMES), help="what to write")
+    parser.add_argument("--manual", action="store_true", help="print the manual for authors instead")
+    parser.add_argument("kind", nargs="?", choices=sorted(_NAMES), help="what to write")
     parser.add_argument("file", nargs="?", metavar="FILE", help=f"where (default: {_OR})")
     asked = parser.parse_args(argv)
+    if asked.manual:
+        return _manual()
+    if asked.kind is None:
+        raise InputUnusable(f"say what to write: {' or '.join(sorted(_NAMES))}")
     path = Path(asked.file or _NAMES[asked.kind])
     _write(path, _text(asked.kind, path))
     print(path)
     then = "then run: runbook check" if asked.kind == "procedure" else "then write: runbook new procedure"
     print(f"Replace every figure in {path} by yours, {then}", file=sys.stderr)
+    return int(ExitCode.GOOD)
+
+
+def _manual() -> int:
+    from runbook.procedure.manual import manual_path
+
+    page = manual_path()
+    if page is None or not page.exists():
+        raise InputUnusable("the manual is not installed with this program")
+    print(page.read_text(encoding="utf-8"), end="")
     return int(ExitCode.GOOD)
 
 

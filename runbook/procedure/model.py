@@ -81,58 +81,77 @@ class Issue(FileModel):
     """Which edition of the text this is, and who answers for it."""
 
     number: f.BareCount
+    """Counts up with every change. Example: 3"""
     date: f.DateField
+    """When it was issued. Example: 2031-03-02"""
     written_by: Text
+    """Who wrote it. Example: R. Amsel"""
     checked_by: Text
-    """Another person than the author."""
+    """Another person than the author. Example: T. Okoro"""
     review_by: f.DateField
+    """When it has to be looked at again. Example: 2032-03-02"""
 
 
 class Charge(FileModel):
     """How much is sealed in."""
 
     mass: f.MassField
+    """What is sealed in, and the most it may be off. Example: 117 g ± 2 g"""
     loaded_as: Literal["dry ice", "liquid", "gas", "already loaded"]
+    """How it comes in. Example: dry ice"""
 
 
 class Room(FileModel):
     """The room for which the procedure is written."""
 
     hottest: f.TemperatureField
+    """The hottest the room may become with everybody gone. Example: 30 degC"""
     coldest: f.TemperatureField
+    """The coldest it may be. Example: 18 degC"""
     volume: f.VolumeField
+    """Of the air people breathe. Example: 180 m3"""
     air_changes: f.AirChangesField
+    """Of the ventilation. Example: 2 per h"""
     height: f.HeightField | None = None
-    """Above sea level: the barometer's value where nobody has read it."""
+    """Above sea level: gives the barometer where nobody has read it. Example: 120 m"""
 
 
 class Parked(FileModel):
     """How the vessel is left at rest between two parts of the day."""
 
     heat: Literal["unplugged", "off"]
+    """How the source is left. Example: unplugged"""
     shield: Literal["shut"]
+    """How the shield is left. Example: shut"""
     key_with: Name
-    """The role that has the key."""
+    """The role that has the key. Example: second"""
 
 
 class Part(FileModel):
     """One part of the day: steps, or the vessel parked."""
 
     name: Text
+    """What people call this part of the day. Example: The lesson"""
     lead: f.TimeField | None = None
-    """How long before the lesson it begins."""
+    """How long before the lesson it begins. Example: 3 h"""
     fits: f.TimeField | None = None
-    """The time it must fit into."""
+    """The time it must fit into. Example: 50 min"""
     repeatable: bool = False
+    """Whether it may be given again: it begins and ends at rest. Example: true"""
     parked: Parked | None = None
+    """The vessel is left at rest: in place of `steps`. Example: {heat: unplugged, shield: shut, key_with: second}"""
     steps: tuple[Step, ...] = ()
+    """What is done, in order. Example: [{do: Press tare, who: performer}]"""
 
 
 class Also(FileModel):
     """What the author adds to make safe; its built-in acts stay and come first."""
 
     do: Text
+    """An act added to make safe; the built-in ones stay and come first. Example: Send the class out by the upper
+    door"""
     who: Name
+    """The role that does it. Example: teacher"""
 
 
 def _one_vessel(given: Any) -> Any:
@@ -147,19 +166,33 @@ class Procedure(FileModel):
     """One written demonstration. All quantities SI."""
 
     format: Literal["procedure 1"]
+    """What kind of file this is, and which version of its rules. Example: procedure 1"""
     name: Text
+    """What the demonstration is called. Example: Carbon dioxide through its critical point"""
     issue: Issue
+    """Which edition this is, and who answers for it. Example: {number: 3, date: 2031-03-02, written_by: R. Amsel,
+    checked_by: T. Okoro, review_by: 2032-03-02}"""
     apparatus: Annotated[Text, BeforeValidator(_one_vessel)]
-    """The apparatus file, relative to this one."""
+    """The apparatus file, relative to this one and in its folder or beneath. Example: apparatus/view-cell-250.yaml"""
     fluid: Text
+    """What is in the vessel, by name. Example: carbon dioxide"""
     charge: Annotated[
         Annotated[Charge, Tag("(mapping)")] | Annotated[Literal["already loaded"], Tag("(words)")],
         Discriminator(mapping_or_words),
     ]
+    """How much is sealed in; or the words `already loaded`. Example: {mass: 117 g ± 2 g, loaded_as: dry ice}"""
     room: Room
+    """The room it is written for. Example: {hottest: 30 degC, coldest: 18 degC, volume: 180 m3, air_changes: 2 per h,
+    height: 120 m}"""
     roles: Annotated[tuple[Name, ...], Field(min_length=1)]
+    """Everybody who does or signs something. Example: [performer, second, teacher]"""
     bring: tuple[Text, ...] = ()
+    """What has to be there before it begins. Example: [a lamp, cryogenic gloves]"""
     at_start: dict[Name, Position]
-    """Position of every valve, opening and heat source when the procedure begins."""
+    """How every valve, opening and heat source stands when it begins. Example: {V1: open, V2: open, V3: open, H1:
+    unplugged}"""
     parts: Annotated[tuple[Part, ...], Field(min_length=1)]
+    """The parts of the day, in order. Example: [{name: At rest, parked: {heat: unplugged, shield: shut, key_with:
+    second}}]"""
     make_safe_also: tuple[Also, ...] = ()
+    """What the author adds to make safe. Example: [{do: Send the class out by the upper door, who: teacher}]"""

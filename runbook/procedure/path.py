@@ -33,6 +33,7 @@ class Load(FileModel):
     """Put charge in, the vessel open."""
 
     load: f.MassField
+    """Put charge in, the vessel open: what the scale may show. Example: 140 g ± 10 g"""
 
 
 class _Word(FileModel):
@@ -60,7 +61,7 @@ class OpenContainment(FileModel):
     """A closure of the vessel is opened to the room."""
 
     open_containment: Name | None = None
-    """Tag of the opening; None: any."""
+    """A closure is opened to the room: tag of the opening; left out: any. Example: V1"""
 
     @model_validator(mode="before")
     @classmethod
@@ -72,52 +73,69 @@ class WarmTo(FileModel):
     """The fluid becomes warmer."""
 
     warm_to: Aim
+    """The fluid becomes warmer: to a temperature, or to `room temperature`. Example: 33 degC"""
     by_means_of: Name
-    """Tag of the heat source, or 'room air', or 'water by hand'."""
+    """Tag of the heat source, or `room air`, `lukewarm water`, `cold water`. Example: H1"""
     set_to: f.TemperatureField | None = None
-    """Set point of the source, where it is not the target."""
+    """Set point of the source, where it is not the target. Example: 34 degC"""
     rate: f.TemperatureRateRangeField | None = None
+    """How fast it may go. Example: up to 1 K/min"""
     overshoot: f.TemperatureDifferenceField | None = None
-    """How far it may pass the target, in the direction of the step only."""
+    """How far it may pass the target. Example: 2 K"""
 
 
 class CoolTo(FileModel):
     """The fluid becomes colder."""
 
     cool_to: Aim
+    """The fluid becomes colder: to a temperature, or to `room temperature`. Example: 28 degC"""
     by_means_of: Name
+    """Tag of the heat source, or `room air`, `lukewarm water`, `cold water`. Example: room air"""
     set_to: f.TemperatureField | None = None
+    """Set point of the source, where it is not the target. Example: 27 degC"""
     rate: f.TemperatureRateRangeField | None = None
+    """How fast it may go. Example: up to 2 K/min"""
     overshoot: f.TemperatureDifferenceField | None = None
+    """How far it may pass the target, downwards. Example: 1 K"""
 
 
 class KeepAt(FileModel):
     """The fluid stays where it is."""
 
     keep_at: Aim
+    """The fluid stays where it is: at a temperature, or at `room temperature`. Example: 33 degC"""
     by_means_of: Name
+    """Tag of the heat source, or `room air`, `lukewarm water`, `cold water`. Example: H1"""
     for_: Annotated[f.TimeField, Field(alias="for")]
+    """For how long. Example: 10 min"""
     overshoot: f.TemperatureDifferenceField | None = None
+    """How far it may leave it. Example: 0.5 K"""
 
 
 class LetDownTo(FileModel):
     """Gas leaves through a valve until a pressure is reached. It fixes a pressure, not a temperature."""
 
     let_down_to: f.LevelField
+    """Gas leaves until this pressure is reached; it fixes a pressure, not a temperature. Example: 0 bar(g)"""
     through: Name
+    """Tag of the valve. Example: V2"""
     pause_above: f.LevelField | None = None
-    """Above it the valve is shut again for as long as liquid is seen."""
+    """Above it the valve is shut again for as long as liquid is seen. Example: 20 bar(g)"""
     until: Literal["no liquid seen", "gauge at zero"] | None = None
+    """What ends it besides the pressure. Example: no liquid seen"""
 
 
 class Purge(FileModel):
     """Filled with gas and let down again, to drive the air out."""
 
     purge: Annotated[int, Field(ge=1, le=10)]
-    """How often."""
+    """Filled with gas and let down again to drive the air out: how often. Example: 3"""
     up_to: f.LevelField
+    """To which pressure it is filled. Example: 5 bar(a)"""
     down_to: f.LevelField
+    """To which it is let down. Example: 1 bar(a)"""
     through: Name
+    """Tag of the valve. Example: V2"""
 
 
 VERBS: Final = ("load", "seal", "warm_to", "cool_to", "keep_at", "let_down_to", "purge", "open_containment",

@@ -18,16 +18,17 @@ class ReadStep(FileModel):
     """One reading."""
 
     what: Reads
+    """What is read. Example: pressure"""
     with_: Annotated[Name, Field(alias="with")]
-    """Tag of the instrument."""
+    """Tag of the instrument. Example: PG1"""
     accept: Range | LevelRange | None = None
-    """Of a pressure a LevelRange, else a Range [SI]; None: any value is taken and judged by the margins."""
+    """The range in which it is accepted; left out: any value, judged by the margins. Example: 48 bar(g) to 75 bar(g)"""
     every: f.TimeField | None = None
-    """How often while the step lasts; None: once, at its end."""
+    """How often while the step lasts; left out: once, at its end. Example: 3 min"""
     fresh_for: f.TimeField | None = None
-    """How old it may be when it is leaned on; None: 10 min."""
+    """How old it may be when it is leaned on; left out: 10 min. Example: 2 min"""
     if_not: Text | None = None
-    """What to do outside `accept`."""
+    """What to do outside `accept`. Example: Make safe."""
 
     @field_validator("accept", mode="plain")
     @classmethod

@@ -7,9 +7,11 @@ from __future__ import annotations
 
 import ast
 import inspect
+from datetime import date
 from types import ModuleType
 from typing import Any, Final
 
+import yaml
 from pydantic import BaseModel
 
 from runbook.apparatus import model as apparatus_model
@@ -23,6 +25,8 @@ KINDS: Final[dict[str, type[BaseModel]]] = {
 }
 """Kind of file -> its model."""
 _MODULES: Final = (apparatus_model, parts, procedure_model, path, reading, steps)
+_EXAMPLE: Final = " Example: "
+"""Stands in a field's docstring between what it means and how one would write it."""
 _DRAFT: Final = "http://json-schema.org/draft-07/schema#"
 """The newest draft that the YAML language server documents."""
 
@@ -50,7 +54,23 @@ def _describe(schema: dict[str, Any], name: str, meanings: dict[tuple[str, str],
     for key, field in schema.get("properties", {}).items():
         meaning = meanings.get((name, key)) or meanings.get((name, f"{key}_")) or meanings.get((name, f"k{key[1:]}"))
         if meaning:
-            field["description"] = meaning
+            said, _, example = meaning.partition(_EXAMPLE)
+            field["description"] = said
+            if example:
+                field["examples"] = [example_value(example)]
+
+
+def example_value(text: str) -> Any:
+    """An example as a file would hold it: a mapping, a list, a number, a truth value or a text."""
+    return _plain(yaml.safe_load(text))
+
+
+def _plain(value: Any) -> Any:
+    if isinstance(value, dict):
+        return {key: _plain(one) for key, one in value.items()}
+    if isinstance(value, list):
+        return [_plain(one) for one in value]
+    return value.isoformat() if isinstance(value, date) else value
 
 
 def _meanings(module: ModuleType) -> dict[tuple[str, str], str]:

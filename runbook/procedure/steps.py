@@ -37,109 +37,145 @@ class StepWarning(FileModel):
     """Shown before its step, on the same screen. Signal words of ANSI Z535.6."""
 
     word: Literal["DANGER", "WARNING", "CAUTION", "NOTICE"]
+    """Signal word of ANSI Z535.6: how bad it can become. Example: WARNING"""
     hazard: Text
+    """What can hurt. Example: Dry ice at -79 degC"""
     could: Text
-    """What happens if it is ignored."""
+    """What happens if it is ignored. Example: burn the skin in seconds."""
     avoid: Text
-    """How to avoid it: nothing the performer has to tick."""
+    """How to avoid it: nothing the performer has to tick. Example: Wear the cryogenic gloves."""
 
 
 class See(FileModel):
     """What should be seen: the author's words, or what the program computes and says."""
 
     words: Text | None = None
+    """What should be seen, in the author's words. Example: Air comes out of the open cell."""
     show: tuple[Shown, ...] = ()
+    """What the program computes and says itself. Example: [meniscus, haze]"""
 
 
 class DoStep(FileModel):
     """One act."""
 
     do: Text
-    """An imperative sentence."""
+    """One act, as an order, its verb first. Example: Press tare"""
     who: Name = "performer"
+    """The role that does it. Example: performer"""
     id: Name | None = None
-    """A name that stays when steps are moved."""
+    """A name that stays when steps are moved. Example: tare"""
     warning: StepWarning | None = None
+    """Shown before the step, on the same screen. Example: {word: WARNING, hazard: Dry ice at -79 degC, could: burn the
+    skin in seconds., avoid: Wear the cryogenic gloves.}"""
     path: Path | None = None
+    """What the step does to the charge: one verb; left out: nothing. Example: {warm_to: 33 degC, by_means_of: H1}"""
     valves: dict[Name, Position] = Field(default_factory=dict)
-    """Positions that the step leaves behind, by tag."""
+    """Positions that the step leaves behind, by tag. Example: {V3: shut}"""
     read: tuple[ReadStep, ...] = ()
+    """What is read in it. Example: [{what: pressure, with: PG1, accept: 48 bar(g) to 75 bar(g), if_not: Wait.}]"""
     see: See | None = None
+    """What should be seen in it. Example: {words: Air comes out of the open cell.}"""
     if_not: Text | None = None
-    """What to do when the sight does not come."""
+    """What to do when the sight does not come. Example: Make safe. Touch nothing."""
     raises: tuple[HazardName, ...] = ()
-    """Hazards the author adds to those that are computed; none can be taken away."""
+    """Hazards the author adds to those that are computed; none can be taken away. Example: [hot surfaces]"""
 
 
 class Hold(FileModel):
     """No further without the signature of a role, never of the person who performed."""
 
     signed_by: Name
+    """The role that signs: never one that performed. Example: second"""
     because: Text
+    """What the signature is for. Example: pressure cannot tell how much is in the cell"""
     read: ReadStep | None = None
-    """A measuring hold: the signer's own reading."""
+    """A measuring hold: the signer's own reading, taken without sight of the other. Example: {what: liquid height,
+    with: HS1, accept: 27 mm to 32 mm, if_not: Make safe.}"""
 
 
 class HoldStep(FileModel):
     """A hold point: a line of its own between two steps."""
 
     hold: Hold
+    """Nobody goes on before the named role has signed. Example: {signed_by: teacher, because: the class is behind the
+    line}"""
     id: Name | None = None
+    """A name that stays when steps are moved. Example: class-ready"""
 
 
 class Witness(FileModel):
     """Somebody is called; after the wait the run goes on."""
 
     called: Name
+    """The role that is called. Example: teacher"""
     because: Text
+    """What for. Example: the teacher knows the alarm and the way out"""
     wait: f.TimeField
+    """How long before the run goes on without them. Example: 5 min"""
 
 
 class WitnessStep(FileModel):
     """A witness point: a line of its own between two steps."""
 
     witness: Witness
+    """Somebody is called; after the wait the run goes on without them. Example: {called: teacher, because: the teacher
+    knows the alarm, wait: 5 min}"""
     id: Name | None = None
+    """A name that stays when steps are moved. Example: alarm-shown"""
 
 
 class QuickItem(FileModel):
     """One step of a quick sequence: one key, no typing."""
 
     do: Text
+    """One act, one key. Example: Shut V2 at 117 g on the falling scale"""
     path: Path | None = None
+    """What it does to the charge: one verb. Example: seal"""
     valves: dict[Name, Position] = Field(default_factory=dict)
+    """Positions that it leaves behind, by tag. Example: {V2: shut}"""
     latest: f.TimeField
-    """After the item before it; the first: after entry."""
+    """The latest time after the act before it; the first: after entry. Example: 20 min"""
     if_not: Text
-    """The act when that time has passed."""
+    """The act when that time has passed. Example: Open V2."""
 
 
 class QuickStep(FileModel):
     """A few steps on one screen, judged once, at entry, for all of them."""
 
     quick: Annotated[tuple[QuickItem, ...], Field(min_length=1)]
+    """A few acts on one screen, one key each, judged once, at entry, for all of them. Example: [{do: Shut V2, path:
+    seal, valves: {V2: shut}, latest: 20 min, if_not: Begin again.}]"""
     read_after: tuple[ReadStep, ...] = ()
-    """Taken when the vessel is at rest again."""
+    """What is read when the vessel is at rest again. Example: [{what: mass, with: BS1, accept: 115 g to 119 g, if_not:
+    Make safe.}]"""
     warning: StepWarning | None = None
+    """Shown before the first act, on the same screen. Example: {word: WARNING, hazard: Dry ice in a closed cell, could:
+    bring it to 74 bar(g)., avoid: Keep the shield shut.}"""
     id: Name | None = None
+    """A name that stays when steps are moved. Example: close"""
 
 
 class Empty(FileModel):
     """The instruments and valves of the four proofs that nothing is left."""
 
     low_gauge: Name
+    """Tag of the gauge that shows a rise of 0.1 bar. Example: PG2"""
     isolator: Name
-    """The valve between that gauge and the vessel."""
+    """The valve between that gauge and the vessel. Example: V3"""
     wall: Name
-    """A thermometer."""
+    """Tag of the thermometer on the wall. Example: TT1"""
     vent: Name
+    """The valve that stays open afterwards. Example: V2"""
 
 
 class EmptyStep(FileModel):
     """Show that the vessel is empty."""
 
     show_empty: Empty
+    """The four proofs that nothing is left in the vessel. Example: {low_gauge: PG2, isolator: V3, wall: TT1, vent:
+    V2}"""
     id: Name | None = None
+    """A name that stays when steps are moved. Example: empty"""
 
 
 KINDS: Final = ("do", "hold", "witness", "quick", "show_empty")

@@ -20,10 +20,15 @@ if TYPE_CHECKING:
 def main(argv: list[str]) -> int:
     """Check each file; returns the exit code."""
     parser = Arguments(prog="runbook check", description=__doc__)
-    parser.add_argument("files", nargs="+", metavar="FILE")
+    parser.add_argument("files", nargs="*", metavar="FILE")
+    parser.add_argument("--why", metavar="RULE", help="explain the rule named in brackets after a finding")
     parser.add_argument("--on", metavar="DATE", help="judge certificates on this date (default: today)")
     parser.add_argument("--json", action="store_true", help="one document, SI, pressures absolute")
     asked = parser.parse_args(argv)
+    if asked.why is not None:
+        return _why(asked.why)
+    if not asked.files:
+        raise InputUnusable("name a procedure file, or a rule to explain: --why RULE")
     on = iso_date(asked.on)
     results = [_check(file, on) for file in asked.files]
     if asked.json:
@@ -32,6 +37,13 @@ def main(argv: list[str]) -> int:
         for result in results:
             _print(*result)
     return max(int(_code(plan)) for _, plan, _ in results)
+
+
+def _why(name: str) -> int:
+    from runbook.procedure.rulebook import explained, rule
+
+    print(explained(rule(name)))
+    return int(ExitCode.GOOD)
 
 
 def _check(file: str, on: date) -> tuple[str, Plan | None, tuple[Problem, ...]]:

@@ -37,12 +37,15 @@ _VAGUE: Final = re.compile(
 )
 _TAIL: Final = re.compile(r"\S\s+(if|when|unless)\s", re.IGNORECASE)
 _ELSEWHERE: Final = re.compile(r"\bsee (the )?(warning|caution|note|above|below|page|step)\b", re.IGNORECASE)
+_EXCEPT: Final = re.compile(r"\ball\b[^.]*\bexcept\b|\bnot\b[^.]*\bunless\b", re.IGNORECASE)
+_MIXED: Final = re.compile(r"^(if|when|while|until|once)\b([^,]*)", re.IGNORECASE)
 _LONGEST: Final = 25
 """Words of one sentence."""
 
 
 def wording(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
-    """Rules 'verb first', 'one act', 'active voice', 'number instead', 'condition first' and 'long sentence'."""
+    """Rules 'verb first', 'one act', 'active voice', 'number instead', 'condition first', 'named by exception',
+    'and with or' and 'long sentence'."""
     del apparatus
     for route, text in texts_of(procedure):
         for i, sentence in enumerate(_sentences(text)):
@@ -98,6 +101,11 @@ def _one(route: Route, sentence: str, is_step: bool, first: bool) -> Iterator[Fo
         yield Found("number instead", route, f"'{vague[0]}' is for nobody to check: give a number", "warning")
     if is_step and _TAIL.search(sentence):
         yield Found("condition first", route, "put the condition before the act: 'If ..., shut V2'", "advice")
+    if _EXCEPT.search(sentence):
+        yield Found("named by exception", route, "name what is meant, not all but what is not", "warning")
+    condition = _MIXED.match(sentence)
+    if condition is not None and re.search(r"\band\b", condition[2]) and re.search(r"\bor\b", condition[2]):
+        yield Found("and with or", route, "'and' and 'or' in one condition can be read two ways: split it", "warning")
     if len(sentence.split()) > _LONGEST:
         yield Found("long sentence", route, f"more than {_LONGEST} words: split it", "advice")
 

@@ -77,6 +77,16 @@ at_start: {{V1: open, V2: open, V3: open, H1: unplugged}}
 parts:
   - name: Load and prove
     steps:
+      - do: Look through the outlets of RD1 and RV2 with a lamp
+        who: performer
+        see:
+          words: Light comes through both.
+        if_not: Stop here. Clear the outlet.
+      - do: Press the test button of GD1
+        who: performer
+        see:
+          words: The alarm is heard at the door.
+        if_not: Stop here.
       - do: Check that PG2 stands at zero, V2 open
         who: performer
         read:
@@ -105,6 +115,11 @@ parts:
           - {{do: Shut the shield and step back, latest: 2 min, if_not: Open V2.}}
         read_after:
           - {{what: mass, with: BS1, accept: 115 g to 119 g, if_not: Make safe.}}
+        warning:
+          word: WARNING
+          hazard: Dry ice in a closed cell
+          could: bring it to 74 bar(g) by the warmth of the room alone.
+          avoid: Keep the shield between the cell and every face.
       - do: Let the cell warm to the room behind the shield
         who: performer
         path: {{warm_to: room temperature, by_means_of: room air}}
@@ -112,10 +127,23 @@ parts:
         if_not: Wait.
   - name: Let down and prove empty
     steps:
+      - do: Read TT1 and PG1 with the cell at rest
+        who: performer
+        read:
+          - {{what: temperature, with: TT1}}
+          - {{what: pressure, with: PG1}}
+      - hold:
+          signed_by: second
+          because: letting down can bring the wall to -78 degC, and the gas goes where people breathe
       - do: Let the gas out through V2 until PG1 shows zero
         who: performer
         path: {{let_down_to: 0 bar(g), through: V2, pause_above: 20 bar(g), until: no liquid seen}}
         valves: {{V2: open}}
+        warning:
+          word: WARNING
+          hazard: Gas and dry ice at -78 degC from V2
+          could: burn and plug the outlet.
+          avoid: Keep clear of the outlet. Leave V2 open at the end.
       - show_empty: {{low_gauge: PG2, isolator: V3, wall: TT1, vent: V2}}
       - do: Hang the tag EMPTY on V2
         who: performer

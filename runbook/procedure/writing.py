@@ -15,6 +15,7 @@ from runbook.procedure.document import Place, Route, located, split_lines
 from runbook.procedure.lines import Found
 from runbook.procedure.model import Procedure
 from runbook.procedure.reader import Loaded
+from runbook.procedure.rules_guard import guards
 from runbook.procedure.rules_order import order
 from runbook.procedure.rules_people import holds, roles
 from runbook.procedure.rules_readings import readings
@@ -29,6 +30,7 @@ RULES: Final[tuple[Rule, ...]] = (
     roles,
     holds,
     order,
+    guards,
     readings,
     wording,
     messages,

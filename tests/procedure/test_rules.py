@@ -106,6 +106,32 @@ ERRORS = [
     ("warning parts", "avoid: Wear the cryogenic gloves.", "avoid: See warning above.", "See"),
     ("warning parts", "word: WARNING", "word: NOTICE", "NOTICE"),
     ("room", "hottest: 30 degC", "hottest: 3 degC", "3 degC"),
+    (
+        "hold missing",
+        """      - hold:
+          signed_by: second
+          because: letting down can bring the wall to -78 degC, and the gas goes where people breathe
+""",
+        "",
+        "{let_down_to",
+    ),
+    (
+        "warning missing",
+        """        warning:
+          word: WARNING
+          hazard: Dry ice in a closed cell
+          could: bring it to 74 bar(g) by the warmth of the room alone.
+          avoid: Keep the shield between the cell and every face.
+      - do: Let the cell warm""",
+        "      - do: Let the cell warm",
+        "{do: Shut V2",
+    ),
+    (
+        "tightened under pressure",
+        "do: Look along V1, V2 and the windows with the camera",
+        "do: Tighten the screws of V1 by a quarter turn",
+        "Tighten",
+    ),
 ]
 
 
@@ -126,6 +152,8 @@ WARNINGS = [
     ("number instead", "do: Press tare", "do: Press tare gently", "warning"),
     ("condition first", "do: Press tare", "do: Press tare when nothing moves", "advice"),
     ("long sentence", "do: Press tare", "do: Press tare" + " and so on" * 12, "advice"),
+    ("named by exception", "do: Press tare", "do: Shut all valves except V2", "warning"),
+    ("and with or", "do: Press tare", "do: If it is cold and dry or still, press tare", "warning"),
     ("high on the dial", "accept: 48 bar(g) to 75 bar(g)", "accept: 48 bar(g) to 150 bar(g)", "advice"),
     ("set point at the cut-out", "set_to: 34 degC", "set_to: 37.5 degC", "warning"),
 ]
@@ -187,6 +215,14 @@ def test_a_tolerance_closer_than_the_code_is_doubted(tmp_path: Path) -> None:
     (problem,) = found(tmp_path, "relief tolerance", None, {"tolerance: 5 %": "tolerance: 1 %"})
     assert "RD1" in problem.message
     assert problem.severity == "warning"
+
+
+def test_a_let_down_port_that_is_not_on_top_is_an_error(tmp_path: Path) -> None:
+    """Liquid would leave through a dip tube: it flashes to solid in the outlet."""
+    vessel = {"joins: [cell, outside], port: top": "joins: [cell, outside], port: dip tube"}
+    (problem,) = found(tmp_path, "let down from below", None, vessel)
+    assert problem.severity == "error"
+    assert word_at(tmp_path / PROCEDURE, problem).startswith("V2")
 
 
 def test_a_protective_device_that_no_step_checks_is_an_advice(tmp_path: Path) -> None:

@@ -1,4 +1,4 @@
-"""The bound over the box of tolerances is proved, and here searched: never exceeded, and hardly ever larger than needed.
+"""The bound over the box of tolerances is proved, and here searched: never exceeded, and hardly larger than needed.
 
 RUNBOOK_SAMPLES=100000 for the long form; the short one runs with every change.
 """

@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from typing import Annotated, Any, Final
 
-from pydantic import BaseModel, BeforeValidator, ConfigDict, StringConstraints
+from pydantic import AfterValidator, BaseModel, BeforeValidator, ConfigDict, StringConstraints
+from pydantic_core import PydanticCustomError
 
-from runbook.quantities import NOT_KNOWN
+from runbook.quantities import NOT_KNOWN, Bounded
 
 LONGEST_TEXT: Final = 400
 """Characters of one text in a file: more does not fit the place where it is read."""
@@ -36,3 +37,13 @@ def _not_known(given: Any) -> Any:
 
 UnknownWords = BeforeValidator(_not_known)
 """Reads the words `not known`."""
+
+
+def _positive(box: Bounded) -> Bounded:
+    if box.low <= 0.0:
+        raise PydanticCustomError("own", "this reaches zero, with which nothing can be computed")
+    return box
+
+
+Positive = AfterValidator(_positive)
+"""A box that does not reach zero."""

@@ -11,10 +11,10 @@ from typing import Annotated, Final, Literal
 from pydantic import AfterValidator, Discriminator, Field, Tag
 from pydantic_core import PydanticCustomError
 
-from runbook.apparatus.base import FileModel, Name, Text, UnknownWords, mapping_or_words
+from runbook.apparatus.base import FileModel, Name, Positive, Text, UnknownWords, mapping_or_words
 from runbook.apparatus.dial import Dial
 from runbook.apparatus.parts import HeatSource, Instrument, Relief
-from runbook.quantities import Bounded, NotKnown, Range
+from runbook.quantities import NotKnown, Range
 from runbook.quantities import fields as f
 
 __all__ = [
@@ -42,15 +42,6 @@ def _window(window: Range) -> Range:
     if window.low is None or window.high is None or window.low < 0.0:
         raise PydanticCustomError("own", "a window has two ends above the inside bottom, for example 6 mm to 54 mm")
     return window
-
-
-def _positive(box: Bounded) -> Bounded:
-    if box.low <= 0.0:
-        raise PydanticCustomError("own", "this reaches zero, with which nothing can be computed")
-    return box
-
-
-Positive = AfterValidator(_positive)
 
 
 class Approved(FileModel):

@@ -14,10 +14,12 @@ from runbook.apparatus.model import Apparatus
 from runbook.apparatus.model import Instrument as InstrumentFile
 from runbook.assess.assumptions import ALL, Assumptions
 from runbook.charge.filling import air_pressure
+from runbook.errors import FileProblems
 from runbook.fluids.roots import bracketed_root
 from runbook.fluids.substance import Substance, substance
 from runbook.procedure.model import Procedure
 from runbook.procedure.reader import Loaded
+from runbook.procedure.writing import findings as writing_findings
 from runbook.quantities import Barometer, barometer
 
 GAS_CONSTANT = 8.314462618
@@ -171,8 +173,20 @@ def open_scene(
 
     height_m: above sea level [m]; hottest_K: hottest room [K]; None: as the procedure says. cell_closed: it is
     closed already, with what the record says or, without one, with as much as it can hold. Raises
-    InputUnusable for a fluid that is not known, OutsideValidity for an impossible barometer.
+    InputUnusable for a fluid that is not known, OutsideValidity for an impossible barometer, FileProblems where
+    a step names what the apparatus does not have: no margin can be computed for that.
     """
+    _refuse_unbound(loaded)
     stated = loaded.procedure.room.height
     height = height_m if height_m is not None else None if stated is None else stated.value
     return Scene(loaded, barometer(reading_Pa, height), charge, assume, hottest_K, cell_closed)
+
+
+UNBOUND = ("unknown tag", "wrong instrument", "position")
+"""Rules whose errors leave a step without the thing it is about."""
+
+
+def _refuse_unbound(loaded: Loaded) -> None:
+    errors = tuple(p for p in writing_findings(loaded) if p.severity == "error")
+    if any(p.rule in UNBOUND for p in errors):
+        raise FileProblems(errors)

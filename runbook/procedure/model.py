@@ -10,7 +10,7 @@ from typing import Annotated, Any, Literal
 from pydantic import BeforeValidator, Discriminator, Field, Tag
 from pydantic_core import PydanticCustomError
 
-from runbook.apparatus.base import FileModel, Name, Text, mapping_or_words
+from runbook.apparatus.base import FileModel, Name, Positive, Text, mapping_or_words
 from runbook.procedure.path import (
     CoolTo,
     KeepAt,
@@ -95,7 +95,7 @@ class Issue(FileModel):
 class Charge(FileModel):
     """How much is sealed in."""
 
-    mass: f.MassField
+    mass: Annotated[f.MassField, Positive]
     """What is sealed in, and the most it may be off. Example: 117 g ± 2 g"""
     loaded_as: Literal["dry ice", "liquid", "gas", "already loaded"]
     """How it comes in. Example: dry ice"""
@@ -108,7 +108,7 @@ class Room(FileModel):
     """The hottest the room may become with everybody gone. Example: 30 degC"""
     coldest: f.TemperatureField
     """The coldest it may be. Example: 18 degC"""
-    volume: f.VolumeField
+    volume: Annotated[f.VolumeField, Positive]
     """Of the air people breathe. Example: 180 m3"""
     air_changes: f.AirChangesField
     """Of the ventilation. Example: 2 per h"""

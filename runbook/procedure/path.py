@@ -11,7 +11,7 @@ from typing import Annotated, Any, Final, Literal
 
 from pydantic import BaseModel, Discriminator, Field, Tag, model_validator
 
-from runbook.apparatus.base import FileModel, Name
+from runbook.apparatus.base import FileModel, Name, Positive
 from runbook.quantities import fields as f
 
 ROOM_TEMPERATURE: Final = "room temperature"
@@ -32,7 +32,7 @@ Aim = Annotated[
 class Load(FileModel):
     """Put charge in, the vessel open."""
 
-    load: f.MassField
+    load: Annotated[f.MassField, Positive]
     """Put charge in, the vessel open: what the scale may show. Example: 140 g ± 10 g"""
 
 

@@ -103,3 +103,18 @@ def test_plain_when_piped(tmp_path: Path, capsys: pytest.CaptureFixture[str]) ->
     """No escape sequence reaches a file."""
     main([str(changed_files(tmp_path)), *ON])
     assert "\x1b" not in capsys.readouterr().out
+
+
+def test_a_tag_that_is_not_there_cannot_be_judged(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """No margin can be computed for an instrument that the apparatus does not have: exit 2 with its place."""
+    code, found = checked(
+        changed_files(tmp_path, {"{what: carbon dioxide, with: GD1": "{what: carbon dioxide, with: GD7"}), capsys
+    )
+    assert (code, found["verdict"], found["steps"]) == (2, "unreadable", [])
+    assert any(f["rule"] == "unknown tag" and f["line"] > 1 for f in found["findings"])
+
+
+def test_a_room_without_air_is_refused(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """A volume of zero is told where it stands, not divided by."""
+    code, _ = checked(changed_files(tmp_path, {"volume: 180 m3": "volume: 0 m3"}), capsys)
+    assert code == 2

@@ -65,12 +65,18 @@ def path_margins(scene: Scene, line: Walked, cause: str) -> list[Margin]:
 def _committed(scene: Scene, lines: Sequence[Walked], index: int, high_kg: float | None) -> list[Margin]:
     found: list[Margin] = []
     connected = False
+    judged: tuple[object, ...] = ()
     for later in lines[index + 1 :]:
         if later.lets_down:
             break
+        connected = connected or later.during.source in ("on", "off", "do not know")
+        # Most steps leave the vessel as it is: what has just been judged is not judged again.
+        state = (later.before.loaded, later.during, later.after, connected)
+        if state == judged:
+            continue
+        judged = state
         line = _with_charge(later, high_kg)
         found += path_margins(scene, line, line.number)
-        connected = connected or line.during.source in ("on", "off", "do not know")
         _, margins_alone = left_alone(scene, line.after, with_times=False, stuck=connected)
         found += margins_alone
     return found

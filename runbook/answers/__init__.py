@@ -6,6 +6,7 @@ as it stands. No logic lives here. All quantities are SI; all pressures are abso
 """
 
 from runbook.answers.card import GaugeCard, GaugeRow
+from runbook.answers.explanation import ChargeEstimate, ChargePart, Explanation, Past
 from runbook.answers.lines import Empty, Hold, LineKind, Need, PlanLine, QuickItem, SafetyMessage, Sight, Witness
 from runbook.answers.margins import (
     Agreement,
@@ -31,10 +32,13 @@ __all__ = [
     "Certificate",
     "ChargeBounds",
     "ChargeBox",
+    "ChargeEstimate",
+    "ChargePart",
     "Corner",
     "Distance",
     "Effect",
     "Empty",
+    "Explanation",
     "Finding",
     "Future",
     "GaugeCard",
@@ -48,6 +52,7 @@ __all__ = [
     "Margin",
     "Need",
     "Observation",
+    "Past",
     "Phase",
     "Plan",
     "PlanLine",

@@ -53,6 +53,8 @@ class Scene:
     """Temperature [K] at which most charge [kg] reaches a pressure [Pa] at the worst corner."""
     weighed_by_height: dict[tuple[float, float], tuple[float, float] | None] = field(init=False, default_factory=dict)
     """Least and most charge [kg] that a height [m] at a temperature [K] means."""
+    estimated_by_height: dict[tuple[float, float], tuple[float, float] | None] = field(init=False, default_factory=dict)
+    """Charge and its U [kg] that a height [m] at a temperature [K] means."""
     _pressures: dict[tuple[float, float], tuple[float, float]] = field(init=False, default_factory=dict)
 
     def __post_init__(self) -> None:

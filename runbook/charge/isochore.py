@@ -40,7 +40,7 @@ class Isochore:
         self.energies = tuple(row[1] for row in rows)
         """Rising [J/kg]."""
         self.pressures = tuple(row[2] for row in rows)
-        """Rising, level on the plateau [Pa]."""
+        """Level on the plateau; rising, but below the triple point of a fluid whose solid is the lighter [Pa]."""
 
     @property
     def lowest_temperature(self) -> float:
@@ -62,8 +62,10 @@ class Isochore:
         """Temperature [K] of the charge at an internal energy [J/kg]. Raises OutsideValidity."""
         cell = self._cell(energy)
         low, high = self.temperatures[cell], self.temperatures[cell + 1]
-        if low == high:
+        if low == high or energy <= self.energies[cell]:
             return low
+        if energy >= self.energies[cell + 1]:
+            return high
         return bracketed_root(
             lambda t: self._exact(t) - energy,
             low,
@@ -98,11 +100,12 @@ class Isochore:
 
         None where the path ends below the level; minus infinity where it begins above it.
         """
-        if pressure < self.pressures[0]:
-            return -inf
         if pressure >= self.pressures[-1]:
             return None
-        cell = bisect_right(self.pressures, pressure) - 1
+        # Of a fluid that freezes lighter the cold end is high again: the last way up counts.
+        cell = next((k for k in range(len(self.pressures) - 2, -1, -1) if self.pressures[k] <= pressure), None)
+        if cell is None:
+            return -inf
         temperature = bracketed_root(
             lambda t: self.pressure(t) - pressure,
             self.temperatures[cell],
@@ -163,12 +166,14 @@ class Isochore:
         return self.plateau[0]
 
     def _cell(self, energy: float) -> int:
-        if not self.energies[0] <= energy <= self.energies[-1]:
+        # The ends themselves are computed, not refused for rounding.
+        slack = 1e-9 * (self.energies[-1] - self.energies[0])
+        if not self.energies[0] - slack <= energy <= self.energies[-1] + slack:
             raise OutsideValidity(
                 f"{energy:.6g} J/kg is outside the path of {self.density:.6g} kg/m3, "
                 f"modelled from {self.lowest_temperature:.6g} K to {self.highest_temperature:.6g} K"
             )
-        return min(bisect_right(self.energies, energy) - 1, len(self.energies) - 2)
+        return max(0, min(bisect_right(self.energies, energy) - 1, len(self.energies) - 2))
 
     def _melting_state(self, energy: float) -> State:
         """On the plateau the fractions go in a straight line from its beginning to its end (lever rule)."""
@@ -187,6 +192,9 @@ class Isochore:
             vapour=vapour,
             liquid_density=end.liquid_density,
             internal_energy=energy,
+            entropy=None
+            if begin.entropy is None or end.entropy is None
+            else (begin.entropy + share * (end.entropy - begin.entropy)),
         )
 
 

@@ -21,6 +21,7 @@ from math import isfinite
 import CoolProp.CoolProp as cp
 
 from runbook.errors import OutsideValidity
+from runbook.fluids.solids.gibbs import Phase
 
 _COLD_ALLOWANCE = 1e-9
 """Relative; the triple point itself is computed, not refused for rounding [1]."""
@@ -48,6 +49,10 @@ class Saturation:
     """Internal energy of the saturated liquid [J/kg]."""
     vapour_energy: float
     """Internal energy of the saturated vapour [J/kg]."""
+    liquid_entropy: float
+    """Of the saturated liquid [J/kg/K]."""
+    vapour_entropy: float
+    """Of the saturated vapour [J/kg/K]."""
     dpdT: float
     """Slope of the saturation pressure [Pa/K]."""
 
@@ -66,6 +71,10 @@ class SaturationSlopes:
     """[J/kg/K]."""
 
 
+def _phase(instance: cp.AbstractState) -> Phase:
+    return Phase(instance.gibbsmass(), 1.0 / instance.rhomass(), instance.smass())
+
+
 class Equation:
     """A fluid's reference equation of state within its published range; own library instances."""
 
@@ -74,9 +83,9 @@ class Equation:
         library_name: str,
         max_temperature: float,
         max_pressure: float,
-        melting_pressure: Callable[[float], float] | None = None,
+        freezes: Callable[[float, float], bool] | None = None,
     ) -> None:
-        """max_temperature [K], max_pressure [Pa]; melting_pressure: [K] -> [Pa], None where unknown."""
+        """max_temperature [K], max_pressure [Pa]; freezes: whether it would be solid at [K], [Pa], None: unknown."""
         try:
             self._fluid = cp.AbstractState("HEOS", library_name)
             self._cold = cp.AbstractState("HEOS", library_name)
@@ -93,7 +102,7 @@ class Equation:
             raise OutsideValidity(f"the property library has no equation for {library_name}: {error}") from error
         self.max_temperature = max_temperature
         self.max_pressure = max_pressure
-        self.melting_pressure = melting_pressure
+        self.freezes = freezes
         at_triple = self.saturation(self.triple_temperature)
         self.triple_pressure = at_triple.pressure
         self.triple_liquid_density = at_triple.liquid_density
@@ -134,7 +143,7 @@ class Equation:
                 slope = fluid.first_saturation_deriv(cp.iP, cp.iT)
         except (ValueError, RuntimeError) as error:
             raise OutsideValidity(f"no saturation state at {temperature:.6g} K: {error}") from error
-        return Saturation(pressure, liquid, vapour, liquid_energy, vapour_energy, slope)
+        return Saturation(pressure, liquid, vapour, liquid_energy, vapour_energy, liquid_entropy, vapour_entropy, slope)
 
     def saturation_slopes(self, temperature: float) -> SaturationSlopes:
         """Slopes of density and energy along the saturation curve at a temperature [K] below critical.
@@ -165,10 +174,11 @@ class Equation:
         """
         return self._update(temperature, density)
 
-    def pressure_energy(self, temperature: float, density: float) -> tuple[float, float]:
-        """As pressure(), with the internal energy [J/kg]."""
+    def caloric(self, temperature: float, density: float) -> tuple[float, float, float]:
+        """As pressure(), with the internal energy [J/kg] and the entropy [J/kg/K]."""
         pressure = self._update(temperature, density)
-        return pressure, self._instance(temperature).umass()
+        instance = self._instance(temperature, density)
+        return pressure, instance.umass(), instance.smass()
 
     def slopes(self, temperature: float, density: float) -> tuple[float, float, float]:
         """dp/dT [Pa/K], dp/drho [Pa/(kg/m3)] and heat capacity at fixed volume [J/kg/K] of one fluid phase.
@@ -176,7 +186,7 @@ class Equation:
         temperature [K], density [kg/m3] outside the dome. Raises as pressure().
         """
         self._update(temperature, density)
-        instance = self._instance(temperature)
+        instance = self._instance(temperature, density)
         try:
             return (
                 instance.first_partial_deriv(cp.iP, cp.iT, cp.iDmass),
@@ -186,18 +196,41 @@ class Equation:
         except (ValueError, RuntimeError) as error:
             raise OutsideValidity(f"no slopes at {temperature:.6g} K and {density:.6g} kg/m3: {error}") from error
 
-    def cold_vapour(self, temperature: float, pressure: float) -> tuple[float, float]:
-        """Density [kg/m3] and internal energy [J/kg] of vapour at or below the triple point.
+    def vapour_phase(self, temperature: float, pressure: float) -> Phase:
+        """Vapour at or below the triple point; temperature [K], pressure [Pa] not above that of sublimation.
 
-        temperature [K], pressure [Pa] not above that of sublimation. Raises OutsideValidity.
+        Raises OutsideValidity.
         """
         if not (0.0 < pressure <= self.triple_pressure * (1 + _COLD_ALLOWANCE)):
             raise OutsideValidity(f"no vapour is computed at {temperature:.6g} K and {pressure:.6g} Pa")
+        cold = self._cold
         try:
-            self._cold.update(cp.PT_INPUTS, pressure, temperature)
+            cold.update(cp.PT_INPUTS, pressure, temperature)
+            return _phase(cold)
         except (ValueError, RuntimeError) as error:
             raise OutsideValidity(f"no vapour at {temperature:.6g} K, {pressure:.6g} Pa: {error}") from error
-        return self._cold.rhomass(), self._cold.umass()
+
+    def gas_density(self, temperature: float, pressure: float) -> float | None:
+        """Density [kg/m3] of the gas at a temperature [K] and pressure [Pa]; None where it would condense."""
+        if temperature < self.critical_temperature and pressure >= self.dome(temperature)[0]:
+            return None
+        try:
+            self._fluid.update(cp.PT_INPUTS, pressure, temperature)
+            found: float = self._fluid.rhomass()
+        except (ValueError, RuntimeError) as error:
+            raise OutsideValidity(f"no gas at {temperature:.6g} K, {pressure:.6g} Pa: {error}") from error
+        return found
+
+    def liquid_phase(self, temperature: float, pressure: float) -> Phase:
+        """Liquid at a temperature [K] and pressure [Pa], the melting curve included. Raises OutsideValidity."""
+        try:
+            if abs(temperature - self.triple_temperature) < 1e-9 and pressure <= self.triple_pressure * (1.0 + 1e-9):
+                self._fluid.update(cp.QT_INPUTS, 0.0, self.triple_temperature)
+            else:
+                self._raw(temperature, self.liquid_density(temperature, pressure))
+            return _phase(self._fluid)
+        except (ValueError, RuntimeError) as error:
+            raise OutsideValidity(f"no liquid at {temperature:.6g} K, {pressure:.6g} Pa: {error}") from error
 
     def liquid_density(self, temperature: float, pressure: float) -> float:
         """Density [kg/m3] of liquid at a temperature [K] and pressure [Pa] up to the melting curve.
@@ -208,7 +241,7 @@ class Equation:
             raise OutsideValidity(f"no liquid is computed at {temperature:.6g} K and {pressure:.6g} Pa")
         # By hand: on the melting curve itself the library refuses, its own curve differing in the 5th digit.
         low, high = self.triple_liquid_density * 0.5, self.triple_liquid_density * 1.6
-        density = 0.5 * (low + high)
+        density = 1.01 * self.triple_liquid_density
         for _ in range(100):
             error = self._raw(temperature, density) - pressure
             low, high = (low, density) if error > 0 else (density, high)
@@ -220,22 +253,18 @@ class Equation:
             density = trial
         raise OutsideValidity(f"no liquid density found at {temperature:.6g} K and {pressure:.6g} Pa")
 
-    def liquid_energy(self, temperature: float, density: float) -> float:
-        """Internal energy [J/kg] of liquid at a temperature [K] and density [kg/m3], melting included."""
-        self._raw(temperature, density)
-        energy: float = self._fluid.umass()
-        return energy
-
     def _check_saturation(self, temperature: float) -> None:
         lowest = self.triple_temperature * (1 - _COLD_ALLOWANCE)
         if not (lowest <= temperature <= self.critical_temperature):
             raise OutsideValidity(f"no liquid beside vapour at {temperature:.6g} K")
 
-    def _instance(self, temperature: float) -> cp.AbstractState:
-        return self._cold if temperature < self.triple_temperature else self._fluid
+    def _instance(self, temperature: float, density: float) -> cp.AbstractState:
+        """Below the triple point the vapour has an instance of its own; liquid under pressure has not."""
+        vapour = temperature < self.triple_temperature and density <= self.triple_vapour_density
+        return self._cold if vapour else self._fluid
 
     def _raw(self, temperature: float, density: float) -> float:
-        instance = self._instance(temperature)
+        instance = self._instance(temperature, density)
         try:
             instance.update(cp.DmassT_INPUTS, density, temperature)
             pressure: float = instance.p()
@@ -250,15 +279,16 @@ class Equation:
             raise OutsideValidity(
                 f"{temperature:.6g} K is outside the equation of state, which ends at {self.max_temperature:.6g} K"
             )
-        if temperature < self.triple_temperature and density > self.triple_vapour_density:
+        cold = temperature < self.triple_temperature * (1.0 - _COLD_ALLOWANCE)
+        if cold and self.triple_vapour_density < density <= self.triple_liquid_density:
             raise OutsideValidity(f"below its triple point this is no vapour: {temperature:.6g} K, {density:.6g} kg/m3")
         pressure = self._raw(temperature, density)
         if density > self.triple_liquid_density:
-            if self.melting_pressure is None:
+            if self.freezes is None:
                 raise OutsideValidity(
                     f"{density:.6g} kg/m3 may be frozen at {temperature:.6g} K: melting curve unknown"
                 )
-            if pressure > self.melting_pressure(temperature):
+            if self.freezes(temperature, pressure):
                 raise Frozen(f"{density:.6g} kg/m3 at {temperature:.6g} K is beyond the melting curve")
         if not (0.0 < pressure <= self.max_pressure):
             raise OutsideValidity(

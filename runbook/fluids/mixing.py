@@ -1,16 +1,19 @@
-"""Two phases that share a vessel: how much of each, and the energy of both together."""
+"""Phases that share a vessel: how much of each, and the energy and entropy of all together."""
 
 from __future__ import annotations
 
-from runbook.fluids.library import Equation, Saturation
-from runbook.fluids.solid import DryIce
+from collections.abc import Sequence
+
+from runbook.fluids.library import Saturation
+from runbook.fluids.solids.curves import Solid
+from runbook.fluids.solids.gibbs import Phase
 from runbook.fluids.state import Region, State
 
 
 def liquid_and_vapour(temperature: float, density: float, both: Saturation) -> State:
     """The state of liquid beside vapour; temperature [K], density [kg/m3] between those of the phases."""
     liquid = _share(density, both.liquid_density, both.vapour_density)
-    heavy, light = both.liquid_density * both.liquid_energy, both.vapour_density * both.vapour_energy
+    heavy, light = liquid * both.liquid_density / density, (1.0 - liquid) * both.vapour_density / density
     return State(
         temperature,
         density,
@@ -21,63 +24,50 @@ def liquid_and_vapour(temperature: float, density: float, both: Saturation) -> S
         1.0 - liquid,
         both.liquid_density,
         both.vapour_density,
-        (liquid * heavy + (1.0 - liquid) * light) / density,
+        heavy * both.liquid_energy + light * both.vapour_energy,
+        heavy * both.liquid_entropy + light * both.vapour_entropy,
     )
 
 
-def solid_and_vapour(temperature: float, density: float, ice: DryIce, equation: Equation) -> State:
+def solid_and_vapour(temperature: float, density: float, solid: Solid, vapour: Phase) -> State:
     """The state of solid beside vapour; temperature [K] up to the triple point, density [kg/m3].
 
-    The solid's enthalpy is that of the vapour less the heat of sublimation. Raises OutsideValidity.
+    vapour: on the sublimation curve at that temperature. Raises OutsideValidity.
     """
-    pressure = ice.sublimation_pressure(temperature)
-    vapour_density, vapour_energy = equation.cold_vapour(temperature, pressure)
-    solid_density = ice.density(temperature)
-    enthalpy = vapour_energy + pressure / vapour_density - ice.heat_of_sublimation(temperature)
-    solid = _share(density, solid_density, vapour_density)
-    heavy, light = solid_density * enthalpy - pressure, vapour_density * vapour_energy
-    energy = (solid * heavy + (1.0 - solid) * light) / density
+    pressure = solid.sublimation_pressure(temperature)
+    ice = solid.beside_vapour(temperature)
+    share = _share(density, 1.0 / ice.volume, 1.0 / vapour.volume)
+    energy, entropy = _together(temperature, pressure, density, ((share, ice), (1.0 - share, vapour)))
     return State(
-        temperature,
-        density,
-        pressure,
-        Region.SOLID_VAPOUR,
-        solid,
-        0.0,
-        1.0 - solid,
-        None,
-        vapour_density,
-        energy,
-    )
+        temperature, density, pressure, Region.SOLID_VAPOUR, share, 0.0, 1.0 - share, None, 1.0 / vapour.volume,
+        energy, entropy,
+    )  # fmt: skip
 
 
-def solid_and_liquid(temperature: float, density: float, ice: DryIce, equation: Equation) -> State:
-    """The state of solid beside liquid; temperature [K] from the triple point up, density [kg/m3].
+def solid_and_liquid(temperature: float, density: float, solid: Solid) -> State:
+    """The state of solid beside liquid on the melting curve; temperature [K], density [kg/m3].
 
-    The solid's enthalpy is that of the liquid less the heat of fusion. Raises OutsideValidity.
+    Raises OutsideValidity beyond the curve.
     """
-    pressure = ice.melting_pressure(temperature)
-    liquid_density = equation.liquid_density(temperature, pressure)
-    liquid_energy = equation.liquid_energy(temperature, liquid_density)
-    solid_density = ice.density(temperature)
-    enthalpy = liquid_energy + pressure / liquid_density - ice.heat_of_fusion(temperature)
-    solid = _share(density, solid_density, liquid_density)
-    heavy, light = solid_density * enthalpy - pressure, liquid_density * liquid_energy
-    energy = (solid * heavy + (1.0 - solid) * light) / density
+    pressure = solid.melting_pressure(temperature)
+    ice, liquid = solid.beside_liquid(temperature)
+    share = _share(density, 1.0 / ice.volume, 1.0 / liquid.volume)
+    energy, entropy = _together(temperature, pressure, density, ((share, ice), (1.0 - share, liquid)))
     return State(
-        temperature,
-        density,
-        pressure,
-        Region.SOLID_LIQUID,
-        solid,
-        1.0 - solid,
-        0.0,
-        liquid_density,
-        None,
-        energy,
-    )
+        temperature, density, pressure, Region.SOLID_LIQUID, share, 1.0 - share, 0.0, 1.0 / liquid.volume, None,
+        energy, entropy,
+    )  # fmt: skip
 
 
-def _share(density: float, heavy: float, light: float) -> float:
-    """Volume fraction [1] of the heavier phase; clamped, since at an edge rounding may pass it."""
-    return min(1.0, max(0.0, (density - light) / (heavy - light)))
+def _together(
+    temperature: float, pressure: float, density: float, phases: Sequence[tuple[float, Phase]]
+) -> tuple[float, float]:
+    """Internal energy [J/kg] and entropy [J/kg/K] of phases by their volume fractions [1]."""
+    masses = [(fraction / (phase.volume * density), phase) for fraction, phase in phases]
+    energy = sum(mass * phase.energy(temperature, pressure) for mass, phase in masses)
+    return energy, sum(mass * phase.entropy for mass, phase in masses)
+
+
+def _share(density: float, one: float, other: float) -> float:
+    """Volume fraction [1] of the phase of density one; clamped, since at an edge rounding may pass it."""
+    return min(1.0, max(0.0, (density - other) / (one - other)))

@@ -43,6 +43,8 @@ class State:
     """Of the vapour [kg/m3]; None where vapour and another phase are not both there."""
     internal_energy: float | None
     """[J/kg]; None on the three-phase plateau, where temperature and density do not fix it."""
+    entropy: float | None
+    """[J/kg/K]; None where the internal energy is."""
 
 
 @dataclass(frozen=True, slots=True)

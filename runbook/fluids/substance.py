@@ -10,10 +10,13 @@ from functools import cache
 
 from runbook.errors import OutsideValidity
 from runbook.fluids.catalogue import FluidData, find
+from runbook.fluids.cold import Cold
 from runbook.fluids.library import Equation, Frozen, Saturation, SaturationSlopes
-from runbook.fluids.mixing import liquid_and_vapour, solid_and_liquid, solid_and_vapour
+from runbook.fluids.mixing import liquid_and_vapour, solid_and_liquid
 from runbook.fluids.roots import bracketed_root
-from runbook.fluids.solid import DryIce
+from runbook.fluids.solids.curves import Solid
+from runbook.fluids.solids.gibbs import Phase
+from runbook.fluids.solids.making import solid_of
 from runbook.fluids.state import Landmarks, Region, State
 
 CRITICAL_BAND = 0.05
@@ -25,10 +28,9 @@ class Substance:
 
     def __init__(self, data: FluidData) -> None:
         self._data = data
-        bare = Equation(data.library_name, data.max_temperature, data.max_pressure)
-        self._solid = DryIce(bare.triple_pressure) if data.freezes_to == "dry ice" else None
-        bare.melting_pressure = self._solid.melting_pressure if self._solid else None
-        self._equation = equation = bare
+        self._equation = equation = Equation(data.library_name, data.max_temperature, data.max_pressure)
+        self._cold = None if data.solid is None else Cold(equation, solid_of(data.solid, equation))
+        equation.freezes = None if self._cold is None else self._cold.solid.freezes
         self.name = data.name
         """Canonical name."""
         self.source = data.source
@@ -47,15 +49,24 @@ class Substance:
         """[kg/mol]."""
         self.max_temperature = data.max_temperature
         """[K]."""
-        self.min_temperature = self._solid.lowest_temperature if self._solid else equation.triple_temperature
+        self.min_temperature = self._cold.solid.lowest_temperature if self._cold else equation.triple_temperature
         """[K]; below it nothing is computed."""
+
+    @property
+    def solid(self) -> Solid | None:
+        """What it freezes to; None: not modelled."""
+        return None if self._cold is None else self._cold.solid
+
+    def vapour_beside_solid(self, temperature: float) -> Phase:
+        """Vapour on the sublimation curve at a temperature [K] up to the triple point. Raises OutsideValidity."""
+        return self._frozen(temperature).vapour(temperature)
 
     # -- states ---------------------------------------------------------------------------------------
 
     def pressure(self, temperature: float, density: float) -> float:
         """Absolute pressure [Pa] at a temperature [K] and density [kg/m3]. Raises OutsideValidity."""
         equation = self._equation
-        if temperature > self.triple_temperature:
+        if not self._is_cold(temperature):
             if temperature < self.critical_temperature:
                 pressure, liquid, vapour = equation.dome(temperature)
                 if vapour <= density <= liquid:
@@ -63,27 +74,31 @@ class Substance:
             try:
                 return equation.pressure(temperature, density)
             except Frozen:
-                return self._melting(temperature, density)
-        if self._beside_solid(temperature, density):
-            return self._dry_ice(temperature).sublimation_pressure(temperature)
+                return self._frozen(temperature).melting(temperature, density)
+        match self._frozen(temperature).region(temperature, density):
+            case Region.SOLID_VAPOUR | Region.THREE_PHASE:
+                return self._ice(temperature).sublimation_pressure(temperature)
+            case Region.SOLID_LIQUID:
+                return self._ice(temperature).melting_pressure(temperature)
         return equation.pressure(temperature, density)
 
     def state(self, temperature: float, density: float) -> State:
         """Everything at a temperature [K] and density [kg/m3]. Raises OutsideValidity."""
         equation = self._equation
-        if not temperature > self.triple_temperature:
-            if self._beside_solid(temperature, density):
-                return self._solid_state(temperature, density)
+        if self._is_cold(temperature):
+            region = self._frozen(temperature).region(temperature, density)
+            if region in _SEVERAL:
+                return self._frozen(temperature).state(temperature, density, region)
         elif temperature < self.critical_temperature:
             saturation = equation.saturation(temperature)
             if saturation.vapour_density <= density <= saturation.liquid_density:
                 return liquid_and_vapour(temperature, density, saturation)
         try:
-            pressure, energy = equation.pressure_energy(temperature, density)
+            pressure, energy, entropy = equation.caloric(temperature, density)
         except Frozen:
-            self._melting(temperature, density)
-            return solid_and_liquid(temperature, density, self._dry_ice(temperature), equation)
-        return self._single_state(temperature, density, pressure, energy)
+            self._frozen(temperature).melting(temperature, density)
+            return solid_and_liquid(temperature, density, self._ice(temperature))
+        return self._single_state(temperature, density, pressure, energy, entropy)
 
     def saturation(self, temperature: float) -> Saturation:
         """Liquid beside vapour at a temperature [K] from triple to critical. Raises OutsideValidity."""
@@ -105,14 +120,13 @@ class Substance:
         if region is Region.LIQUID_VAPOUR:
             return self._equation.saturation(temperature).dpdT
         if region is Region.SOLID_VAPOUR:
-            return self._dry_ice(temperature).sublimation_slope(temperature)
+            return self._ice(temperature).sublimation_slope(temperature)
         if region is Region.SOLID_LIQUID:
-            return self._dry_ice(temperature).melting_slope(temperature)
+            return self._ice(temperature).melting_slope(temperature)
         if region is Region.THREE_PHASE:
-            ice = self._dry_ice(temperature)
-            steeper = ice.sublimation_slope(temperature)
-            beyond = density > self._equation.triple_liquid_density
-            return max(steeper, ice.melting_slope(temperature)) if beyond else steeper
+            ice = self._ice(temperature)
+            dense = density > min(self._equation.triple_liquid_density, 1.0 / ice.beside_vapour(temperature).volume)
+            return max(ice.sublimation_slope(temperature), ice.melting_slope(temperature) if dense else 0.0, key=abs)
         return self._equation.slopes(temperature, density)[0]
 
     def dp_ddensity(self, temperature: float, density: float) -> float:
@@ -161,9 +175,9 @@ class Substance:
         if region is Region.LIQUID_VAPOUR:
             return self._data.saturation_uncertainty * self.pressure(temperature, density)
         if region in (Region.SOLID_VAPOUR, Region.THREE_PHASE):
-            return self._dry_ice(temperature).sublimation_uncertainty(temperature)
+            return self._ice(temperature).sublimation_uncertainty(temperature)
         if region is Region.SOLID_LIQUID:
-            return 0.015 * self.pressure(temperature, density)
+            return self._ice(temperature).melting_uncertainty(temperature)
         dense = density > (1.0 - CRITICAL_BAND) * self.critical_density
         share = self._data.dense_uncertainty if dense else self._data.thin_uncertainty
         by_density = share * density * abs(self._equation.slopes(temperature, density)[1])
@@ -174,9 +188,10 @@ class Substance:
     def region(self, temperature: float, density: float) -> Region:
         """Which phases are there at a temperature [K] and density [kg/m3]. Raises OutsideValidity."""
         equation = self._equation
-        if not temperature > self.triple_temperature:
-            if self._beside_solid(temperature, density):
-                return Region.THREE_PHASE if temperature == self.triple_temperature else Region.SOLID_VAPOUR
+        if self._is_cold(temperature):
+            cold = self._frozen(temperature).region(temperature, density)
+            if cold in _SEVERAL:
+                return cold
         elif temperature < self.critical_temperature:
             _, liquid, vapour = equation.dome(temperature)
             if vapour <= density <= liquid:
@@ -184,7 +199,7 @@ class Substance:
         try:
             pressure = equation.pressure(temperature, density)
         except Frozen:
-            self._melting(temperature, density)
+            self._frozen(temperature).melting(temperature, density)
             return Region.SOLID_LIQUID
         return self._single_region(temperature, density, pressure)
 
@@ -216,18 +231,17 @@ class Substance:
         if density >= self._equation.triple_vapour_density:
             span = self.triple_temperature, self.critical_temperature
             return bracketed_root(lambda t: self._equation.dome(t)[2] - density, *span, 1e-6)
-        if self._solid is None or self._frost_density(self.min_temperature) > density:
+        if self._cold is None or self._cold.frost_density(self.min_temperature) > density:
             return None
+        cold = self._cold
         return bracketed_root(
-            lambda t: self._frost_density(t) - density, self.min_temperature, self.triple_temperature, 1e-6
+            lambda t: cold.frost_density(t) - density, self.min_temperature, self.triple_temperature, 1e-6
         )
 
     def landmarks(self, density: float) -> Landmarks:
         """All landmarks of a charge of that density [kg/m3]."""
-        thick = density > self._equation.triple_vapour_density
-        solid = self._solid.density(self.triple_temperature) if self._solid else 0.0
         return Landmarks(
-            triple=self.triple_temperature if thick and density < solid else None,
+            triple=self.triple_temperature if self.plateau(density) is not None else None,
             liquid_full=self.liquid_full_temperature(density),
             dry=self.dry_temperature(density),
             critical=self.critical_temperature if self.is_critical(density) else None,
@@ -236,64 +250,33 @@ class Substance:
     def plateau(self, density: float) -> tuple[float, float] | None:
         """Internal energies [J/kg] at which melting begins and ends for a charge of that density [kg/m3].
 
-        Between them temperature and pressure stand at the triple point. None for a charge too thin for
-        liquid, and where no solid is modelled.
+        Between them temperature and pressure stand at the triple point. None for a charge that is never all three,
+        and where no solid is modelled.
         """
-        if self._solid is None or density <= self._equation.triple_vapour_density:
-            return None
-        begin, end = (state.internal_energy for state in self.plateau_states(density))
-        return None if begin is None or end is None else (begin, end)
+        return None if self._cold is None else self._cold.plateau(density)
 
     def plateau_states(self, density: float) -> tuple[State, State]:
-        """The last state without liquid and the first without solid, or without vapour, at the triple point.
+        """At the triple point the state of least and that of most energy: one phase is missing in each.
 
-        density [kg/m3]. Raises OutsideValidity where no solid is modelled.
+        density [kg/m3]. Raises OutsideValidity where no solid is modelled, or it is too dense.
         """
-        triple = self.triple_temperature
-        ice = self._dry_ice(triple)
-        if not density <= ice.density(triple):
-            raise OutsideValidity(f"{density:.6g} kg/m3 is denser than solid {self.name}")
-        begin = solid_and_vapour(triple, density, ice, self._equation)
-        both = self._equation.saturation(triple)
-        if density <= both.liquid_density:
-            return begin, liquid_and_vapour(triple, density, both)
-        return begin, solid_and_liquid(triple, density, ice, self._equation)
+        return self._frozen(self.triple_temperature).plateau_states(density)
 
-    # -- with solid -----------------------------------------------------------------------------------
+    def _is_cold(self, temperature: float) -> bool:
+        """Where solid may be; no number at all counts as cold, and is refused there."""
+        above = temperature > self.triple_temperature
+        return not (above or (self._cold is None and temperature == self.triple_temperature))
 
-    def _dry_ice(self, temperature: float) -> DryIce:
-        if self._solid is None:
-            raise OutsideValidity(f"{temperature:.6g} K: no solid {self.name} is modelled")
-        return self._solid
+    def _frozen(self, temperature: float) -> Cold:
+        if self._cold is None:
+            raise OutsideValidity(
+                f"{temperature:.6g} K is below the triple point of {self.name}, {self.triple_temperature:.6g} K, "
+                "and its solid is not modelled"
+            )
+        return self._cold
 
-    def _beside_solid(self, temperature: float, density: float) -> bool:
-        """At or below the triple point: solid with vapour (True) or vapour alone (False)."""
-        ice = self._dry_ice(temperature)
-        pressure = ice.sublimation_pressure(temperature)
-        if not 0.0 < density <= ice.density(temperature):
-            raise OutsideValidity(f"no state at {temperature:.6g} K and {density:.6g} kg/m3: compressed solid, or none")
-        # Far from the curve the ideal gas decides: real vapour on the curve is at most 1.09 times as dense.
-        ideal = pressure * self.molar_mass / (self._equation.gas_constant * temperature)
-        return density > 1.2 * ideal or density > self._frost_density(temperature)
-
-    def _frost_density(self, temperature: float) -> float:
-        """Density [kg/m3] of vapour over the solid at a temperature [K]."""
-        pressure = self._dry_ice(temperature).sublimation_pressure(temperature)
-        return self._equation.cold_vapour(temperature, pressure)[0]
-
-    def _melting(self, temperature: float, density: float) -> float:
-        ice = self._dry_ice(temperature)
-        pressure = ice.melting_pressure(temperature)
-        if density > ice.density(temperature) or pressure > self._data.max_pressure:
-            raise OutsideValidity(f"{density:.6g} kg/m3 at {temperature:.6g} K: compressed solid")
-        return pressure
-
-    def _solid_state(self, temperature: float, density: float) -> State:
-        ice = self._dry_ice(temperature)
-        if temperature < self.triple_temperature:
-            return solid_and_vapour(temperature, density, ice, self._equation)
-        pressure = ice.sublimation_pressure(temperature)
-        return State(temperature, density, pressure, Region.THREE_PHASE, None, None, None, None, None, None)
+    def _ice(self, temperature: float) -> Solid:
+        return self._frozen(temperature).solid
 
     # -- one phase ------------------------------------------------------------------------------------
 
@@ -302,10 +285,12 @@ class Substance:
             return Region.LIQUID if density > self.critical_density else Region.VAPOUR
         return Region.SUPERCRITICAL if pressure >= self.critical_pressure else Region.GAS
 
-    def _single_state(self, temperature: float, density: float, pressure: float, energy: float) -> State:
+    def _single_state(
+        self, temperature: float, density: float, pressure: float, energy: float, entropy: float
+    ) -> State:
         region = self._single_region(temperature, density, pressure)
         solid, liquid, vapour = _ALONE.get(region, (None, None, None))
-        return State(temperature, density, pressure, region, solid, liquid, vapour, None, None, energy)
+        return State(temperature, density, pressure, region, solid, liquid, vapour, None, None, energy, entropy)
 
 
 _SEVERAL = (Region.LIQUID_VAPOUR, Region.SOLID_VAPOUR, Region.SOLID_LIQUID, Region.THREE_PHASE)

@@ -37,7 +37,8 @@ def test_the_table_rises(density: float) -> None:
     for column in (path.temperatures, path.energies, path.pressures):
         assert all(b >= a for a, b in itertools.pairwise(column))
     assert path.lowest_temperature <= 180.0
-    assert path.highest_temperature >= 420.0
+    # A charge of almost solid density reaches 500 MPa, where the models end, at 313 K.
+    assert path.highest_temperature >= (420.0 if density < 1300.0 else 310.0)
 
 
 @settings(max_examples=300, deadline=None)
@@ -110,7 +111,7 @@ def test_energy_of_a_level() -> None:
     assert path.energy_of_temperature(100.0) == float("-inf")
 
 
-@pytest.mark.parametrize("density", [0.0, -1.0, 1600.0, float("nan"), float("inf")])
+@pytest.mark.parametrize("density", [0.0, -1.0, 1650.0, float("nan"), float("inf")])
 def test_an_impossible_charge_is_refused(density: float) -> None:
     """No path is built for no charge, or one denser than the solid."""
     with pytest.raises(OutsideValidity):

@@ -33,7 +33,7 @@ def test_an_unknown_library_name_is_refused() -> None:
 def test_the_library_answers_where_the_door_refuses() -> None:
     """Each refusal stands where the bare library gives a number: its limits are not those of the equation."""
     bare = cp.AbstractState("HEOS", "CarbonDioxide")
-    equation = Equation("CarbonDioxide", 1100.0, 800e6, melting_pressure=lambda t: 16.7e6)
+    equation = Equation("CarbonDioxide", 1100.0, 800e6, freezes=lambda t, p: p > 16.7e6)
     for kelvin, density in ((200.0, 480.0), (320.0, 1800.0), (1500.0, 1.0), (220.0, 1300.0)):
         bare.update(cp.DmassT_INPUTS, density, kelvin)
         assert bare.p() > 0.0
@@ -43,7 +43,7 @@ def test_the_library_answers_where_the_door_refuses() -> None:
 
 def test_beyond_the_melting_curve_is_frozen() -> None:
     """Fluid above its melting pressure is refused as frozen, and where that curve is unknown refused all the same."""
-    knowing = Equation("CarbonDioxide", 1100.0, 800e6, melting_pressure=lambda t: 16.7e6)
+    knowing = Equation("CarbonDioxide", 1100.0, 800e6, freezes=lambda t, p: p > 16.7e6)
     with pytest.raises(Frozen):
         knowing.pressure(220.0, 1250.0)
     with pytest.raises(OutsideValidity, match="melting curve unknown"):

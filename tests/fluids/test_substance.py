@@ -216,11 +216,11 @@ def test_heat_capacity_beside_vapour_is_the_true_one(kelvin: float, capacity: fl
 
 
 def test_uncertainty_of_the_pressure() -> None:
-    """0.012 % of saturation; full of liquid 0.2 % in density times the slope; 250, 100 and 50 Pa over dry ice."""
+    """0.012 % of saturation; full of liquid 0.2 % in density times the slope; 1.2 % over dry ice."""
     assert CO2.pressure_uncertainty(293.15, 468.0) == pytest.approx(1.2e-4 * 5.72905e6, rel=1e-3)
     full = 0.002 * 900.0 * CO2.dp_ddensity(293.15, 900.0)
     assert CO2.pressure_uncertainty(293.15, 900.0) == pytest.approx(full, rel=1e-9)
     assert full > 2e5
-    assert [CO2.pressure_uncertainty(t, 480.0) for t in (190.0, 180.0, 160.0)] == [250.0, 100.0, 50.0]
+    assert CO2.pressure_uncertainty(190.0, 480.0) == pytest.approx(0.012 * CO2.pressure(190.0, 480.0))
     # Near critical the slope vanishes, the uncertainty does not.
     assert CO2.pressure_uncertainty(304.1283, 467.6) >= 1.2e-4 * 7.377e6

@@ -10,9 +10,12 @@ from pathlib import Path
 
 import pytest
 
+from runbook.fluids.library import Equation
 from runbook.fluids.substance import substance
 
 CO2 = substance("carbon dioxide")
+FLUID = Equation("CarbonDioxide", 1100.0, 800e6, freezes=lambda t, p: False)
+"""Without its solid: the first row of an isobar lies on the authors\' own melting curve, 0.1 % from ours."""
 DATA = Path(__file__).parent / "data"
 Row = dict[str, float]
 
@@ -69,16 +72,16 @@ def test_slope_of_saturation_is_clapeyrons(row: Row) -> None:
 def test_one_phase_is_the_printed_table(row: Row) -> None:
     """Pressure at the printed density is within half a digit of it; Span and Wagner 1996, Table 35."""
     t, rho = row["T_K"], row["rho"]
-    allowed = half(row["rho_digit"]) * CO2.dp_ddensity(t, rho)
+    allowed = half(row["rho_digit"]) * FLUID.slopes(t, rho)[1]
     assert allowed > 0.0
-    assert CO2.pressure(t, rho) == pytest.approx(row["p_Pa"], abs=allowed, rel=0)
+    assert FLUID.pressure(t, rho) == pytest.approx(row["p_Pa"], abs=allowed, rel=0)
 
 
 @pytest.mark.wiring
 @pytest.mark.parametrize("row", SINGLE, ids=lambda row: f"{row['T_K']:g} K")
 def test_one_phase_heat_capacity_is_the_printed_table(row: Row) -> None:
     """Heat capacity at fixed volume within a printed digit; Span and Wagner 1996, Table 35."""
-    assert CO2.heat_capacity(row["T_K"], row["rho"]) == pytest.approx(row["cv"], abs=row["cv_digit"], rel=0)
+    assert FLUID.slopes(row["T_K"], row["rho"])[2] == pytest.approx(row["cv"], abs=row["cv_digit"], rel=0)
 
 
 @pytest.mark.wiring
@@ -90,9 +93,7 @@ def test_one_phase_energies_differ_as_printed() -> None:
     base = SINGLE[0]
 
     def energy(row: Row) -> float:
-        value = CO2.state(row["T_K"], row["rho"]).internal_energy
-        assert value is not None
-        return value
+        return FLUID.caloric(row["T_K"], row["rho"])[1]
 
     for row in SINGLE[1:]:
         digit = base["u_digit"] + row["u_digit"]

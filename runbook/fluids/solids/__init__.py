@@ -1,0 +1,1 @@
+"""Solids of the fluids: an equation for each, and where each meets its liquid and its vapour."""

@@ -6,7 +6,7 @@ as it stands. No logic lives here. All quantities are SI; all pressures are abso
 """
 
 from runbook.answers.card import GaugeCard, GaugeRow
-from runbook.answers.explanation import ChargeEstimate, ChargePart, Explanation, Past
+from runbook.answers.explanation import ChargeEstimate, ChargePart, Explanation, Past, Telling
 from runbook.answers.lines import Empty, Hold, LineKind, Need, PlanLine, QuickItem, SafetyMessage, Sight, Witness
 from runbook.answers.margins import (
     Agreement,
@@ -61,6 +61,7 @@ __all__ = [
     "QuickItem",
     "SafetyMessage",
     "Sight",
+    "Telling",
     "Unanswered",
     "Witness",
 ]

@@ -66,3 +66,30 @@ class ChargeEstimate:
     parts: tuple[ChargePart, ...]
     blind: tuple[str, ...]
     """Kinds of reading that were there and say nothing of the charge."""
+
+
+@dataclass(frozen=True, slots=True)
+class Telling:
+    """Whether one instrument would show one fault, with the vessel at rest as planned."""
+
+    fault: str
+    """As Explanation.cause."""
+    size: float
+    """The size that is asked about [unit]."""
+    unit: str
+    """'Pa' (a difference), 'kg' or 'K'."""
+    tag: str
+    """The instrument."""
+    reads: str
+    """As Observation.what."""
+    quality: str
+    """Its class, or nothing where the file states an error instead."""
+    shift: float
+    """How far the fault moves what it shows [SI]."""
+    band: float
+    """How far it must move to be seen, k = 2 [SI]."""
+    seen: bool
+    least: float | None
+    """The smallest size it would show [unit]; None: none, whatever its size."""
+    wanted: str
+    """The coarsest class that would show it; empty where it is seen, or no class would."""

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from runbook.answers.explanation import Telling
 from runbook.answers.lines import PlanLine
 from runbook.answers.margins import ChargeBox
 
@@ -149,3 +150,5 @@ class Plan:
     """Author's additions: (text, role)."""
     path: tuple[tuple[float, float], ...] = ()
     """The planned charge at fixed density, cold to hot: temperature [K], pressure [Pa]. For pictures only."""
+    telling: tuple[Telling, ...] = ()
+    """What each instrument would show of the faults that happen, at rest as planned. For words only."""

@@ -17,6 +17,7 @@ from runbook.apparatus.certificates import certificates
 from runbook.apparatus.instruments import permissible_error
 from runbook.apparatus.spaces import joined_spaces
 from runbook.assess.bounds import charge_bounds
+from runbook.assess.evidence.desk import what_instruments_tell
 from runbook.assess.mend import mends
 from runbook.assess.path import planned_path
 from runbook.assess.plan_line import FORBIDDEN_TO_RELEASE, plan_line
@@ -101,6 +102,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
         lines=plan_lines,
         make_safe_also=tuple((a.do, a.who or "") for a in procedure.make_safe_also),
         path=planned_path(scene, walked),
+        telling=what_instruments_tell(scene),
     )
 
 

@@ -10,6 +10,7 @@ from typing import Final
 from runbook.answers import BindRequest, Finding, Plan
 from runbook.bench.rows import EMPTY, Row, wrapped
 from runbook.quantities import say, say_level
+from runbook.run.evidence_words import TOLD, telling_lines
 
 _INDENT: Final = 22
 
@@ -25,6 +26,7 @@ def briefing_rows(plan: Plan, request: BindRequest, width: int) -> list[Row]:
         *_numbers(plan, width),
         EMPTY,
         *_dated(plan, width),
+        *_telling(plan, width),
         *_bring(plan, width),
         *_findings(plan.findings, width),
     ]
@@ -103,6 +105,11 @@ def _dated(plan: Plan, width: int) -> list[Row]:
         soonest = min((c.until for c in plan.certificates if c.state == "valid"), default="")
         rows += _pair("certificates", f"{good} valid, the first until {soonest}", width, "yes")
     return rows
+
+
+def _telling(plan: Plan, width: int) -> list[Row]:
+    said = telling_lines(plan, TOLD)
+    return [row for n, words in enumerate(said) for row in _pair("" if n else "instruments", words, width)]
 
 
 def _bring(plan: Plan, width: int) -> list[Row]:

@@ -16,6 +16,7 @@ from runbook.answers import Finding, LeftAlone, Margin, Plan, PlanLine
 from runbook.drawing import ASCII, UNICODE, Chart, Mark, chart_picture
 from runbook.quantities import pressure_to_unit, to_unit
 from runbook.run.amounts import grams, level, margin_left, pressure
+from runbook.run.evidence_words import telling_lines
 
 _VERDICT_STYLE = {"within limits": "bold green", "outside limits": "bold red", "not proved": "bold yellow"}
 _SEVERITY_STYLE = {"error": "red", "warning": "yellow", "advice": "cyan"}
@@ -42,6 +43,8 @@ def print_report(file: str, plan: Plan) -> None:
     for name in ("least", "best", "most"):
         mass, reason = getattr(plan.bounds, f"{name}_kg"), getattr(plan.bounds, f"{name}_reason")
         console.print(f"  {name} charge: {'none' if mass is None else grams(mass)} ({reason})")
+    for said in telling_lines(plan):
+        console.print(f"  instrument {said}")
 
 
 # -- findings ---------------------------------------------------------------------------------------------

@@ -24,6 +24,7 @@ from runbook.run.amounts import pressure
 from runbook.run.clock import Clock, ScaledClock, SystemClock
 from runbook.run.conductor import Conductor
 from runbook.run.engine import ChildEngine
+from runbook.run.evidence_words import TOLD, telling_lines
 from runbook.run.journal import Journal, JournalWriter, read
 from runbook.run.logbook import Logbook, RunFile, logbook_folder
 from runbook.run.opening import Participant, charge_record, people, played, run_opened
@@ -151,6 +152,7 @@ def briefing_lines(plan: Plan) -> list[str]:
     ]
     for name, mass in masses.items():
         lines.append(f"  {name} " + ("none" if mass is None else f"{mass * 1000:.1f} g") + f": {reasons[name]}")
+    lines += [f"  instrument {said}" for said in telling_lines(plan, TOLD)]
     lines += [f"  bring: {thing}" for thing in plan.bring]
     lines += [
         f"  {c.tag} {c.what}: {c.state.upper()} (until {c.until})" for c in plan.certificates if c.state != "valid"

@@ -203,7 +203,10 @@ def test_every_cause_spreads_its_whole_belief(tmp_path: Path) -> None:
 @pytest.mark.independent
 @pytest.mark.parametrize("readings", [2, 4, 10, 16])
 def test_the_tail_is_as_rare_as_three_and_a_half_sigma(readings: int) -> None:
-    """Chi-square's own distribution function for an even number (Abramowitz and Stegun 26.4.5): never more, by at most 25 % less."""
+    """Never commoner, and rarer by 25 % at most.
+
+    Against chi-square's own distribution function for an even number (Abramowitz and Stegun 26.4.5).
+    """
     half = 0.5 * tail(readings)
     beyond = exp(-half) * sum(half**k / factorial(k) for k in range(readings // 2))
     assert 0.75 < beyond / erfc(3.5 / sqrt(2.0)) < 1.02

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from runbook.answers.explanation import ChargeEstimate, Explanation, Past
 from runbook.answers.lines import Sight
 from runbook.answers.margins import Agreement, ChargeBox, Distance, LeftAlone, Margin, Phase
 
@@ -29,7 +30,7 @@ class Question:
     """Everything an answer depends on; times are left out, so that the key changes only with facts."""
 
     key: str
-    """Digest of all other fields."""
+    """Digest of all other fields but the history."""
     line: int
     """The line the run stands in."""
     to: int
@@ -45,6 +46,9 @@ class Question:
     observations: tuple[Observation, ...]
     """The readings that count: of mass and liquid height (with the temperature read beside it) all since
     closing and the last before it; of temperature and pressure the last, and any that contradicts it."""
+    history: tuple[Past, ...] = ()
+    """The last readings of the closed vessel with their times, for explanations alone. Not in the key: the numbers of
+    the observations say already which readings have been taken."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -79,6 +83,10 @@ class Answer:
     """Above the inside bottom [m]; None where there is no surface."""
     distance: Distance
     sights: tuple[Sight, ...]
+    explanations: tuple[Explanation, ...] = ()
+    """What would make gauge and model differ, the most likely first; empty where they agree. Permits nothing."""
+    estimate: ChargeEstimate | None = None
+    """The charge as a best estimate, for people; limits are judged with `charge`."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -21,6 +21,8 @@ from runbook.assess.agreement import Computed, agreement, computed_pressure, rea
 from runbook.assess.ahead import look, standing_valves
 from runbook.assess.boxes import charge_box, gas_left
 from runbook.assess.corners import Worst, temperature_at_pressure
+from runbook.assess.evidence.estimate import charge_estimate
+from runbook.assess.evidence.live import explained
 from runbook.assess.futures import CONNECTED, left_alone
 from runbook.assess.limits import (
     Extremes,
@@ -73,7 +75,7 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     proved = _proved(scene, lines, question, box, state)
     left = _pressure_left(ahead)
     verdict = agreement(scene, computed, box, readings.pressure, left)
-    return _assemble(
+    found = _assemble(
         scene,
         question,
         state,
@@ -87,6 +89,12 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
         alone,
         proved,
         readings,
+    )
+    moving = rate if state.source in ("on", "do not know") else 0.0
+    return replace(
+        found,
+        explanations=explained(scene, question, verdict, readings.temperature, moving),
+        estimate=charge_estimate(scene, question.charge, question.observations) if state.closed else None,
     )
 
 

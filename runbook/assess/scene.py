@@ -9,7 +9,7 @@ from dataclasses import dataclass, field
 from functools import cached_property
 from typing import Literal
 
-from runbook.answers import ChargeBox, Margin
+from runbook.answers import ChargeBox, Explanation, Margin
 from runbook.apparatus.model import Apparatus
 from runbook.apparatus.model import Instrument as InstrumentFile
 from runbook.assess.assumptions import ALL, Assumptions
@@ -55,6 +55,8 @@ class Scene:
     """Least and most charge [kg] that a height [m] at a temperature [K] means."""
     estimated_by_height: dict[tuple[float, float], tuple[float, float] | None] = field(init=False, default_factory=dict)
     """Charge and its U [kg] that a height [m] at a temperature [K] means."""
+    explained: dict[tuple[object, ...], tuple[Explanation, ...]] = field(init=False, default_factory=dict)
+    """Explanations by the readings they explain."""
     _pressures: dict[tuple[float, float], tuple[float, float]] = field(init=False, default_factory=dict)
 
     def __post_init__(self) -> None:

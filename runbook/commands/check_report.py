@@ -43,8 +43,8 @@ def print_report(file: str, plan: Plan) -> None:
     for name in ("least", "best", "most"):
         mass, reason = getattr(plan.bounds, f"{name}_kg"), getattr(plan.bounds, f"{name}_reason")
         console.print(f"  {name} charge: {'none' if mass is None else grams(mass)} ({reason})")
-    for said in telling_lines(plan):
-        console.print(f"  instrument {said}")
+    for told in telling_lines(plan):
+        console.print(f"  instrument {told}")
 
 
 # -- findings ---------------------------------------------------------------------------------------------

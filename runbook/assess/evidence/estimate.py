@@ -132,10 +132,11 @@ def _pressure(scene: Scene, observations: Sequence[Observation], near: float) ->
         for _ in range(_STEPS):
             density = kg / volume.value
             by_density = fluid.dp_ddensity(wall.value, density)
+            if not by_density > 0.0:
+                return None
             by_wall, equation = fluid.dp_dT(wall.value, density), fluid.pressure_uncertainty(wall.value, density)
             band = hypot(reading_U(scene, read), by_wall * reading_U(scene, wall), equation)
-            # Two phases, or hardly any slope: blind, which it is most often.
-            if not (by_density > 0.0 and band * volume.value / by_density < BLIND * near):
+            if not band * volume.value / by_density < BLIND * near:
                 return None
             kg += (read.value - fluid.pressure(wall.value, density)) * volume.value / by_density
     except RunbookError:

@@ -20,9 +20,9 @@ from runbook.assess.bounds import charge_bounds
 from runbook.assess.evidence.desk import what_instruments_tell
 from runbook.assess.mend import mends
 from runbook.assess.path import planned_path
-from runbook.assess.plan_line import FORBIDDEN_TO_RELEASE, plan_line
+from runbook.assess.plan_line import plan_line
 from runbook.assess.scene import Scene, open_scene
-from runbook.assess.verdict import line_findings, mend_findings, verdict_of
+from runbook.assess.verdict import fluid_findings, line_findings, mend_findings, verdict_of
 from runbook.assess.walk import VesselState, Walked, outside_tags, start_state, walk
 from runbook.procedure.model import (
     LetDownTo,
@@ -52,9 +52,11 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
     loaded, apparatus, procedure = scene.loaded, scene.apparatus, scene.procedure
     plan_lines = tuple(plan_line(scene, walked, i) for i in range(len(walked)))
     dated = certificates(apparatus, on)
-    found = tuple(
-        Finding(p.rule, p.severity, p.line, p.column, p.message) for p in writing_findings(loaded)
-    ) + line_findings(loaded, walked, plan_lines, dated)
+    found = (
+        tuple(Finding(p.rule, p.severity, p.line, p.column, p.message) for p in writing_findings(loaded))
+        + fluid_findings(scene)
+        + line_findings(loaded, walked, plan_lines, dated)
+    )
     verdict = verdict_of(plan_lines, found)
     if verdict == "outside limits":
         found += mend_findings(loaded, mends(scene))
@@ -97,7 +99,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
         source=begun.source,
         source_away=source is not None and source.taken_away_in_one_motion,
         let_down_valve=lets_down or next((t for t in outside if any(v.tag == t for v in apparatus.valves)), None),
-        release_forbidden=scene.substance.name in FORBIDDEN_TO_RELEASE,
+        release_forbidden=scene.substance.data.hazards.release_forbidden,
         parts=_parts(scene, walked),
         lines=plan_lines,
         make_safe_also=tuple((a.do, a.who or "") for a in procedure.make_safe_also),

@@ -1,9 +1,9 @@
 """The worst corner of a box of tolerances: proved, not sampled.
 
-At fixed density pressure rises with temperature, at fixed temperature with density, for every region of
-carbon dioxide; an unevenly warm charge never exceeds the pressure of the same charge uniformly at its
-hottest wall. So the worst corner is most charge, least volume, hottest wall: one state, no search.
-(Water below 4 degC would need a split; no fluid with such a range is bound here.)
+At fixed density pressure rises with temperature, at fixed temperature with density; an unevenly warm charge never
+exceeds the pressure of the same charge uniformly at its hottest wall. So the worst corner is most charge, least
+volume, hottest wall: one state, no search. Liquid that grows on cooling (water below 4 degC, and its ice) splits the
+box there: along one density the pressure then has a single valley, so it is highest at one of the two ends.
 """
 
 from __future__ import annotations
@@ -46,6 +46,18 @@ def highest_pressure(scene: Scene, high_kg: float, temperature: float) -> Worst:
     return Worst(pressure + uncertainty, uncertainty, at)
 
 
+def highest_between(scene: Scene, high_kg: float, cold: float, hot: float) -> Worst:
+    """Highest pressure of a charge of at most high_kg [kg] with walls between cold and hot [K]."""
+    at_hot = highest_pressure(scene, high_kg, hot)
+    densest = scene.substance.data.densest_temperature
+    if densest is None or cold >= densest:
+        return at_hot
+    at_cold = highest_pressure(scene, high_kg, cold)
+    if at_cold.value is None or at_hot.value is None:
+        return at_hot if at_hot.value is None else at_cold
+    return at_cold if at_cold.value > at_hot.value else at_hot
+
+
 def nominal_pressure(scene: Scene, mass: float, temperature: float) -> float:
     """Pressure [Pa] of a charge [kg] in the stated volume at a temperature [K]: no air, no uncertainty.
 
@@ -74,7 +86,7 @@ def _reaching(scene: Scene, high_kg: float, pressure: float) -> float | None:
         worst = highest_pressure(scene, high_kg, temperature)
         return float("inf") if worst.value is None else worst.value - pressure
 
-    low = high = scene.sublimes_at
+    low = high = scene.coldest_in_the_open
     if excess(low) >= 0.0:
         return low
     while high < top:

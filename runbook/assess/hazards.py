@@ -15,12 +15,15 @@ HOT_TO_TOUCH = 333.15
 """Metal above it burns a hand that rests on it, 60 degC: common practice; ISO 13732-1 gives 51 to 67 [K]."""
 
 
-def effects(scene: Scene, line: Walked, release_forbidden: bool) -> tuple[tuple[Hazard, Effect], ...]:
+def effects(scene: Scene, line: Walked) -> tuple[tuple[Hazard, Effect], ...]:
     """All eight, in the order of Hazard; KEEPS where nothing is done to it."""
     found = {hazard: Effect.KEEPS for hazard in Hazard}
     found |= _of_verb(scene, line)
     found |= _of_valves(scene, line)
-    if line.lets_down and release_forbidden:
+    hazards = scene.substance.data.hazards
+    if hazards.breathing == "harmless":
+        found[Hazard.GAS] = Effect.KEEPS
+    if line.lets_down and hazards.release_forbidden:
         found[Hazard.RELEASE] = Effect.RAISES
     if isinstance(line.step, DoStep):
         for name in line.step.raises:
@@ -51,6 +54,10 @@ def _of_verb(scene: Scene, line: Walked) -> dict[Hazard, Effect]:
             found[Hazard.HOT] = Effect.RAISES
         return found
     if isinstance(verb, CoolTo):
+        densest = scene.substance.data.densest_temperature
+        if densest is not None and line.during.cold < densest:
+            # Ice, and liquid near it, take more room than what they came from.
+            return {Hazard.OVER_PRESSURE: Effect.RAISES}
         return {Hazard.OVER_PRESSURE: Effect.LOWERS} if line.before.closed else {}
     if isinstance(verb, LetDownTo):
         return {

@@ -59,4 +59,4 @@ def seconds_to_temperature(
 def _fluid_start(scene: Scene, state: VesselState) -> float:
     """Where the charge begins [K]: at its solid while solid may be in, else as hot as the wall may be."""
     solid = state.cold < scene.substance.triple_temperature
-    return max(state.cold, scene.sublimes_at) if solid else state.hot
+    return max(state.cold, scene.coldest_in_the_open) if solid else state.hot

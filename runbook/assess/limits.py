@@ -11,20 +11,15 @@ from dataclasses import dataclass, replace
 from runbook.answers import Corner, Judgement, Margin
 from runbook.apparatus.ceiling import pressure_limits
 from runbook.apparatus.spaces import joined_spaces
-from runbook.assess.corners import Worst, highest_pressure
+from runbook.assess.corners import Worst, highest_between
 from runbook.assess.scene import Scene
+from runbook.errors import OutsideValidity
 from runbook.quantities import Level, NotKnown, Range
 
 NARROW_SHARE = 0.05
 """Of the limit (of full scale for a dial, of the span for a temperature rating) under which it is narrow [1]."""
 NARROW_SECONDS = 180.0
 """A margin that lasts no longer than this at the worst credible rate is narrow [s]."""
-CO2_IN_AIR = 420e-6
-"""Background mole fraction [1]; NOAA, 2023."""
-CO2_LIMIT = 5000e-6
-"""Exposure limit, 8 h, mole fraction [1]: OSHA PEL, NIOSH REL, UK EH40."""
-CO2_GAS_VOLUME = 0.5437
-"""Gas at 20 degC and 1 atm [m3/kg], Span and Wagner 1996."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -54,8 +49,18 @@ def judge(margin: float | None, threshold: float, lasts_s: float | None = None) 
 
 def closed_extremes(scene: Scene, high_kg: float, hot: float, cold: float) -> Extremes:
     """Of a closed charge of at most high_kg [kg] with walls between cold and hot [K]."""
-    lowest = scene.barometer.low_Pa if cold >= scene.sublimes_at else 0.0
-    return Extremes(highest_pressure(scene, high_kg, hot), lowest, hot, cold)
+    return Extremes(highest_between(scene, high_kg, cold, hot), lowest_pressure(scene, high_kg, cold), hot, cold)
+
+
+def lowest_pressure(scene: Scene, high_kg: float, cold: float) -> float:
+    """Lowest that a closed charge [kg] may come to with a wall at cold [K]: trapped air is not counted on [Pa]."""
+    low = scene.barometer.low_Pa
+    if cold >= scene.coldest_in_the_open and scene.substance.triple_pressure > scene.barometer.high_Pa:
+        return low
+    try:
+        return min(low, scene.substance.pressure(cold, max(high_kg, 1e-9) / scene.volume[1]))
+    except OutsideValidity:
+        return 0.0
 
 
 def open_extremes(scene: Scene, hot: float, cold: float, released: float = 0.0) -> Extremes:
@@ -69,7 +74,7 @@ def margins(scene: Scene, reach: Extremes, positions: Mapping[str, str], cause: 
     """Every margin of these extremes with valves standing so ('do not know' counts as open)."""
     found = list(_pressures(scene, reach, positions, cause))
     found += _temperatures(scene, reach, cause)
-    if reach.released > 0.0:
+    if reach.released > 0.0 and scene.substance.data.hazards.breathing != "harmless":
         found.append(_gas(scene, reach, cause))
     return found
 
@@ -185,10 +190,14 @@ def _unknown(tag: str, kind: str, cause: str, worst: float, at: Corner) -> Margi
 
 
 def _gas(scene: Scene, reach: Extremes, cause: str) -> Margin:
-    room = scene.procedure.room.volume.low
-    worst = CO2_IN_AIR + reach.released * CO2_GAS_VOLUME / room
-    margin = CO2_LIMIT - worst
+    """All of it in the room's air at once, no ventilation counted, against the long-term exposure limit."""
+    hazards, volume = scene.substance.data.hazards, scene.gas_volume
+    limit = hazards.exposure_limit
+    worst = None if volume is None else hazards.background + reach.released * volume / scene.procedure.room.volume.low
+    if limit is None or worst is None:
+        why = f"no exposure limit of {scene.substance.name} is known"
+        return Margin("room", "gas in the room", cause, worst, limit, None, "m3/m3", Judgement.BLOCKED, None, why=why)
+    margin = limit - worst
     return Margin(
-        "room", "gas in the room", cause, worst, CO2_LIMIT, margin, "m3/m3",
-        judge(margin, NARROW_SHARE * CO2_LIMIT), None,
-    )  # fmt: skip
+        "room", "gas in the room", cause, worst, limit, margin, "m3/m3", judge(margin, NARROW_SHARE * limit), None
+    )

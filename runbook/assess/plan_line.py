@@ -11,7 +11,6 @@ from runbook.answers import (
     PlanLine,
     QuickItem,
     SafetyMessage,
-    Sight,
     Witness,
 )
 from runbook.assess.ahead import commits, look
@@ -19,7 +18,7 @@ from runbook.assess.hazards import effects
 from runbook.assess.needs import entry_needs, need_of, seal_items
 from runbook.assess.phases import phases
 from runbook.assess.scene import Scene
-from runbook.assess.sights import computed, written
+from runbook.assess.sights import line_sights
 from runbook.assess.walk import Walked
 from runbook.procedure.model import (
     DoStep,
@@ -34,17 +33,14 @@ from runbook.procedure.model import (
     WitnessStep,
 )
 
-FORBIDDEN_TO_RELEASE = ("sulfur hexafluoride",)
-"""Fluids whose intentional release the law forbids: Regulation (EU) 2024/573."""
-
 
 def plan_line(scene: Scene, walked: Sequence[Walked], index: int) -> PlanLine:
     """Line `index` of the walk, bound."""
     line = walked[index]
     step = line.step
     ahead = look(scene, walked, index, with_times=True)
-    line_effects = effects(scene, line, scene.substance.name in FORBIDDEN_TO_RELEASE)
-    sights, if_not = written(step)
+    line_effects = effects(scene, line)
+    sights, if_not = line_sights(scene, line)
     state = line.after
     return PlanLine(
         number=line.number,
@@ -82,17 +78,10 @@ def plan_line(scene: Scene, walked: Sequence[Walked], index: int) -> PlanLine:
             pressure=None,
         ),
         way_back=_way_back(scene, line),
-        sights=sights if sights else _computed(scene, line),
+        sights=sights,
         if_not=if_not,
         lasts_s=_lasts(line),
     )
-
-
-def _computed(scene: Scene, line: Walked) -> tuple[Sight, ...]:
-    if not line.after.closed or line.after.cold < scene.substance.triple_temperature:
-        return ()
-    middle = 0.5 * (line.after.low_kg + line.after.high_kg)
-    return computed(scene, middle, line.after.hot, None) if isinstance(line.verb, WarmTo) else ()
 
 
 def kind_of(step: Step | Parked) -> LineKind:

@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 from functools import cached_property
-from typing import Literal
+from typing import TYPE_CHECKING, Literal
 
 from runbook.answers import ChargeBox, Explanation, Margin
 from runbook.apparatus.model import Apparatus
@@ -15,18 +15,24 @@ from runbook.apparatus.model import Instrument as InstrumentFile
 from runbook.assess.assumptions import ALL, Assumptions
 from runbook.charge.filling import air_pressure
 from runbook.errors import FileProblems
-from runbook.fluids.roots import bracketed_root
 from runbook.fluids.substance import Substance, substance
 from runbook.procedure.model import Procedure
 from runbook.procedure.reader import Loaded
 from runbook.procedure.writing import findings as writing_findings
 from runbook.quantities import Barometer, barometer
 
+if TYPE_CHECKING:
+    # The marks are worked out of a scene, which only keeps them.
+    from runbook.assess.sights.marks import Marks
+
 GAS_CONSTANT = 8.314462618
 """[J/mol/K], CODATA 2018 (exact)."""
 AIR_OVER_ICE = 1.1
 """Air left at closing over dry ice, worst case, as a multiple of the vessel full of air at the coldest room:
 computed for dry ice closed at once, 7 to 11 mmol where a full 250 mL holds 10 [1]."""
+
+TAMPED = 0.712
+"""Share of its volume that tamped solid fills: 1.1 kg/L of dry ice, common practice [1]."""
 
 Position = Literal["open", "shut", "do not know"]
 
@@ -57,6 +63,8 @@ class Scene:
     """Charge and its U [kg] that a height [m] at a temperature [K] means."""
     explained: dict[tuple[object, ...], tuple[Explanation, ...]] = field(init=False, default_factory=dict)
     """Explanations by the readings they explain."""
+    seen: dict[float, Marks] = field(init=False, default_factory=dict)
+    """What changes to the eye on the path of a charge [kg]."""
     _pressures: dict[tuple[float, float], tuple[float, float]] = field(init=False, default_factory=dict)
 
     def __post_init__(self) -> None:
@@ -113,8 +121,17 @@ class Scene:
 
     @property
     def brim_full(self) -> float:
-        """Charge of a vessel filled to the brim with tamped dry ice, 1.1 kg/L (common practice) [kg]."""
-        return 1100.0 * self.apparatus.volume.free.high
+        """Charge of a vessel filled to the brim, the most that can be in [kg].
+
+        With tamped solid where that lies in the open, 1.1 kg/L of dry ice (common practice), else with its liquid at
+        the coldest: whichever is more of what its fluid allows.
+        """
+        fluid = self.substance
+        if fluid.triple_pressure > self.barometer.high_Pa:
+            density = TAMPED / fluid.solid.beside_vapour(fluid.triple_temperature).volume if fluid.solid else 0.0
+        else:
+            density = fluid.saturation(fluid.triple_temperature).liquid_density
+        return density * self.apparatus.volume.free.high
 
     @property
     def moles_of_air(self) -> float:
@@ -125,15 +142,17 @@ class Scene:
         return AIR_OVER_ICE * full
 
     @cached_property
-    def sublimes_at(self) -> float:
-        """Temperature of the solid in the open at the lowest barometer [K].
+    def coldest_in_the_open(self) -> float:
+        """Temperature of liquid or solid in the open at the lowest barometer, or of the coldest room [K].
 
-        The coldest wall that dry ice, or a let-down to the room, can give.
+        The coldest wall that loading, or a let-down to the room, can give.
         """
-        low = self.substance.min_temperature
-        top = self.substance.triple_temperature
-        # Any density between vapour and solid lies on the sublimation curve.
-        return bracketed_root(lambda t: self.substance.pressure(t, 500.0) - self.barometer.low_Pa, low, top, 1e-4)
+        return min(self.room_coldest, self.substance.boiling_temperature(self.barometer.low_Pa))
+
+    @cached_property
+    def gas_volume(self) -> float | None:
+        """Of what gets into the room, at 20 degC and 1 atm [m3/kg]; None where it condenses there."""
+        return self.substance.gas_volume(293.15, 101325.0)
 
     def pressures(self, temperature: float, density: float) -> tuple[float, float]:
         """Pressure with trapped air [Pa] and the equation's uncertainty [Pa], kept per scene.

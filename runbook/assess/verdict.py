@@ -6,6 +6,7 @@ from collections.abc import Sequence
 
 from runbook.answers import Certificate, Effect, Finding, LineKind, Margin, PlanLine
 from runbook.assess.mend import Mend
+from runbook.assess.scene import Scene
 from runbook.assess.walk import Walked
 from runbook.procedure.reader import Loaded
 from runbook.quantities import say
@@ -44,6 +45,16 @@ def line_findings(
         ]
         found += _gates(lines, index, at)
     return tuple(found)
+
+
+def fluid_findings(scene: Scene) -> tuple[Finding, ...]:
+    """What forbids the fluid itself, whatever the margins are."""
+    if not scene.substance.data.hazards.flammable:
+        return ()
+    at = scene.loaded.positions.get(("fluid",), (1, 1))
+    name = scene.substance.name
+    said = f"{name} burns: no procedure with it is proved, since ignition and ventilation have no rules here"
+    return (Finding("flammable", "error", *at, said),)
 
 
 def mend_findings(loaded: Loaded, found: Sequence[Mend]) -> tuple[Finding, ...]:

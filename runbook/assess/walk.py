@@ -145,7 +145,7 @@ def _one(
     seals = before.loaded and not before.closed and is_closed(scene, valves)
     if isinstance(verb, Load):
         low, high = verb.load.low, verb.load.high
-        during = replace(during, loaded=True, low_kg=low, high_kg=high, cold=scene.sublimes_at)
+        during = replace(during, loaded=True, low_kg=low, high_kg=high, cold=scene.coldest_in_the_open)
     if seals:
         during = replace(
             during, closed=True, low_kg=sealed[0], high_kg=sealed[1], hot=max(during.hot, scene.room_hottest)
@@ -154,7 +154,7 @@ def _one(
     opened = before.closed and not is_closed(scene, valves)
     lets_down = isinstance(verb, LetDownTo) or opened
     if lets_down:
-        during = replace(during, closed=False, letting_down=True, cold=scene.sublimes_at)
+        during = replace(during, closed=False, letting_down=True, cold=scene.coldest_in_the_open)
     after = _after(scene, during, step, verb)
     return Walked(
         number=number,

@@ -103,6 +103,8 @@ class FluidData:
     """Of the density where the vessel is filled by one dense phase, relative [1]; a bound."""
     thin_uncertainty: float
     """Of the density of vapour and gas below critical density, relative [1]."""
+    densest_temperature: float | None
+    """Below it liquid grows on cooling, so that a full vessel bursts [K]; None: it never does."""
     molar_refractivity: float | None
     """Lorentz-Lorenz, 589 nm [m3/mol]; None: not known."""
     haze: tuple[float, float] | None
@@ -164,6 +166,7 @@ def _fluid(plain: dict[str, Any], figures: dict[str, Figure]) -> FluidData:
         saturation_uncertainty=number("equation.saturation_uncertainty"),
         dense_uncertainty=number("equation.dense_uncertainty"),
         thin_uncertainty=number("equation.thin_uncertainty"),
+        densest_temperature=maybe("equation.densest_temperature"),
         molar_refractivity=maybe("optics.molar_refractivity"),
         haze=None if length is None or compressed is None else (length, compressed),
         solid=None if "solid" not in plain else SolidData(

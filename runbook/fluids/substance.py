@@ -53,6 +53,11 @@ class Substance:
         """[K]; below it nothing is computed."""
 
     @property
+    def data(self) -> FluidData:
+        """What its data file states: hazards, optics, uncertainties."""
+        return self._data
+
+    @property
     def solid(self) -> Solid | None:
         """What it freezes to; None: not modelled."""
         return None if self._cold is None else self._cold.solid
@@ -103,6 +108,28 @@ class Substance:
     def saturation(self, temperature: float) -> Saturation:
         """Liquid beside vapour at a temperature [K] from triple to critical. Raises OutsideValidity."""
         return self._equation.saturation(temperature)
+
+    def gas_volume(self, temperature: float, pressure: float) -> float | None:
+        """Volume of the gas [m3/kg] at a temperature [K] and pressure [Pa]; None where it condenses."""
+        density = self._equation.gas_density(temperature, pressure)
+        return None if density is None else 1.0 / density
+
+    def boiling_temperature(self, pressure: float) -> float:
+        """Temperature [K] at which liquid, or else solid, stands beside its vapour at a pressure [Pa].
+
+        Raises OutsideValidity at pressures above critical and below the curves.
+        """
+        if pressure >= self.triple_pressure:
+            if not pressure < self.critical_pressure:
+                raise OutsideValidity(f"nothing boils at {pressure / 1e5:.5g} bar: above the critical pressure")
+            span = self.triple_temperature, self.critical_temperature
+            return bracketed_root(lambda t: self._equation.dome(t)[0] - pressure, *span, 1e-6)
+        ice = self._ice(self.triple_temperature - 1.0)
+        if pressure < ice.sublimation_pressure(self.min_temperature):
+            raise OutsideValidity(f"nothing stands beside its vapour at {pressure:.5g} Pa")
+        return bracketed_root(
+            lambda t: ice.sublimation_pressure(t) - pressure, self.min_temperature, self.triple_temperature, 1e-6
+        )
 
     def saturation_slopes(self, temperature: float) -> SaturationSlopes:
         """Slopes along the saturation curve at a temperature [K] below critical. Raises OutsideValidity."""

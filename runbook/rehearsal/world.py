@@ -22,6 +22,8 @@ from runbook.run.ledger import Ledger
 
 _WIDE = 5e-3
 """Bore of an opening that states none [m]."""
+_IN_AIR = 420e-6
+"""Carbon dioxide in clean air, volume fraction [1]; NOAA 2023."""
 _LONGEST = 5.0
 """Longest step between two looks at the instruments [s]."""
 
@@ -110,8 +112,10 @@ class World:
         if reads == "liquid height":
             return self._height()
         if reads == "carbon dioxide":
-            room = self._scene.procedure.room.volume.value
-            return 420e-6 + self.vessel.released * 0.5437 / room
+            fluid, room = self._scene.substance, self._scene.procedure.room.volume.value
+            # Of another gas the meter sees nothing.
+            own = self.vessel.released * (self._scene.gas_volume or 0.0) / room if fluid.name == reads else 0.0
+            return _IN_AIR + own
         return None
 
     def _height(self) -> float | None:

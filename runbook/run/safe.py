@@ -104,7 +104,7 @@ def make_safe(plan: Plan, phase: Phase, rest_shut: bool = False) -> SafePhase:
         source=plan.source_tag,
         away=plan.source_away,
         rest_shut=rest_shut,
-        carbon_dioxide=plan.fluid == "carbon dioxide",
+        carbon_dioxide=any(one.reads == "carbon dioxide" for one in plan.instruments),
     )
     may_wait, acts, never = _TABLE[phase](at)
     also = tuple(f"{text} ({role})" if role else text for text, role in plan.make_safe_also)

@@ -142,8 +142,9 @@ def test_letting_down_is_stopped_only_where_the_shut_vessel_is_at_rest() -> None
 
 
 def test_gas_alarms_are_of_the_gas() -> None:
-    """Percentages of carbon dioxide are said only of carbon dioxide."""
-    other = replace(WHOLE, fluid="sulfur hexafluoride")
+    """Percentages of carbon dioxide are said only where a meter reads it."""
+    meter = next(i for i in WHOLE.instruments if i.reads == "carbon dioxide")
+    other = replace(WHOLE, instruments=tuple(i for i in WHOLE.instruments if i is not meter))
     for phase in (Phase.A, Phase.F):
         assert any("carbon dioxide" in act for act in make_safe(WHOLE, phase).acts)
         assert not any("carbon dioxide" in act for act in make_safe(other, phase).acts)

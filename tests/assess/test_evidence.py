@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import replace
-from math import erfc, exp, factorial, log, sqrt
+from math import e, erfc, exp, factorial, log, sqrt
 from pathlib import Path
 
 import pytest
@@ -13,7 +13,7 @@ from runbook.assess.agreement import agreement, computed_pressure
 from runbook.assess.boxes import charge_box
 from runbook.assess.evidence.deciding import TESTS, deciding_test
 from runbook.assess.evidence.faults import causes, moles_per_pascal
-from runbook.assess.evidence.forecast import BEFORE, NONE, Fault, forecast
+from runbook.assess.evidence.forecast import BEFORE, NONE, Fault, forecast, wall_temperature
 from runbook.assess.evidence.given import Given, given
 from runbook.assess.evidence.looks import Look, looks
 from runbook.assess.evidence.ranking import Segment, explanations, tail
@@ -141,6 +141,32 @@ def test_an_offset_of_one_atmosphere_is_one_with_the_slip(tmp_path: Path) -> Non
     found = by_cause(explanations(of, heated))
     assert "gauge offset" in found["gauge/absolute slip"].one_with
     assert found["gauge/absolute slip"].test == "dial"
+
+
+def test_an_offset_is_one_with_the_slip_within_the_uncertainty_and_no_further(tmp_path: Path) -> None:
+    """1.1 bar on a gauge with U 0.47 bar is taken for one atmosphere; 2.5 bar is not."""
+    of = known(tmp_path, FINE)
+    assert "gauge/absolute slip" in by_cause(explanations(of, at_rest(of, 1.1)))["gauge offset"].one_with
+    assert "gauge/absolute slip" not in by_cause(explanations(of, at_rest(of, 2.5)))["gauge offset"].one_with
+
+
+def test_a_wrong_unit_carries_the_gauges_error_along(tmp_path: Path) -> None:
+    """0.3 bar of the gauge's 0.4 are 4.4 in psi: still that unit, and not struck out."""
+    of = known(tmp_path, FINE)
+    gauge = of.substance.saturation(WALL).pressure - of.barometer + 0.3 * BAR
+    first = explanations(of, (Look(0.0, WALL, pressure=gauge * 14.503773773 + of.barometer),))[0]
+    assert first.cause == "wrong unit"
+    assert not first.struck_out
+
+
+def test_what_a_thermometer_was_behind_dies_away_with_its_time_constant(tmp_path: Path) -> None:
+    """2 min behind at 1 K/min is 2 K; 2 min after the wall stopped it is 2/e (a first-order instrument)."""
+    of = known(tmp_path, FINE)
+    of.lag = 120.0
+    moving = Look(0.0, WALL, rate=1 / 60.0, still_s=0.0)
+    stopped = Look(0.0, WALL, came_at=1 / 60.0, still_s=120.0)
+    assert wall_temperature(of, moving, NONE) - WALL == pytest.approx(2.0)
+    assert wall_temperature(of, stopped, NONE) - WALL == pytest.approx(2.0 / e)
 
 
 def test_a_wrong_unit_is_named_with_both_units(tmp_path: Path) -> None:

@@ -45,7 +45,8 @@ def main() -> None:
 
         ours, high, low = timed(fluid.pressure, places), timed(asked, places[:200]), timed(updated, places)
         whole = timed(fluid.state, places)
-        row = f"{ours * 1e6:>8.1f} us{ours / high:>11.3f}{ours / low:>8.2f}{whole * 1e6:>10.1f} us{whole / (6 * high):>13.3f}"
+        row = f"{ours * 1e6:>8.1f} us{ours / high:>11.3f}{ours / low:>8.2f}"
+        row += f"{whole * 1e6:>10.1f} us{whole / (6 * high):>13.3f}"
         print(f"{data.name:<22}{row}")
     co2 = substance("carbon dioxide")
     solid = timed(co2.state, [(170.0 + 0.01 * k, 480.0) for k in range(COUNT)])

@@ -18,6 +18,7 @@ from runbook.bench.screens.pages import KeysScreen, PicturesScreen
 from runbook.bench.screens.question import Question
 from runbook.bench.screens.read import ReadPanel
 from runbook.bench.screens.state import StatePanel
+from runbook.bench.screens.why import WhyScreen
 from runbook.bench.viewing import next_moment, picture_view, tags
 from runbook.run.acts import Attend
 
@@ -34,6 +35,7 @@ class RunPlace(Place[None]):
         Binding("f4", "sign", show=False),
         Binding("f5", "note", show=False),
         Binding("f6", "pictures", show=False),
+        Binding("f7", "why", show=False),
         Binding("f8", "state", show=False),
         Binding("escape", "app.quit", show=False),
         Binding("left_square_bracket", "pace('slower')", show=False),
@@ -92,6 +94,10 @@ class RunPlace(Place[None]):
     def action_pictures(self) -> None:
         """Cell and path at full size."""
         self.app.push_screen(PicturesScreen(lambda: picture_view(self.desk)))
+
+    def action_why(self) -> None:
+        """What the readings may mean."""
+        self.app.push_screen(WhyScreen(self.desk))
 
     def action_keys(self) -> None:
         """What every key does."""

@@ -29,7 +29,7 @@ from runbook.run.reasons import Code
 from runbook.run.sentences import (
     agreement_age,
     agreement_pair,
-    agreement_proves,
+    agreement_says,
     begin_words,
     ceiling_words,
     distance_words,
@@ -264,4 +264,4 @@ def _agree(desk: Conductor, standing: Standing) -> AgreeView:
     state = {"agrees": "yes", "disagrees": "blocked"}.get(agreement.verdict if agreement is not None else "", "not yet")
     pair = agreement_pair(desk.plan, agreement).partition(" ")[2]
     age = agreement_age(standing.agreement_age_s, standing.good_for_s)
-    return AgreeView(state, pair, agreement_proves(agreement), age)
+    return AgreeView(state, pair, agreement_says(desk.plan, agreement, standing.explanations), age)

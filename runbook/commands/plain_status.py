@@ -23,8 +23,18 @@ def status_lines(plan: Plan, ledger: Ledger, standing: Standing, rehearsal: str 
     lines.append(f"SEE      {sights or '-'}" + (f" If not: {standing.if_not}" if standing.if_not else ""))
     agree = say.agreement_pair(plan, standing.agreement)
     age = say.agreement_age(standing.agreement_age_s, standing.good_for_s)
-    lines.append(f"AGREE?   {agree}   {say.agreement_proves(standing.agreement)}   {age}".rstrip())
+    says = say.agreement_says(plan, standing.agreement, standing.explanations)
+    lines.append(f"AGREE?   {agree}   {says}   {age}".rstrip())
     return lines
+
+
+def why(plan: Plan, standing: Standing) -> list[str]:
+    """What the readings may mean, the most likely first, each with the test that decides."""
+    found = []
+    for words, test in say.why_lines(plan, standing):
+        found.append(f"  {words}")
+        found += [f"          test: {test}"] if test else []
+    return found
 
 
 def _do(standing: Standing) -> list[str]:
@@ -73,6 +83,7 @@ HELP = (
     "done         the quick step, the proof or the act of make safe is done",
     "up           take the step up again after the way back",
     "valve V2 open | shut | ?      heat on | off | unplugged | ?      as it stands now",
+    "why          what the readings may mean where they do not agree, and the tests that decide",
     "by N         readings are N's from here on",
     "note TEXT    write something down",
     "safe         MAKE SAFE; 'safe relief', 'safe window', 'safe fire' for what you see",

@@ -18,7 +18,7 @@ TOLD: Final = 3
 """Instruments a briefing says this of: more is not read."""
 _TESTS: Final = {
     "dial": "look at {gauge}'s dial again: its unit, gauge or absolute",
-    "re-zero": "tap {gauge} and check its zero",
+    "re-zero": "tap {gauge}, check its zero",
     "second thermometer": "put a second thermometer on the wall",
     "wait": "wait 10 min at rest, then read both again",
     "height": "read the height of the liquid",
@@ -50,13 +50,13 @@ def explanation_words(plan: Plan, agreement: Agreement | None, one: Explanation)
     return f"{said}; or {_or(other)}, which these readings do not tell apart" if other else said
 
 
-def test_words(agreement: Agreement | None, one: Explanation) -> str:
-    """'tap PG1 and check its zero'; nothing where no test is needed."""
+def deciding_words(agreement: Agreement | None, one: Explanation) -> str:
+    """'tap PG1, check its zero'; nothing where no test is needed."""
     return _TESTS[one.test].format(gauge=_gauge(agreement)) if one.test in _TESTS else ""
 
 
 def first_explanation(plan: Plan, agreement: Agreement | None, found: Sequence[Explanation]) -> tuple[str, str]:
-    """('most likely: PG1 shows 2.1 bar too much', 'tap PG1 and check its zero'); ('', '') where there is none."""
+    """('PG1 shows 2.1 bar too much', 'tap PG1, check its zero'); ('', '') where there is none."""
     standing = [one for one in found if not one.struck_out]
     if not found:
         return "", ""
@@ -65,17 +65,19 @@ def first_explanation(plan: Plan, agreement: Agreement | None, found: Sequence[E
     first = standing[0]
     if first.cause == "none" and len(standing) > 1:
         second = next((o for o in standing[1:] if o.cause not in first.one_with), standing[1])
-        return f"perhaps nothing; else {_with_number(plan, _gauge(agreement), second)}", test_words(agreement, second)
-    return f"most likely: {_with_number(plan, _gauge(agreement), first)}", test_words(agreement, first)
+        return f"perhaps nothing; else {_with_number(plan, _gauge(agreement), second)}", deciding_words(
+            agreement, second
+        )
+    return _with_number(plan, _gauge(agreement), first), deciding_words(agreement, first)
 
 
 def ranked_lines(plan: Plan, agreement: Agreement | None, found: Sequence[Explanation]) -> list[tuple[str, str]]:
     """(share and explanation, its test) of each, the most likely first; those struck out in one line at the end."""
-    lines = []
+    lines: list[tuple[str, str]] = []
     for one in found:
         if not one.struck_out:
             words = f"{_share(one.share):>6}  {explanation_words(plan, agreement, one)}"
-            lines.append((words, test_words(agreement, one)))
+            lines.append((words, deciding_words(agreement, one)))
     out = [_ALONE.get(one.cause, one.cause) for one in found if one.struck_out]
     if out:
         lines.append((f"struck out: {', '.join(out)}", ""))

@@ -6,9 +6,10 @@ Plain text only; what a person or a file wrote is passed on as it is and never r
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import Final
 
-from runbook.answers import Agreement, Future, LeftAlone, Plan
+from runbook.answers import Agreement, Explanation, Future, LeftAlone, Plan
 from runbook.run.amounts import (
     duration,
     kelvins,
@@ -19,6 +20,7 @@ from runbook.run.amounts import (
     temperature,
 )
 from runbook.run.ceiling_now import Ceiling
+from runbook.run.evidence_words import DECIDED_BY_TESTS, charge_words, first_explanation, ranked_lines
 from runbook.run.reason_words import cause_words, clears_words, margin_words, reason_words
 from runbook.run.reasons import Reason
 from runbook.run.standing import HoldState, ProofState, QuickState, Standing
@@ -31,6 +33,7 @@ __all__ = [
     "agreement_age",
     "agreement_pair",
     "agreement_proves",
+    "agreement_says",
     "begin_words",
     "cause_words",
     "ceiling_words",
@@ -50,6 +53,7 @@ __all__ = [
     "reasons_words",
     "unknown_words",
     "wanted_words",
+    "why_lines",
     "witness_words",
 ]
 
@@ -212,6 +216,29 @@ def agreement_proves(agreement: Agreement | None) -> str:
     if agreement.proves == "charge":
         return "says: thermometer, gauge and charge are sound"
     return "says: thermometer and gauge are sound; not: how much is in the cell"
+
+
+def agreement_says(plan: Plan, agreement: Agreement | None, found: Sequence[Explanation]) -> str:
+    """What the comparison says: what it proves; where something is explained, the first explanation and its test."""
+    first, test = first_explanation(plan, agreement, found)
+    if agreement is None or not first:
+        return agreement_proves(agreement)
+    # A question: it is a guess until the test has been made.
+    return f"{agreement.verdict}: {first}? {test}" if test else f"{agreement.verdict}: {first}"
+
+
+def why_lines(plan: Plan, standing: Standing) -> list[tuple[str, str]]:
+    """What the readings may mean, in full: (explanation, its test), then the charge as a best estimate."""
+    lines = ranked_lines(plan, standing.agreement, standing.explanations)
+    if lines:
+        lines.append((DECIDED_BY_TESTS, ""))
+    elif standing.hidden:
+        lines.append(("What is expected is kept back until the reading is in.", ""))
+    else:
+        lines += [("There is nothing to explain.", ""), (agreement_proves(standing.agreement), "")]
+    if standing.estimate is not None:
+        lines.append((f"best estimate of the charge: {charge_words(standing.estimate)}", ""))
+    return lines
 
 
 def agreement_age(age_s: float | None, good_for_s: float | None) -> str:

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from runbook.answers import Agreement, LeftAlone, LineKind, Margin, Plan, PlanLine, Sight
+from runbook.answers import Agreement, ChargeEstimate, Explanation, LeftAlone, LineKind, Margin, Plan, PlanLine, Sight
 from runbook.run.acts import GoOn
 from runbook.run.ceiling_now import Ceiling, ceiling
 from runbook.run.clock import Moment
@@ -113,6 +113,10 @@ class Standing:
     agreement_age_s: float | None
     good_for_s: float | None
     """How old the readings behind it may become [s]; None: as old as the step allows."""
+    explanations: tuple[Explanation, ...]
+    """What would make gauge and model differ, the most likely first; empty where they agree, and with agreement."""
+    estimate: ChargeEstimate | None
+    """The charge as a best estimate; None with agreement, or where there is none."""
     hidden: bool
     """What is expected is kept back until the reading that proves it is in."""
     sights: tuple[Sight, ...]
@@ -177,6 +181,8 @@ def standing(plan: Plan, ledger: Ledger, now: Moment) -> Standing:
         agreement=None if answer is None or hidden else answer.agreement,
         agreement_age_s=_agreement_age(ledger, now),
         good_for_s=answer.good_for_s if answer is not None else None,
+        explanations=() if answer is None or hidden else answer.explanations,
+        estimate=None if answer is None or hidden else answer.estimate,
         hidden=hidden,
         sights=sights,
         if_not=line.if_not if line is not None else "",

@@ -19,6 +19,7 @@ from runbook.answers import (
     Distance,
     Effect,
     Empty,
+    Explanation,
     Future,
     Hazard,
     Hold,
@@ -172,6 +173,17 @@ def answer(key: str, **changes: Any) -> Answer:
         ),
     )  # fmt: skip
     return replace(base, **changes)
+
+
+FAR = Agreement("disagrees", "PG1", BARO + 62.6e5, 1.2e5, BARO + 60.1e5, 0.4e5, "nothing")
+EXPLAINED = (
+    Explanation("gauge offset", 2.4e5, "Pa", 0.62, False, "re-zero", ("trapped air",)),
+    Explanation("trapped air", 2.3e5, "Pa", 0.34, False, "re-zero", ("gauge offset",)),
+    Explanation("thermometer place", 1.7, "K", 0.04, False, "second thermometer"),
+    Explanation("none", 0.0, "", 1e-5, True, ""),
+    Explanation("leak", 0.001, "kg", 1e-6, True, ""),
+)
+"""Of FAR: the gauge or air, which only the test tells."""
 
 
 def lost(why: str) -> Callable[[str], Unanswered]:

@@ -54,6 +54,15 @@ async def narrow(bench: Bench) -> None:
     await bench.settle()
 
 
+async def explained(bench: Bench) -> None:
+    """The gauge disagrees, and the first explanation stands with its test."""
+    await bench.press("enter", "2", "4", ".", "1", "enter", "enter", "6", "2", ".", "6", "enter", "enter")
+    bench.engine.say = lambda key: scenes.answer(key, agreement=scenes.FAR, explanations=scenes.EXPLAINED)
+    await bench.desk.act(SetSource("unplugged"))
+    await bench.settle()
+    await bench.passes(70.0)
+
+
 async def turned_back(bench: Bench) -> None:
     """A margin went while warming: the way back stands in the place of the step."""
     await bench.press("enter")
@@ -78,7 +87,9 @@ async def halted(bench: Bench) -> None:
     await bench.settle()
 
 
-STATES: dict[str, Do] = {f.__name__: f for f in (before, warming, read, blocked, narrow, turned_back, unknown, halted)}
+STATES: dict[str, Do] = {
+    f.__name__: f for f in (before, warming, read, blocked, narrow, explained, turned_back, unknown, halted)
+}
 LABELS = ("DO", "ON?", "ALONE", "CEILING", "SEE", "AGREE?")
 
 

@@ -28,6 +28,7 @@ ALL_KEYS: Keys = (
     ("F4", "sign the hold point, or say that the witness is here"),
     ("F5", "write a note"),
     ("F6", "cell and path, at full size"),
+    ("F7", "what the readings may mean where they do not agree, and the tests that decide"),
     ("F8", "state a valve or the heat source; confirm a proof; take a step up again"),
     ("PgDn", "more of a band that says 'more'"),
     ("space", "stop the bell"),

@@ -29,6 +29,15 @@ class Sight:
     """False: written by the author."""
     if_not: str = ""
     """What to do if it is not seen."""
+    of: str = ""
+    """What is seen: 'solid', 'solid gone', 'meniscus', 'contrast', 'haze', 'rain', 'boiling', 'beads', 'frost',
+    'snow' or 'no liquid'; empty where an author wrote it, and in journals older than this field."""
+    at_K: float | None = None
+    """Temperature at which it falls on the path of its line [K]; None: it is of the state as it stands."""
+    numbers: tuple[tuple[str, float, str], ...] = ()
+    """(name, value, unit) behind the words [SI]."""
+    trust: str = ""
+    """How far to trust it, in one sentence; empty where an author wrote it."""
 
 
 @dataclass(frozen=True, slots=True)

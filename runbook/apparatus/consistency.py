@@ -39,7 +39,7 @@ def inconsistencies(apparatus: Apparatus) -> tuple[Finding, ...]:
 def tagged(apparatus: Apparatus) -> list[tuple[tuple[str | int, ...], str]]:
     """Route and tag of everything that has one, the vessel itself left out."""
     found: list[tuple[tuple[str | int, ...], str]] = []
-    for name in ("valves", "openings", "components", "relief", "instruments"):
+    for name in ("valves", "openings", "components", "relief", "instruments", "beads"):
         found += [((name, i, "tag"), one.tag) for i, one in enumerate(getattr(apparatus, name))]
     if apparatus.heat_source is not None:
         found.append((("heat_source", "tag"), apparatus.heat_source.tag))

@@ -20,6 +20,7 @@ from runbook.quantities import fields as f
 __all__ = [
     "Apparatus",
     "Approved",
+    "Bead",
     "Body",
     "Component",
     "Cycles",
@@ -121,6 +122,17 @@ class Valve(FileModel):
     """Where it takes from the first of its spaces. Example: top"""
     let_go: Literal["stays", "opens", "shuts"]
     """What it does when a hand lets go of it. Example: stays"""
+
+
+class Bead(FileModel):
+    """A bead of known density in the vessel, which tells the density of what is around it."""
+
+    tag: Name
+    """What people call it. Example: K1"""
+    density: Annotated[f.DensityField, Positive]
+    """At room temperature, with the most it can be off. Example: 0.45 g/cm3 ± 0.01 g/cm3"""
+    colour: Text
+    """By which it is told from the others. Example: red"""
 
 
 class Opening(FileModel):
@@ -232,5 +244,8 @@ class Apparatus(FileModel):
     instruments: tuple[Instrument, ...] = ()
     """Everything that is read. Example: [{tag: PG1, reads: pressure, of: cell, dial: 0 bar(g) to 160 bar(g), class:
     0.6, division: 1 bar, read_from: shield, valid_until: 2032-01-31}]"""
+    beads: tuple[Bead, ...] = ()
+    """Beads in view that tell the density around them; their own volume is taken off the free volume. Example:
+    [{tag: K1, density: 0.45 g/cm3 ± 0.01 g/cm3, colour: red}]"""
     logbook: Text | None = None
     """A shared folder of runs, relative to this file. Example: ../logbook"""

@@ -14,7 +14,6 @@ from runbook.answers import (
     Margin,
     Observation,
     Question,
-    Sight,
 )
 from runbook.apparatus.spaces import isolated
 from runbook.assess.agreement import Computed, agreement, computed_pressure, reading_U
@@ -34,8 +33,7 @@ from runbook.assess.limits import (
 )
 from runbook.assess.phases import phases
 from runbook.assess.scene import Scene
-from runbook.assess.sights import computed as computed_sights
-from runbook.assess.sights import liquid_height
+from runbook.assess.sights import liquid_height, live_sights
 from runbook.assess.walk import VesselState, Walked, hottest_of, start_state
 from runbook.procedure.model import WarmTo
 
@@ -78,6 +76,7 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     found = _assemble(
         scene,
         question,
+        lines[question.line] if question.line >= 0 else None,
         state,
         box,
         reach,
@@ -101,6 +100,7 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
 def _assemble(
     scene: Scene,
     question: Question,
+    line: Walked | None,
     state: VesselState,
     box: ChargeBox | None,
     reach: Extremes,
@@ -115,10 +115,10 @@ def _assemble(
 ) -> Answer:
     middle = None if box is None or not state.closed else 0.5 * (box.low_kg + box.high_kg)
     read = readings.temperature.value if readings.temperature else None
-    sights: tuple[Sight, ...] = ()
-    height = None
-    if middle is not None and read is not None:
-        sights = computed_sights(scene, middle, read, True if state.source == "on" else None)
+    sights = () if read is None else live_sights(scene, line, state, box, read)
+    # Where a sight has the height already it is not worked out twice.
+    height = next((value for one in sights for name, value, _ in one.numbers if name == "height"), None)
+    if height is None and middle is not None and read is not None:
         height = liquid_height(scene, middle, read)
     in_phases = phases(
         scene,

@@ -11,6 +11,7 @@ from runbook.answers import BindRequest, Finding, Plan
 from runbook.bench.rows import EMPTY, Row, wrapped
 from runbook.quantities import say, say_level
 from runbook.run.evidence_words import TOLD, telling_lines
+from runbook.run.sight_words import along
 
 _INDENT: Final = 22
 
@@ -25,6 +26,7 @@ def briefing_rows(plan: Plan, request: BindRequest, width: int) -> list[Row]:
         EMPTY,
         *_numbers(plan, width),
         EMPTY,
+        *_seen(plan, width),
         *_dated(plan, width),
         *_telling(plan, width),
         *_bring(plan, width),
@@ -93,6 +95,15 @@ def _numbers(plan: Plan, width: int) -> list[Row]:
 
 def _pressure(value: float | None, plan: Plan) -> str:
     return "not known" if value is None else say_level(value, plan.pressure_unit, plan.barometer, 1)
+
+
+def _seen(plan: Plan, width: int) -> list[Row]:
+    """What the class will see, and at what temperature, in the order of the path."""
+    rows: list[Row] = []
+    for number, sights in along(plan):
+        for place, words in enumerate(sights):
+            rows += _pair(f"seen in {number}" if place == 0 else "", words, width)
+    return [*rows, EMPTY] if rows else []
 
 
 def _dated(plan: Plan, width: int) -> list[Row]:

@@ -35,7 +35,7 @@ def picture_of(desk: Conductor, standing: Standing) -> PictureView:
 def _filling(plan: Plan, answer: Answer | None) -> Filling:
     if answer is None or answer.region is None:
         return Filling(None, "vapour") if answer is not None and answer.charge is None else _UNKNOWN
-    haze = any("haze" in sight.words.lower() for sight in answer.sights)
+    haze = any(sight.of == "haze" or "haze" in sight.words.lower() for sight in answer.sights)
     solid = _SOLID if "solid" in answer.region else 0.0
     inside = _inside(plan)
     if answer.liquid_height is not None and inside is not None:

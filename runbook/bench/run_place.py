@@ -17,6 +17,7 @@ from runbook.bench.screens.note import NotePanel
 from runbook.bench.screens.pages import KeysScreen, PicturesScreen
 from runbook.bench.screens.question import Question
 from runbook.bench.screens.read import ReadPanel
+from runbook.bench.screens.sights import SightsScreen
 from runbook.bench.screens.state import StatePanel
 from runbook.bench.screens.why import WhyScreen
 from runbook.bench.viewing import next_moment, picture_view, tags
@@ -36,6 +37,7 @@ class RunPlace(Place[None]):
         Binding("f5", "note", show=False),
         Binding("f6", "pictures", show=False),
         Binding("f7", "why", show=False),
+        Binding("s", "sights", show=False),
         Binding("f8", "state", show=False),
         Binding("escape", "app.quit", show=False),
         Binding("left_square_bracket", "pace('slower')", show=False),
@@ -98,6 +100,10 @@ class RunPlace(Place[None]):
     def action_why(self) -> None:
         """What the readings may mean."""
         self.app.push_screen(WhyScreen(self.desk))
+
+    def action_sights(self) -> None:
+        """The figures behind what should be seen."""
+        self.app.push_screen(SightsScreen(self.desk))
 
     def action_keys(self) -> None:
         """What every key does."""

@@ -79,7 +79,7 @@ class SeeView:
 
     words: tuple[str, ...]
     source: str
-    """'computed' or 'written'."""
+    """'computed', 'written' or both."""
     if_not: str
 
 

@@ -45,9 +45,9 @@ from runbook.run.sentences import (
     wanted_words,
     witness_words,
 )
+from runbook.run.sight_words import KEPT_BACK, see_if_not, see_source, see_words
 from runbook.run.standing import Standing
 
-KEPT_BACK: Final = "Kept back until the signer's own reading is in."
 _STATES: Final = {"yes": "yes", "finished": "yes", "not yet": "not yet"}
 """Permission -> how it is painted; everything else is painted as blocked."""
 _TAG: Final = "\0"
@@ -248,13 +248,7 @@ def _ceiling(desk: Conductor, standing: Standing) -> CeilingView:
 
 
 def _see(standing: Standing) -> SeeView:
-    if standing.hidden:
-        return SeeView((KEPT_BACK,), "", "")
-    if not standing.sights:
-        return SeeView(("Nothing is expected to be seen.",), "", standing.if_not)
-    source = "computed" if all(sight.computed for sight in standing.sights) else "written"
-    if_not = standing.if_not or next((s.if_not for s in standing.sights if s.if_not), "")
-    return SeeView((" ".join(sight.words for sight in standing.sights),), source, if_not)
+    return SeeView((see_words(standing),), see_source(standing), see_if_not(standing))
 
 
 def _agree(desk: Conductor, standing: Standing) -> AgreeView:

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from typing import Protocol
 
 from runbook.bench.viewing import next_moment
-from runbook.commands.plain_status import HELP, HELP_REHEARSAL, status_lines, why
+from runbook.commands.plain_status import HELP, HELP_REHEARSAL, sight_lines, status_lines, why
 from runbook.commands.plain_words import wish
 from runbook.errors import ExitCode, InputUnusable
 from runbook.run.acts import GapAnswers, LeaveTool, Read
@@ -112,6 +112,8 @@ class Session:
                 print("\n".join((*HELP, *(HELP_REHEARSAL if self.pace is not None else ()))))
             elif words == ["why"]:
                 print("\n".join(why(self.desk.plan, self.desk.standing())))
+            elif words == ["sights"]:
+                print("\n".join(sight_lines(self.desk.plan, self.desk.standing())))
             elif words and words[0] == "by" and len(words) > 1:
                 self._set_by(" ".join(words[1:]))
             elif self.pace is not None and words and words[0] in ("read", "speed", "wait", "jump"):

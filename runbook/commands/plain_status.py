@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from runbook.answers import LineKind, Plan
 from runbook.run import sentences as say
+from runbook.run.sight_words import NOTHING, details, see_if_not, see_source, see_words
 from runbook.run.standing import Standing
 from runbook.run.state import Ledger
 
@@ -19,8 +20,9 @@ def status_lines(plan: Plan, ledger: Ledger, standing: Standing, rehearsal: str 
     lines.append(f"ALONE    {alone}    {say.left_alone_verdict(standing.left_alone, first)}")
     lines.append("CEILING  " + "   ".join(w for w in say.ceiling_words(plan, standing.ceiling) if w))
     lines.append("         " + "   ".join(w for w in say.distance_words(plan, standing.ceiling) if w))
-    sights = " ".join(s.words + ("" if s.computed else " (written)") for s in standing.sights)
-    lines.append(f"SEE      {sights or '-'}" + (f" If not: {standing.if_not}" if standing.if_not else ""))
+    source, if_not = see_source(standing), see_if_not(standing)
+    seen = f"SEE      {see_words(standing)}" + (f" ({source})" if source else "")
+    lines.append(seen + (f" If not: {if_not}" if if_not else ""))
     agree = say.agreement_pair(plan, standing.agreement)
     age = say.agreement_age(standing.agreement_age_s, standing.good_for_s)
     says = say.agreement_says(plan, standing.agreement, standing.explanations)
@@ -35,6 +37,16 @@ def why(plan: Plan, standing: Standing) -> list[str]:
         found.append(f"  {words}")
         found += [f"          test: {test}"] if test else []
     return found
+
+
+def sight_lines(plan: Plan, standing: Standing) -> list[str]:
+    """Every sight with its figures and how far to trust it, when asked."""
+    lines = []
+    for words, numbers, trust in details(plan, standing):
+        lines.append(f"  {words}")
+        lines += [f"      {'; '.join(numbers)}"] if numbers else []
+        lines += [f"      {trust}"] if trust else []
+    return lines or [f"  {NOTHING}"]
 
 
 def _do(standing: Standing) -> list[str]:
@@ -85,6 +97,7 @@ HELP = (
     "valve V2 open | shut | ?      heat on | off | unplugged | ?      as it stands now",
     "why          what the readings may mean where they do not agree, and the tests that decide",
     "by N         readings are N's from here on",
+    "sights       the figures behind what should be seen, and how far to trust each",
     "note TEXT    write something down",
     "safe         MAKE SAFE; 'safe relief', 'safe window', 'safe fire' for what you see",
     "leave        leave the tool; the run stays unfinished",

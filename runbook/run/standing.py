@@ -17,6 +17,7 @@ from runbook.run.gate import PROOFS, gate, is_blocked, unfinished
 from runbook.run.proofs import not_proved
 from runbook.run.reasons import NOT_YET, Code, Reason, Refused
 from runbook.run.safe import SafePhase, make_safe, phase_of, rest_shut
+from runbook.run.sight_words import sights_of
 from runbook.run.signing import may_not_sign
 from runbook.run.state import Ledger
 from runbook.run.wanted import Wanted, wanted
@@ -155,7 +156,6 @@ def standing(plan: Plan, ledger: Ledger, now: Moment) -> Standing:
     hold = _hold(plan, ledger)
     hidden = _hidden(ledger, hold)
     alone = answer.left_alone if answer is not None else line.left_alone if line is not None else _NOTHING
-    sights = answer.sights if answer is not None and answer.sights else line.sights if line is not None else ()
     vent = None if plan.release_forbidden else plan.let_down_valve
     return Standing(
         index=ledger.line,
@@ -184,7 +184,7 @@ def standing(plan: Plan, ledger: Ledger, now: Moment) -> Standing:
         explanations=() if answer is None or hidden else answer.explanations,
         estimate=None if answer is None or hidden else answer.estimate,
         hidden=hidden,
-        sights=sights,
+        sights=sights_of(answer, line),
         if_not=line.if_not if line is not None else "",
         quick=_quick(ledger, now),
         hold=hold,
@@ -305,8 +305,7 @@ def _proofs(ledger: Ledger, now: Moment) -> tuple[ProofState, ...]:
         return ()
     made = len(ledger.entry.proofs)
     return tuple(
-        ProofState(name, n < made, not_proved(ledger, now, name) if n == made else ())
-        for n, name in enumerate(PROOFS)
+        ProofState(name, n < made, not_proved(ledger, now, name) if n == made else ()) for n, name in enumerate(PROOFS)
     )
 
 

@@ -104,7 +104,11 @@ WARM = line(
     effects=tuple((h, Effect.RAISES if h is Hazard.OVER_PRESSURE else Effect.KEEPS) for h in Hazard),
     reads=(TT1, PG1),
     source="on",
-    sights=(Sight("The surface fades in the middle of the window and is gone.", False, "Switch the jacket off."),),
+    sights=(
+        Sight("The surface fades in the middle of the window and is gone.", False, "Switch the jacket off."),
+        Sight("From about 30.2 °C a haze, seen with a lamp from the side.", True, of="haze", at_K=303.32, trust="Good."),
+        Sight("At 31.0 °C the surface fades and is gone where it stands.", True, of="meniscus", at_K=304.13),
+    ),
     if_not="Switch the jacket off and let it come back.",
 )
 LINES = (
@@ -168,8 +172,9 @@ def answer(key: str, **changes: Any) -> Answer:
         phases=(Phase.C,), pressure=BARO + 62.0e5, pressure_U=0.4e5, region="liquid+vapour", liquid_height=0.030,
         distance=Distance(31.0e5, 19.0, 1440.0, 0.8 / 60.0),
         sights=(
-            Sight("The surface stands at 30 mm on the scale and rises.", True),
-            Sight("A haze; the surface grows faint.", True),
+            Sight("The surface stands at 30 mm on the scale and rises.", True, of="meniscus",
+                  numbers=(("height", 0.030, "m"),), trust="As good as the charge is known."),
+            Sight("A thin bluish haze, seen with a lamp from the side.", True, of="haze"),
         ),
     )  # fmt: skip
     return replace(base, **changes)

@@ -30,6 +30,7 @@ ALL_KEYS: Keys = (
     ("F6", "cell and path, at full size"),
     ("F7", "what the readings may mean where they do not agree, and the tests that decide"),
     ("F8", "state a valve or the heat source; confirm a proof; take a step up again"),
+    ("S", "what should be seen: the figures behind it, and how far to trust it"),
     ("PgDn", "more of a band that says 'more'"),
     ("space", "stop the bell"),
     ("Esc", "leave the tool, after a question; in a panel: back, and what you typed is kept"),

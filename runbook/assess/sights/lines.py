@@ -1,0 +1,45 @@
+"""Sights of a line of the procedure: of the path it takes, and of the vessel as it stands in it."""
+
+from __future__ import annotations
+
+from runbook.answers import ChargeBox, Sight
+from runbook.assess.scene import Scene
+from runbook.assess.sights.frozen import letting_down
+from runbook.assess.sights.looking import Look, computed, written
+from runbook.assess.sights.path import path_sights
+from runbook.assess.walk import VesselState, Walked
+from runbook.procedure.model import CoolTo, WarmTo
+
+
+def line_sights(scene: Scene, line: Walked) -> tuple[tuple[Sight, ...], str]:
+    """The author's words first, then what is computed along the line's path in order; and what if not."""
+    said, if_not = written(line.step)
+    verb, state = line.verb, line.during
+    if line.lets_down and line.before.closed:
+        return (*said, *letting_down(scene, 0.5 * (scene.room_coldest + scene.room_hottest))), if_not
+    look = Look(state.low_kg, state.high_kg, state.cold)
+    if not isinstance(verb, WarmTo | CoolTo) or not state.closed or not look.known:
+        return said, if_not
+    begin = line.before.cold if isinstance(verb, WarmTo) else line.before.hot
+    along = path_sights(scene, begin, _aim(scene, verb), look.mass)
+    return (*said, *(sight for _, sight in along)), if_not
+
+
+def live_sights(
+    scene: Scene, line: Walked | None, state: VesselState, box: ChargeBox | None, temperature: float
+) -> tuple[Sight, ...]:
+    """What is seen of the vessel as it stands, wall at a temperature [K]; line: the one the run stands in."""
+    lets_down = state.letting_down and not state.closed
+    if box is None or not (state.closed or lets_down):
+        return ()
+    verb = line.verb if line is not None else None
+    heated = state.source == "on"
+    warming = True if isinstance(verb, WarmTo) or heated else False if isinstance(verb, CoolTo) else None
+    toward = _aim(scene, verb) if isinstance(verb, WarmTo) else None
+    return computed(scene, Look(box.low_kg, box.high_kg, temperature, warming, heated, lets_down, toward))
+
+
+def _aim(scene: Scene, verb: WarmTo | CoolTo) -> float:
+    """Middle of where a path leads [K]; of the room where it says so."""
+    aim = verb.warm_to if isinstance(verb, WarmTo) else verb.cool_to
+    return 0.5 * (scene.room_coldest + scene.room_hottest) if isinstance(aim, str) else aim.value

@@ -16,6 +16,7 @@ COMMANDS = {
     "rehearse": "the same run on a simulated vessel",
     "check": "prove procedures within their vessels' limits",
     "state": "the state of a charge at a temperature",
+    "charge": "how much to load into a vessel, and how to prove it",
     "new": "write a commented start of a file",
     "schema": "what an editor needs to help while a file is written",
     "print": "write a procedure on paper, with the cards for the bench",

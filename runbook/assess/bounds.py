@@ -50,7 +50,9 @@ def _most(scene: Scene, half: float) -> tuple[float | None, str]:
     top = scene.brim_full
     refused = first_blocked(scene, 1e-4)
     if refused is not None:
-        return None, f"{refused.limit} refuses every charge" + (f": {refused.why}" if refused.why else "")
+        return None, f"{refused.limit}, {refused.kind}, refuses every charge" + (
+            f": {refused.why}" if refused.why else ""
+        )
     if first_blocked(scene, top) is None:
         return top - half, "brim-full of dry ice"
     low, high = 1e-4, top

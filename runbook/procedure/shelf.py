@@ -61,6 +61,23 @@ def find_procedure(name: str) -> Path:
     raise InputUnusable(f"there is no file '{name}'" + (f"; shipped are: {known}" if known else ""))
 
 
+def find_apparatus(name: str) -> Path:
+    """The apparatus file of that path, or the shipped one of that name, with or without its ending.
+
+    Raises InputUnusable, naming what there is.
+    """
+    given = Path(name)
+    if given.exists():
+        return given
+    shipped = shipped_folder()
+    files = () if shipped is None else sorted((shipped / "apparatus").glob("*.yaml"))
+    for path in files:
+        if name in (path.name, path.stem):
+            return path
+    known = ", ".join(path.stem for path in files)
+    raise InputUnusable(f"there is no file '{name}'" + (f"; shipped vessels are: {known}" if known else ""))
+
+
 def _is_procedure(path: Path) -> bool:
     """Whether a file says that it is a procedure, near its top. Unreadable ones are not listed."""
     try:

@@ -16,6 +16,7 @@ from runbook.run import events as ev
 from runbook.run.clock import Moment
 from runbook.run.events import Event
 from runbook.run.gate import PROOFS
+from runbook.run.past import NOTHING, with_past
 from runbook.run.questions import (
     after_gap,
     canonical,
@@ -42,6 +43,8 @@ def fold(ledger: Ledger, event: Event, at: Moment) -> Ledger:
         return ledger
     key = ledger.key
     if type(event) not in _ANSWERS:
+        if was_open and ledger.past.readings and closed(ledger) != "open":
+            ledger = replace(ledger, past=NOTHING)
         if was_open and ledger.seen.since and closed(ledger) != "open":
             # Closed anew: what was measured after an earlier closing was of another charge.
             seen = replace(ledger.seen, since=(), wants_beside=False)
@@ -119,8 +122,10 @@ def _enter(ledger: Ledger, at: Moment) -> Ledger:
 def _reading(ledger: Ledger, event: ev.ReadingTaken, at: Moment) -> Ledger:
     taken = Taken(event, at, ledger.seq)
     seen = with_reading(ledger, event, at, ledger.seq)
+    past = ledger.past if closed(ledger) == "open" else with_past(ledger.past, event, at)
     return replace(
         ledger,
+        past=past,
         latest=ledger.latest | {event.tag: taken},
         here=ledger.here.appended(taken),
         seen=seen,

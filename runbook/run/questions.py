@@ -41,6 +41,7 @@ def question(plan: Plan, ledger: Ledger) -> Question | None:
         source=ledger.source,
         charge=plan.charge,
         observations=observations(ledger.seen),
+        history=ledger.past.readings,
     )
 
 
@@ -104,9 +105,10 @@ def plan_digest(plan: Plan) -> str:
 
 
 def key_of(ledger: Ledger) -> str:
-    """SHA-256 of the canonical JSON of {every field of the question but its key, and 'plan': the plan's digest}.
+    """SHA-256 of the canonical JSON of the question without its key and history, and 'plan': the plan's digest.
 
-    Put together from parts that were encoded when they changed.
+    Put together from parts that were encoded when they changed. The history adds no fact: which readings have been
+    taken is in the numbers of the observations.
     """
     text = (
         f'{{"charge":{ledger.charge_json},"closed":"{closed(ledger)}","line":{ledger.line},'

@@ -11,6 +11,7 @@ from dataclasses import dataclass, field
 from runbook.answers import Answer, Observation, Plan, PlanLine, Unanswered
 from runbook.run.clock import Moment
 from runbook.run.events import MadeSafe, Person, ReadingTaken
+from runbook.run.past import NOTHING, History
 
 START = Moment(0.0, 0.0)
 """Stands for a time before the first event."""
@@ -157,6 +158,8 @@ class Ledger:
     seen: Seen = field(default_factory=Seen)
     observations_json: str = ""
     """Those that count, as they stand in the digest."""
+    past: History = NOTHING
+    """The last readings since closing with their times; they explain, and count for nothing."""
     signed_lines: frozenset[int] = frozenset()
     """Hold lines signed in this run."""
     empty_proved: bool = False

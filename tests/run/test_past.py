@@ -2,9 +2,15 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
+from runbook.run.acts import SetValve
 from runbook.run.clock import Moment
 from runbook.run.events import ReadingTaken
+from runbook.run.ledger import fold_all
 from runbook.run.past import KEPT, NOTHING, History, with_past
+from runbook.run.questions import key_of, question
+from tests.run.plans import ROOM, begun, line, plan
 
 
 def reading(what: str, value: float, tag: str = "TT1") -> ReadingTaken:
@@ -51,3 +57,41 @@ def test_broken_clocks_begin_it_anew() -> None:
     restarted = with_past(history, reading("temperature", 295.0), Moment(3.0, 1e9 + 900.0))
     assert [p.value for p in restarted.readings] == [295.0]
     assert restarted.readings[0].at_s == 0.0
+
+
+def test_a_question_carries_what_was_read_since_closing_and_its_key_does_not_change_for_it() -> None:
+    """Readings of the open vessel are of another charge; the key is that of the facts alone."""
+    run = begun(plan(line(1), outside_valves=("V1",)))
+    run.read("TT1", 294.0)
+    asked = question(run.plan, run.ledger)
+    assert asked is not None
+    assert asked.history == ()
+    run.must(SetValve("V1", "shut"))
+    run.clock.advance(60.0)
+    run.read("TT1", 295.0)
+    run.clock.advance(60.0)
+    run.read("PG1", ROOM + 62.6e5)
+    asked = question(run.plan, run.ledger)
+    assert asked is not None
+    assert [(p.what, p.at_s) for p in asked.history] == [("temperature", 0.0), ("pressure", 60.0)]
+    assert key_of(replace(run.ledger, past=NOTHING)) == run.ledger.key
+
+
+def test_closed_anew_the_history_begins_anew() -> None:
+    """What was read after an earlier closing was of another charge."""
+    run = begun(plan(line(1), outside_valves=("V1",), valves=(("V1", "shut"),)))
+    run.read("TT1", 294.0)
+    assert len(run.ledger.past.readings) == 1
+    run.must(SetValve("V1", "open"))
+    run.must(SetValve("V1", "shut"))
+    assert run.ledger.past == NOTHING
+
+
+def test_the_same_events_give_the_same_history() -> None:
+    """It is folded like everything else, one by one or all at once."""
+    run = begun(plan(line(1), outside_valves=("V1",), valves=(("V1", "shut"),)))
+    for n in range(40):
+        run.clock.advance(30.0)
+        run.read("TT1", 294.0 + 0.1 * n)
+    assert fold_all(run.pairs).past == run.ledger.past
+    assert len(run.ledger.past.readings) == KEPT["temperature"]

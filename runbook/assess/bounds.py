@@ -22,7 +22,12 @@ def charge_bounds(scene: Scene) -> ChargeBounds:
     most, most_reason = _most(scene, half)
     best = scene.substance.critical_density * scene.apparatus.volume.free.value
     reason = f"critical density in {scene.apparatus.volume.free.value * 1e6:.0f} mL: the surface fades in place"
-    if most is not None and best > most:
+    if most is None or (least is not None and most < least):
+        # What shows nothing is no advice, however well the vessel bears it.
+        return ChargeBounds(
+            least, None, most, least_reason, "no charge both shows the sight and stays within the limits", most_reason
+        )
+    if best > most:
         best, reason = most, "critical density would be more than the most"
     return ChargeBounds(least, best, most, least_reason, reason, most_reason)
 

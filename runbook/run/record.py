@@ -16,6 +16,7 @@ from runbook.quantities import pressure_to_unit
 from runbook.run import events as ev
 from runbook.run.clock import Moment
 from runbook.run.journal import Record
+from runbook.run.sentences import agreement_pair, agreement_says
 
 WIDTH: Final = 100
 """Characters of a line."""
@@ -28,6 +29,7 @@ def record_lines(records: Iterable[Record]) -> tuple[str, ...]:
     opened: Moment | None = None
     least: Margin | None = None
     last: Record | None = None
+    said = ""
     for record in records:
         last = record
         try:
@@ -42,6 +44,9 @@ def record_lines(records: Iterable[Record]) -> tuple[str, ...]:
             continue
         if isinstance(event, ev.Answered):
             least = _lesser(least, event.answer)
+            said, before = _disagreement(plan, event.answer), said
+            if said and said != before:
+                lines.append(f"{_elapsed(opened, record.moment)}  {said}")
             continue
         words = _words(event, plan)
         if words:
@@ -134,6 +139,14 @@ def _exceptional(event: ev.Event, plan: Plan | None) -> str:
             return f"closed: {outcome}"
         case _:
             return ""
+
+
+def _disagreement(plan: Plan | None, answer: Answer) -> str:
+    """That gauge and model part, by how much, and what it may be; empty where they do not."""
+    if plan is None or answer.agreement.verdict != "disagrees":
+        return ""
+    pair = agreement_pair(plan, answer.agreement).partition(" ")[2]
+    return f"{pair}: {agreement_says(plan, answer.agreement, answer.explanations)}"
 
 
 def _line(plan: Plan | None, index: int) -> str:

@@ -2,16 +2,19 @@
 
 from __future__ import annotations
 
+import json
 from dataclasses import replace
 from pathlib import Path
 
 import pytest
 
 from runbook.answers import Answer, Past
+from runbook.assess.child import Bound, reply
 from runbook.assess.evidence import live
 from runbook.assess.now import answer
 from runbook.assess.scene import Scene
 from runbook.assess.walk import walk
+from runbook.codec import from_plain, to_plain
 from tests.assess.scenes import observed, question, scene
 
 BAR = 1e5
@@ -94,3 +97,25 @@ def test_the_answer_carries_the_charge_as_a_best_estimate(tmp_path: Path) -> Non
     assert {p.how for p in found.parts} == {"weighing at closing", "height"}
     assert found.blind == ("pressure",)
     assert found.kg == pytest.approx(0.1172, abs=0.0006)
+
+
+def test_explanations_come_through_the_pipe(tmp_path: Path) -> None:
+    """The child gets the history with the question and gives explanations and estimate back, as plain data."""
+    there = scene(tmp_path, apparatus=FINE)
+    lines = walk(there)
+    index = next(i for i, w in enumerate(lines) if w.warms)
+    asked = question(index - 1, index, (*LOADED, observed("pressure", RIGHT + 2.5 * BAR, 12)))
+    asked = replace(asked, history=history(RIGHT + 2.5 * BAR))
+    sent = json.loads(json.dumps({"ask": "now", "key": asked.key, "question": to_plain(asked)}))
+    back = json.loads(json.dumps(reply(Bound(there, lines), sent), allow_nan=False))
+    found = from_plain(Answer, back["answer"])
+    assert found.explanations == answer(there, lines, asked).explanations
+    assert found.estimate is not None
+
+
+def test_an_answer_of_an_older_run_has_none(tmp_path: Path) -> None:
+    """Journals written before there were explanations are read as they stand."""
+    plain = to_plain(ask(scene(tmp_path), RIGHT))
+    del plain["explanations"], plain["estimate"]
+    found = from_plain(Answer, plain)
+    assert (found.explanations, found.estimate) == ((), None)

@@ -210,6 +210,17 @@ class Equation:
         except (ValueError, RuntimeError) as error:
             raise OutsideValidity(f"no vapour at {temperature:.6g} K, {pressure:.6g} Pa: {error}") from error
 
+    def fluid_phase(self, temperature: float, pressure: float) -> Phase:
+        """One fluid phase at a temperature [K] and pressure [Pa], off the saturation curve. Raises OutsideValidity."""
+        if not (0.0 < pressure <= self.max_pressure and 0.0 < temperature <= self.max_temperature):
+            raise OutsideValidity(f"no state at {temperature:.6g} K and {pressure:.6g} Pa")
+        instance = self._cold if pressure < self.triple_pressure else self._fluid
+        try:
+            instance.update(cp.PT_INPUTS, pressure, temperature)
+            return _phase(instance)
+        except (ValueError, RuntimeError) as error:
+            raise OutsideValidity(f"no state at {temperature:.6g} K, {pressure:.6g} Pa: {error}") from error
+
     def gas_density(self, temperature: float, pressure: float) -> float | None:
         """Density [kg/m3] of the gas at a temperature [K] and pressure [Pa]; None where it would condense."""
         if temperature < self.critical_temperature and pressure >= self.dome(temperature)[0]:

@@ -58,6 +58,11 @@ class Substance:
         return self._data
 
     @property
+    def equation(self) -> Equation:
+        """The equation of state, for questions by pressure."""
+        return self._equation
+
+    @property
     def solid(self) -> Solid | None:
         """What it freezes to; None: not modelled."""
         return None if self._cold is None else self._cold.solid

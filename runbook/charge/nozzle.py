@@ -1,0 +1,66 @@
+"""How fast a fluid leaves through a hole: homogeneous equilibrium, choked where the pressure behind is low.
+
+The flux is the largest that the fluid reaches anywhere between the pressure before the hole and that behind it, at
+constant entropy. For liquid through a short hole it is a lower bound: bubbles come late there.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from math import sqrt
+
+from runbook.errors import OutsideValidity
+from runbook.fluids.flash import Flash, Flowing
+
+_GOLDEN = 0.6180339887498949
+_CLOSE = 1e-4
+"""Relative width of the bracket around the throat's pressure [1]: the flux is flat there."""
+_SCAN = 12
+"""Pressures tried first: the flux may have a kink where boiling or freezing begins."""
+
+
+@dataclass(frozen=True, slots=True)
+class Throat:
+    """What passes the narrowest place."""
+
+    flux: float
+    """[kg/m2/s]"""
+    pressure: float
+    """[Pa]; that behind the hole where the flow is not choked."""
+    at: Flowing
+    """The fluid there."""
+
+
+def throat(flash: Flash, enthalpy: float, entropy: float, pressure: float, behind: float) -> Throat:
+    """From rest at an enthalpy [J/kg], entropy [J/kg/K] and pressure [Pa] to a pressure behind the hole [Pa].
+
+    Raises OutsideValidity.
+    """
+    if not behind < pressure:
+        at = flash.by_enthalpy(pressure, enthalpy)
+        return Throat(0.0, pressure, at)
+
+    def passing(p: float) -> Throat:
+        try:
+            at = flash.by_entropy(p, entropy)
+        except OutsideValidity:
+            # Near the upstream pressure rounding may ask for a state just off the curve.
+            return Throat(0.0, p, flash.by_enthalpy(pressure, enthalpy))
+        return Throat(at.density * sqrt(max(0.0, 2.0 * (enthalpy - at.enthalpy))), p, at)
+
+    places = [behind + (pressure - behind) * k / _SCAN for k in range(_SCAN)]
+    tried = [passing(p) for p in places]
+    best = max(range(_SCAN), key=lambda k: tried[k].flux)
+    low, high = places[max(0, best - 1)], places[best + 1] if best + 1 < _SCAN else pressure
+    a, b = high - _GOLDEN * (high - low), low + _GOLDEN * (high - low)
+    at_a, at_b = passing(a), passing(b)
+    while high - low > _CLOSE * pressure:
+        if at_a.flux >= at_b.flux:
+            high, b, at_b = b, a, at_a
+            a = high - _GOLDEN * (high - low)
+            at_a = passing(a)
+        else:
+            low, a, at_a = a, b, at_b
+            b = low + _GOLDEN * (high - low)
+            at_b = passing(b)
+    return max((tried[best], at_a, at_b), key=lambda one: one.flux)

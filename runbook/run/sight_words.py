@@ -72,8 +72,9 @@ def details(plan: Plan, standing: Standing) -> tuple[tuple[str, tuple[str, ...],
 
 
 def timed(sight: Sight) -> str:
-    """The sentence, with its temperature before it where it falls on a path."""
-    return sight.words if sight.at_K is None else f"{say(sight.at_K, 'degC', 1)}: {sight.words}"
+    """The sentence, with its temperature before it where it falls on a path and does not say it itself."""
+    there = "" if sight.at_K is None else say(sight.at_K, "degC", 1)
+    return sight.words if there in sight.words else f"{there}: {sight.words}"
 
 
 def along(plan: Plan) -> tuple[tuple[str, tuple[str, ...]], ...]:

@@ -1,0 +1,403 @@
+"""What is computed to be seen: of a vessel as it stands, and along the path of a line."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from pathlib import Path
+
+import pytest
+
+from runbook.answers import LineKind, PlanLine, Sight
+from runbook.assess.now import answer
+from runbook.assess.plan_line import plan_line
+from runbook.assess.scene import Scene
+from runbook.assess.sights import Look, computed, path_sights
+from runbook.assess.sights.frozen import letting_down, melting_sight, solid_sight
+from runbook.assess.sights.marks import marks
+from runbook.assess.walk import walk
+from runbook.charge.isochore import Isochore
+from runbook.codec import from_plain, to_plain
+from runbook.fluids.catalogue import fluids
+from runbook.fluids.substance import substance
+from tests.assess.scenes import observed, question, scene
+
+KELVIN = 273.15
+BEADS = {
+    "instruments:\n": "beads:\n"
+    "  - {tag: K1, density: 0.45 g/cm3 ± 0.005 g/cm3, colour: red}\n"
+    "  - {tag: K2, density: 0.62 g/cm3, colour: blue}\n"
+    "  - {tag: K3, density: 0.30 g/cm3, colour: green}\n"
+    "  - {tag: K4, density: 0.468 g/cm3, colour: white}\n"
+    "instruments:\n"
+}
+
+
+def there(folder: Path, beads: bool = False) -> Scene:
+    """The shipped vessel, with beads in it or not."""
+    return scene(folder, apparatus=BEADS if beads else None)
+
+
+def seen(place: Scene, temperature: float, mass: float = 0.117, **changes: object) -> tuple[Sight, ...]:
+    """What a charge [kg] shows at a temperature [K]."""
+    return computed(place, replace(Look(mass, mass, temperature), **changes))  # type: ignore[arg-type]  # by field name
+
+
+def of(sights: tuple[Sight, ...], what: str) -> Sight:
+    """The one sight of that kind."""
+    (found,) = [one for one in sights if one.of == what]
+    return found
+
+
+def number(sight: Sight, name: str) -> float:
+    """The figure of that name behind it."""
+    (found,) = [value for called, value, _ in sight.numbers if called == name]
+    return found
+
+
+def filled(place: Scene, share: float) -> float:
+    """The charge [kg] of that share of critical density."""
+    return share * place.substance.critical_density * place.apparatus.volume.free.value
+
+
+# -- the vessel as it stands ---------------------------------------------------------------------------------
+
+
+@pytest.mark.wiring
+def test_the_surface_stands_where_the_filling_puts_it(tmp_path: Path) -> None:
+    """117 g in 250 mL at 20 degC is 47 % liquid: 28.7 mm in a lying cell of 60 mm, in 0.3 mm."""
+    found = of(seen(there(tmp_path), 293.15), "meniscus")
+    assert number(found, "height") == pytest.approx(0.0287, abs=3e-4)
+    assert "29 mm" in found.words
+
+
+def test_the_bounds_of_the_charge_are_bounds_of_the_height(tmp_path: Path) -> None:
+    """115 to 119 g: 0.33 mm a gram in this cell, so 1.3 mm between them, in 0.2 mm."""
+    found = of(computed(there(tmp_path), Look(0.115, 0.119, 293.15)), "meniscus")
+    width = number(found, "greatest height") - number(found, "least height")
+    assert width == pytest.approx(4 * 0.33e-3, abs=2e-4)
+
+
+def test_a_charge_nobody_knows_places_no_surface(tmp_path: Path) -> None:
+    """Between nothing and brim-full the sentence says so and gives no height."""
+    found = of(computed(there(tmp_path), Look(0.0, 0.275, 293.15)), "meniscus")
+    assert "not known" in found.words
+    assert "mm" not in found.words
+
+
+def test_direction_on_warming_and_on_cooling(tmp_path: Path) -> None:
+    """Over critical density the surface rises on warming and falls on cooling; nothing is said where it stands."""
+    place = there(tmp_path)
+    heavy = filled(place, 1.3)
+    assert "rises" in of(seen(place, 298.0, heavy, warming=True), "meniscus").words
+    assert "falls" in of(seen(place, 298.0, heavy, warming=False), "meniscus").words
+    light = filled(place, 0.75)
+    assert "falls" in of(seen(place, 301.5, light, warming=True), "meniscus").words
+    still = of(seen(place, 298.0, heavy), "meniscus").words
+    assert "rises" not in still
+    assert "falls" not in still
+    assert "hardly moves" in of(seen(place, 293.15, warming=True), "meniscus").words
+
+
+def test_bubbles_only_where_it_is_heated_or_let_down(tmp_path: Path) -> None:
+    """A charge at rest does not boil."""
+    place = there(tmp_path)
+    assert not [s for s in seen(place, 293.15) if s.of == "boiling"]
+    assert of(seen(place, 293.15, heated=True, warming=True), "boiling")
+    assert of(seen(place, 293.15, lets_down=True), "boiling")
+    assert not [s for s in seen(place, 306.0, heated=True, warming=True) if s.of == "boiling"]
+
+
+def test_within_a_tenth_of_a_kelvin_one_sentence(tmp_path: Path) -> None:
+    """At critical filling, on both sides of it, one honest sentence and nothing besides, beads or not."""
+    place = there(tmp_path, beads=True)
+    critical = place.substance.critical_temperature
+    for away in (-0.099, -0.01, 0.0, 0.05, 0.099):
+        for warming in (True, False, None):
+            (one,) = seen(place, critical + away, warming=warming)
+            assert "one density" in one.trust
+    assert len(seen(place, critical - 0.11, warming=True)) > 1
+
+
+def test_four_per_cent_off_reads_critical_and_ten_leaves(tmp_path: Path) -> None:
+    """Within 5 % it vanishes in place; 10 % off the sentence within 0.1 K says at which end it leaves."""
+    place = there(tmp_path)
+    close = place.substance.critical_temperature - 0.05
+    assert "fading where it stands" in seen(place, close, filled(place, 0.96))[0].words
+    assert "fading where it stands" in seen(place, close, filled(place, 1.04))[0].words
+    assert "at the top" in seen(place, close, filled(place, 1.1))[0].words
+    assert "at the bottom" in seen(place, close, filled(place, 0.9))[0].words
+
+
+def test_haze_begins_about_a_kelvin_below_and_thickens(tmp_path: Path) -> None:
+    """Nothing 2 K below; seen 0.5 K below; thinner light the nearer; and above it clears within 5 K."""
+    place = there(tmp_path)
+    critical = place.substance.critical_temperature
+    assert not [s for s in seen(place, critical - 2.0) if s.of == "haze"]
+    through = [number(of(seen(place, critical + d), "haze"), "light through the cell") for d in (-0.5, -0.11, 0.11)]
+    assert through[0] > through[1] > through[2]
+    assert not [s for s in seen(place, critical + 5.0) if s.of == "haze"]
+
+
+def test_a_surface_is_called_faint_only_when_it_is(tmp_path: Path) -> None:
+    """1 K below critical the step of the index is 0.059 and plain; 0.3 K below it is under 0.05."""
+    place = there(tmp_path)
+    critical = place.substance.critical_temperature
+    assert not [s for s in seen(place, critical - 1.0) if s.of == "contrast"]
+    assert number(of(seen(place, critical - 0.3), "contrast"), "step of the index") < 0.05
+
+
+def test_rain_only_while_it_cools(tmp_path: Path) -> None:
+    """In the half kelvin below the return of the surface, and never on warming."""
+    place = there(tmp_path)
+    at = place.substance.critical_temperature - 0.3
+    assert of(seen(place, at, warming=False), "rain")
+    assert not [s for s in seen(place, at, warming=True) if s.of == "rain"]
+    assert not [s for s in seen(place, at - 1.0, warming=False) if s.of == "rain"]
+
+
+def test_what_comes_next_is_said_on_the_way_there(tmp_path: Path) -> None:
+    """Warming towards 33 degC: the vanishing with its temperature; towards 25 degC: not a word of it."""
+    place = there(tmp_path)
+    ahead = [s.words for s in seen(place, 294.0, warming=True, toward=306.15)]
+    assert any("31.0 °C the surface fades" in words for words in ahead)
+    assert not any("31.0" in s.words for s in seen(place, 294.0, warming=True, toward=298.15))
+
+
+# -- cold ----------------------------------------------------------------------------------------------------
+
+
+def test_solid_is_there_melts_and_goes(tmp_path: Path) -> None:
+    """Below the triple point a share of the cell, at it gauge and thermometer stand still, above it liquid."""
+    place = there(tmp_path)
+    assert "melts at -56.6 °C" in of(seen(place, 200.0), "solid").words
+    assert "stand still" in of(seen(place, place.substance.triple_temperature), "solid").words
+    assert not [s for s in seen(place, 220.0) if s.of == "solid"]
+
+
+@pytest.mark.wiring
+@pytest.mark.parametrize("share", [0.0, 0.25, 0.5, 0.9, 1.0])
+def test_the_fraction_left_on_the_plateau(tmp_path: Path, share: float) -> None:
+    """With so much of the melting heat in, the rest of the solid is left (lever rule): 1e-9."""
+    place = there(tmp_path)
+    density = 480.0
+    path = Isochore(place.substance, density)
+    assert path.plateau is not None
+    begin, end = path.plateau
+    state = path.state_of_energy(begin + (1e-9 + share * (1.0 - 2e-9)) * (end - begin))
+    found = solid_sight(place, state)
+    assert found is not None
+    assert number(found, "solid left, of what melts") == pytest.approx(1.0 - share, abs=2e-9)
+    assert "shrinks" in found.words
+
+
+@pytest.mark.wiring
+def test_shares_at_the_ends_of_melting(tmp_path: Path) -> None:
+    """480 kg/m3: 98.0 % of the mass is solid when it begins and 98.3 % liquid when it ends (Jaeger and Span 2012 with
+    Span and Wagner 1996): 0.2 %."""
+    place = there(tmp_path)
+    found = melting_sight(place, 480.0)
+    both = place.substance.saturation(place.substance.triple_temperature)
+    assert number(found, "liquid at the end, of the volume") * both.liquid_density / 480.0 == pytest.approx(
+        0.9828, rel=2e-3
+    )
+    solid = number(found, "solid at the beginning, of the volume")
+    gas = (1.0 - solid) * both.vapour_density / 480.0
+    assert 1.0 - gas == pytest.approx(0.9801, rel=2e-3)
+
+
+def test_frost_below_the_ice_point_only(tmp_path: Path) -> None:
+    """A wall at -1 degC grows it, at +1 degC it does not, whatever is inside."""
+    place = there(tmp_path)
+    assert of(seen(place, KELVIN - 1.0), "frost")
+    assert not [s for s in seen(place, KELVIN + 1.0) if s.of == "frost"]
+
+
+def test_snow_at_the_outlet(tmp_path: Path) -> None:
+    """From 20 degC 3 % of the gas and 29 % of the liquid; colder gas gives none."""
+    place = there(tmp_path)
+    warm = of(letting_down(place, 293.15), "snow")
+    assert number(warm, "snow from gas, of the mass") == pytest.approx(0.026, abs=0.002)
+    assert number(warm, "snow from liquid, of the mass") == pytest.approx(0.291, abs=0.002)
+    assert "Clear cold gas" in of(letting_down(place, 270.0), "snow").words
+
+
+# -- beads ---------------------------------------------------------------------------------------------------
+
+
+def test_beads_float_sink_and_rise(tmp_path: Path) -> None:
+    """At 20 degC all float between 194 and 773 kg/m3; at 29.9 degC 0.62 has sunk and 0.30 has risen."""
+    place = there(tmp_path, beads=True)
+    cold = [s.words for s in seen(place, 293.15) if s.of == "beads"]
+    assert all("floats on the surface" in words for words in cold)
+    warm = " ".join(s.words for s in seen(place, 303.05) if s.of == "beads")
+    assert "red bead K1 floats" in warm
+    assert "blue bead K2 lies on the bottom" in warm
+    assert "green bead K3 has risen" in warm
+
+
+@pytest.mark.wiring
+def test_beads_pass_where_the_phase_has_their_density(tmp_path: Path) -> None:
+    """0.62 sinks where the liquid has 620 kg/m3, 0.30 rises where the vapour has 300 (301.66 K): 1 mK of the curve."""
+    place = there(tmp_path, beads=True)
+    by = {bead.tag: bead for bead in marks(place, 0.117).beads}
+    sinks, rises = by["K2"].sinks_at, by["K3"].rises_at
+    assert sinks is not None
+    assert rises is not None
+    assert place.substance.saturation(sinks).liquid_density == pytest.approx(620.0, abs=0.05)
+    assert rises == pytest.approx(301.66, abs=0.01)
+
+
+def test_a_bead_of_the_charges_density_hovers(tmp_path: Path) -> None:
+    """Half a kelvin above critical 0.468 in 468 kg/m3 hovers, 0.45 rises and 0.62 sinks."""
+    place = there(tmp_path, beads=True)
+    words = " ".join(s.words for s in seen(place, place.substance.critical_temperature + 0.5) if s.of == "beads")
+    assert "white bead K4 hovers" in words
+    assert "red bead K1 rises" in words
+    assert "blue bead K2 sinks" in words
+
+
+# -- along a path --------------------------------------------------------------------------------------------
+
+
+def kinds(found: tuple[tuple[float, Sight], ...]) -> list[str]:
+    """Kinds in order."""
+    return [sight.of for _, sight in found]
+
+
+def test_from_dry_ice_to_the_room_in_order(tmp_path: Path) -> None:
+    """Solid, melting at the triple point, gone, frost that melts, then the surface."""
+    found = path_sights(there(tmp_path), 195.0, 294.15, 0.117)
+    assert kinds(found) == ["solid", "solid", "solid gone", "frost", "meniscus"]
+    assert [at for at, _ in found] == sorted(at for at, _ in found)
+    assert found[1][0] == pytest.approx(216.592, abs=1e-3)
+
+
+def test_the_lesson_in_order_and_back(tmp_path: Path) -> None:
+    """Warmed: surface, haze, faint, gone. Cooled: the same temperatures the other way round, with rain."""
+    place = there(tmp_path)
+    up, down = path_sights(place, 294.15, 308.15, 0.117), path_sights(place, 308.15, 294.15, 0.117)
+    assert kinds(up) == ["meniscus", "haze", "contrast", "meniscus", "haze", "meniscus"]
+    assert kinds(down) == ["meniscus", "haze", "rain", "contrast", "haze", "meniscus"]
+    between = [at for at, _ in up][1:-1]
+    assert [at for at, _ in down][1:-1] == list(reversed(between))
+    assert all(sight.at_K == at for at, sight in (*up, *down))
+
+
+@pytest.mark.parametrize(("share", "edge"), [(1.3, "top"), (0.7, "bottom")])
+def test_off_critical_it_leaves_the_window_then_the_cell(tmp_path: Path, share: float, edge: str) -> None:
+    """The window's edge first, then full or dry; on cooling it comes back the other way round."""
+    place = there(tmp_path)
+    mass = filled(place, share)
+    up = [s.words for _, s in path_sights(place, 294.15, 306.15, mass) if s.of == "meniscus"][1:3]
+    assert f"leaves the window at the {edge}" in up[0]
+    assert ("liquid fills" if edge == "top" else "last liquid") in up[1]
+    back = [s.words for _, s in path_sights(place, 306.15, 294.15, mass) if s.of in ("rain", "meniscus")][1:3]
+    assert ("from the top" if edge == "top" else "at the bottom") in back[0]
+    assert f"comes into the window at the {edge}" in back[1]
+
+
+def planned(folder: Path) -> list[PlanLine]:
+    """Lines of the shipped procedure whose path shows something."""
+    place = there(folder)
+    lines = walk(place)
+    return [plan_line(place, lines, i) for i, w in enumerate(lines) if w.verb is not None]
+
+
+def test_warm_and_cool_lines_carry_their_path(tmp_path: Path) -> None:
+    """The lesson's warming says with what and when the class sees it, the author's own words first."""
+    found = [one for one in planned(tmp_path) if any(s.at_K is not None for s in one.sights)]
+    assert [one.number for one in found] == ["1.18", "3.4", "3.5"]
+    assert all(one.kind is LineKind.DO for one in found)
+    lesson = found[1].sights
+    assert not lesson[0].computed
+    temperatures = [s.at_K for s in lesson if s.at_K is not None]
+    assert temperatures == sorted(temperatures)
+    assert any("fades and is gone" in s.words for s in lesson[1:])
+
+
+# -- trust, figures, journals --------------------------------------------------------------------------------
+
+
+def test_every_computed_sight_has_figures_and_trust(tmp_path: Path) -> None:
+    """From dry ice to one phase, standing, warmed, cooled and let down; one sentence each."""
+    place = there(tmp_path, beads=True)
+    for tenth in range(1920, 3120, 17):
+        for changes in ({}, {"warming": True, "heated": True}, {"warming": False}, {"lets_down": True}):
+            for one in seen(place, tenth / 10.0, **changes):
+                assert one.computed
+                assert one.of
+                assert one.numbers, one.words
+                assert one.trust.endswith(".")
+                assert one.words.endswith(".")
+                assert one.words[0].isupper()
+
+
+@pytest.mark.wiring
+def test_which_equations_flatten_their_dome_too_early() -> None:
+    """By their own slope between 1 K and 0.1 K below critical: xenon, SF6, n-butane and R134a, and not CO2, water or
+    ethane; in nature the exponent is 0.326."""
+    from runbook.assess.sights.marks import _flattens
+
+    flat = {f.name for f in fluids() if _flattens(substance(f.name))}
+    assert {"xenon", "sulfur hexafluoride", "n-butane", "R134a"} <= flat
+    assert not flat & {"carbon dioxide", "water", "ethane"}
+
+
+def test_a_flattened_dome_is_said_only_close_to_critical(tmp_path: Path) -> None:
+    """Carbon dioxide never says it."""
+    place = there(tmp_path)
+    critical = place.substance.critical_temperature
+    assert "too early" not in of(seen(place, critical - 0.3), "meniscus").trust
+    charge = replace(marks(place, 0.117), flattens=True)
+    place.seen[0.117] = charge
+    assert "too early" in of(seen(place, critical - 0.3), "meniscus").trust
+    assert "too early" not in of(seen(place, critical - 3.0), "meniscus").trust
+
+
+def test_a_sight_of_an_old_journal_is_read_and_a_new_one_survives() -> None:
+    """Fields that came later have defaults; all of it goes to JSON and back."""
+    old = from_plain(Sight, {"words": "A haze.", "computed": True, "if_not": ""})
+    assert old == Sight("A haze.", True)
+    new = Sight("A haze.", True, "", "haze", 303.3, (("turbidity", 0.4, "1/m"),), "Good to a quarter.")
+    assert from_plain(Sight, to_plain(new)) == new
+
+
+def test_the_live_answer_looks_where_the_line_goes(tmp_path: Path) -> None:
+    """In the warming line with the source on: it moves, boils, and the vanishing is ahead."""
+    place = there(tmp_path)
+    lines = walk(place)
+    index = next(i for i, w in enumerate(lines) if w.warms)
+    readings = (
+        observed("mass", 0.1172, 3, closed=False),
+        observed("temperature", 294.15, 10),
+        observed("liquid height", 0.0285, 11, by="T. Okoro"),
+    )
+    found = answer(place, lines, question(index, index + 1, readings, source="on"))
+    assert {"meniscus", "boiling"} <= {s.of for s in found.sights}
+    assert any("fades" in s.words for s in found.sights)
+    assert found.liquid_height == pytest.approx(0.0285, abs=0.001)
+
+
+def test_what_depends_on_the_charge_alone_is_worked_out_once(tmp_path: Path) -> None:
+    """Two looks at one charge share its marks."""
+    place = there(tmp_path)
+    assert marks(place, 0.117) is marks(place, 0.117)
+    assert marks(place, 0.117) is not marks(place, 0.118)
+
+
+@pytest.mark.parametrize("name", [fluid.name for fluid in fluids()])
+def test_every_fluid_shows_something_and_nothing_raises(tmp_path: Path, name: str) -> None:
+    """Three charges of each fluid from its coldest to 10 K above critical, and along the way there and back."""
+    place = there(tmp_path, beads=True)
+    place.substance = fluid = substance(name)
+    for share in (0.6, 1.0, 1.5):
+        mass = filled(place, share)
+        low, high = fluid.min_temperature + 0.5, fluid.critical_temperature + 10.0
+        for step in range(25):
+            at = low + (high - low) * step / 24.0
+            for changes in ({"warming": True, "heated": True, "toward": high}, {"lets_down": True}):
+                seen(place, at, mass, **changes)
+        up, down = path_sights(place, low, high, mass), path_sights(place, high, low, mass)
+        assert {"meniscus"} <= set(kinds(up))
+        assert up
+        assert down

@@ -22,7 +22,8 @@ from runbook.assess.mend import mends
 from runbook.assess.path import planned_path
 from runbook.assess.plan_line import plan_line
 from runbook.assess.scene import Scene, open_scene
-from runbook.assess.verdict import fluid_findings, line_findings, mend_findings, verdict_of
+from runbook.assess.truth import truth_findings
+from runbook.assess.verdict import fluid_findings, line_findings, mend_findings, position, verdict_of
 from runbook.assess.walk import VesselState, Walked, outside_tags, start_state, walk
 from runbook.procedure.model import (
     LetDownTo,
@@ -56,6 +57,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
         tuple(Finding(p.rule, p.severity, p.line, p.column, p.message) for p in writing_findings(loaded))
         + fluid_findings(scene)
         + line_findings(loaded, walked, plan_lines, dated)
+        + truth_findings(scene, walked, [position(loaded, walked, i) for i in range(len(walked))])
     )
     verdict = verdict_of(plan_lines, found)
     if verdict == "outside limits":

@@ -37,7 +37,7 @@ def line_findings(
         if c.state != "valid"
     ]
     for index, line in enumerate(lines):
-        at = _position(loaded, walked, index)
+        at = position(loaded, walked, index)
         found += [
             Finding("margin", "error", *at, f"step {line.number}: {margin_sentence(m)}")
             for m in line.ahead
@@ -129,7 +129,7 @@ def _gates(lines: Sequence[PlanLine], index: int, at: tuple[int, int]) -> list[F
     ]
 
 
-def _position(loaded: Loaded, walked: Sequence[Walked], index: int) -> tuple[int, int]:
+def position(loaded: Loaded, walked: Sequence[Walked], index: int) -> tuple[int, int]:
     """(line, column) of a step in the procedure file."""
     part = walked[index].part
     place = sum(1 for w in walked[:index] if w.part == part)

@@ -221,7 +221,8 @@ def agreement_proves(agreement: Agreement | None) -> str:
 def agreement_says(plan: Plan, agreement: Agreement | None, found: Sequence[Explanation]) -> str:
     """What the comparison says: what it proves; where something is explained, the first explanation and its test."""
     first, test = first_explanation(plan, agreement, found)
-    if agreement is None or not first:
+    harmless = agreement is not None and agreement.verdict == "cannot tell" and found and found[0].cause == "none"
+    if agreement is None or not first or harmless:
         return agreement_proves(agreement)
     # A question: it is a guess until the test has been made.
     return f"{agreement.verdict}: {first}? {test}" if test else f"{agreement.verdict}: {first}"

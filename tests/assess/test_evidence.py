@@ -8,13 +8,13 @@ from pathlib import Path
 
 import pytest
 
-from runbook.answers import Explanation, Past
+from runbook.answers import ChargeBox, Explanation, Past
 from runbook.assess.agreement import agreement, computed_pressure
 from runbook.assess.boxes import charge_box
 from runbook.assess.evidence.deciding import TESTS, deciding_test
 from runbook.assess.evidence.faults import causes, moles_per_pascal
 from runbook.assess.evidence.forecast import BEFORE, NONE, Fault, forecast, wall_temperature
-from runbook.assess.evidence.given import Given, given
+from runbook.assess.evidence.given import Given, given, stated_charge
 from runbook.assess.evidence.looks import Look, looks
 from runbook.assess.evidence.ranking import Segment, explanations, tail
 from runbook.assess.evidence.spread import rooted
@@ -208,6 +208,7 @@ def test_air_is_weighed_by_what_it_adds_where_it_was_read(tmp_path: Path) -> Non
 def test_a_leak_before_the_first_look_is_gone_at_every_look(tmp_path: Path) -> None:
     """And one that begins at the first look has lost half of it halfway."""
     of = known(tmp_path, FINE)
+    of.charge = 0.117
     three = tuple(Look(3600.0 * k, WALL, mass=0.1) for k in range(3))
     assert forecast(of, three, Fault(leak=0.006, leak_from=BEFORE)) == pytest.approx([0.111] * 3)
     assert forecast(of, three, Fault(leak=0.006, leak_from=0.0)) == pytest.approx([0.117, 0.114, 0.111])
@@ -224,6 +225,18 @@ def test_every_cause_spreads_its_whole_belief(tmp_path: Path) -> None:
     look = at_rest(of, 0.0)
     for cause in causes(of, look, moles_per_pascal(of, look[0])):
         assert sum(t.weight for t in cause.tracks) == pytest.approx(1.0), cause.name
+
+
+def test_the_charge_as_stated_is_the_plans_as_far_as_the_scale_bears_it_out(tmp_path: Path) -> None:
+    """Above the plan it had not fallen yet; below it there was never more; without a weighing the plan itself."""
+    there = scene(tmp_path)
+    error = 0.00055
+    for weighed, low, high in ((0.132, 0.115, 0.119), (0.117, 0.115, 0.117), (0.110, 0.110, 0.110)):
+        middle, half = stated_charge(there, (observed("mass", weighed, 1, closed=False),))
+        assert (middle - half, middle + half) == pytest.approx((low - error, high + error)), weighed
+    assert stated_charge(there, ()) == pytest.approx((0.117, 0.002))
+    loaded = scene(tmp_path, charge=ChargeBox(0.112, 0.114, True, ("weighing",)))
+    assert stated_charge(loaded, ()) == pytest.approx((0.113, 0.001))
 
 
 # -- arithmetic ----------------------------------------------------------------------------------------------

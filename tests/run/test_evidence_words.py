@@ -81,6 +81,12 @@ def test_without_explanations_the_band_says_what_it_said() -> None:
         assert agreement_says(PLAN, agreement, ()) == agreement_proves(agreement)
 
 
+def test_a_coarse_gauge_with_nothing_wrong_in_front_says_that_it_is_coarse() -> None:
+    """What else it could be stands on the page, not in the band of every reading."""
+    assert agreement_says(PLAN, COARSE, (NONE, OFFSET)) == agreement_proves(COARSE)
+    assert agreement_says(PLAN, COARSE, (OFFSET, NONE)).startswith("cannot tell: PG1 shows 2.4 bar too much?")
+
+
 def test_the_band_begins_with_the_verdict() -> None:
     """Disagreement is not hidden behind its explanation."""
     assert agreement_says(PLAN, OFF, (OFFSET,)) == ("disagrees: PG1 shows 2.4 bar too much? tap PG1, check its zero")

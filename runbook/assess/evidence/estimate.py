@@ -14,7 +14,7 @@ from runbook.answers import ChargeBox, ChargeEstimate, ChargePart, Observation
 from runbook.apparatus.instruments import expanded_uncertainty, permissible_error
 from runbook.assess.agreement import reading_U
 from runbook.assess.boxes import viewed_shape
-from runbook.assess.evidence.given import RECTANGULAR
+from runbook.assess.evidence.given import RECTANGULAR, weighed_bounds
 from runbook.assess.scene import Scene
 from runbook.errors import RunbookError
 
@@ -59,16 +59,16 @@ def _together(parts: Sequence[ChargePart]) -> float:
 
 
 def _weighings(scene: Scene, record: ChargeBox | None, observations: Sequence[Observation]) -> list[ChargePart]:
-    """The last at closing, else the record; and the mean of those of the closed vessel.
+    """The last before closing, else the record; and the mean of those of the closed vessel.
 
     One balance, so its error is not divided by how often it was read.
     """
     found = []
     masses = [o for o in observations if o.what == "mass"]
-    opened = [o for o in masses if not o.closed]
-    if opened:
-        last = max(opened, key=lambda o: o.sequence)
-        found.append(ChargePart("weighing at closing", last.value, _U(scene, last)))
+    weighed = weighed_bounds(scene, tuple(masses))
+    if weighed is not None:
+        low, high, _ = weighed
+        found.append(ChargePart("weighing at closing", 0.5 * (low + high), RECTANGULAR * (high - low)))
     elif record is not None and record.high_kg > record.low_kg:
         half = 0.5 * (record.high_kg - record.low_kg)
         found.append(ChargePart("charge record", record.low_kg + half, 2.0 * RECTANGULAR * half))

@@ -132,14 +132,32 @@ def given(
 
 
 def stated_charge(scene: Scene, observations: tuple[Observation, ...]) -> tuple[float, float]:
-    """Charge and half-width [kg]: weighed at closing, else the record's, else the plan's."""
-    weighed = [o for o in observations if o.what == "mass" and not o.closed]
-    if weighed:
-        last = max(weighed, key=lambda o: o.sequence)
-        bounds = _of(scene, last.tag)
-        return last.value, bounds.error + bounds.half_division
-    low, high = (scene.charge.low_kg, scene.charge.high_kg) if scene.charge is not None else scene.planned
+    """Charge and half-width [kg] that was meant: the plan's, as far as the weighing before closing bears it out.
+
+    A cell is closed on the falling weight, so a reading above the plan says only that it had not fallen yet; more
+    than the plan is then an explanation like others, and not what was stated. Without a weighing: the record's.
+    """
+    low, high = scene.planned
+    weighed = weighed_bounds(scene, observations)
+    if weighed is not None:
+        low, high = weighed[0], min(weighed[1], max(high, weighed[0]) + weighed[2])
+    elif scene.charge is not None:
+        low, high = scene.charge.low_kg, scene.charge.high_kg
     return 0.5 * (low + high), 0.5 * (high - low)
+
+
+def weighed_bounds(scene: Scene, observations: tuple[Observation, ...]) -> tuple[float, float, float] | None:
+    """Least and most charge by the last weighing before closing, and that scale's error [kg]; None without one.
+
+    Until it was closed it may have lost what brings it down to the least that was meant.
+    """
+    weighed = [o for o in observations if o.what == "mass" and not o.closed]
+    if not weighed:
+        return None
+    last = max(weighed, key=lambda o: o.sequence)
+    bounds = _of(scene, last.tag)
+    error = bounds.error + bounds.half_division
+    return min(last.value, scene.planned[0]) - error, last.value + error, error
 
 
 def _first(scene: Scene, reads: str) -> Bounds | None:

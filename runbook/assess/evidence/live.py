@@ -11,7 +11,7 @@ from typing import Final
 
 from runbook.answers import Agreement, Explanation, Observation, Past, Question
 from runbook.assess.evidence.given import given
-from runbook.assess.evidence.looks import looks
+from runbook.assess.evidence.looks import STILL_K, TOGETHER_S, looks
 from runbook.assess.evidence.ranking import explanations
 from runbook.assess.scene import Scene
 
@@ -29,6 +29,8 @@ def explained(
     """
     if verdict.verdict not in ASKED or wall is None or verdict.tag is None:
         return ()
+    if question.history and not _read_together(question.history, verdict.tag, wall.tag):
+        return ()
     history = question.history or _last_pair(question, verdict.tag, wall)
     weighed = tuple(o for o in question.observations if o.what == "mass" and not o.closed)
     key = (history, weighed, verdict.tag, wall.tag, fastest)
@@ -37,6 +39,21 @@ def explained(
             del scene.explained[next(iter(scene.explained))]
         scene.explained[key] = _ranked(scene, history, weighed, verdict.tag, wall, fastest)
     return scene.explained[key]
+
+
+def _read_together(history: tuple[Past, ...], gauge: str, thermometer: str) -> bool:
+    """Whether the last of both were read together, or the wall has not moved since.
+
+    While the second of a pair is still being typed there is nothing to explain, nor of a pressure that was read with
+    the vessel open or at another temperature.
+    """
+    walls = [p for p in history if p.tag == thermometer]
+    gauges = [p for p in history if p.tag == gauge]
+    if not walls or not gauges:
+        return False
+    near = min(walls, key=lambda p: abs(p.at_s - gauges[-1].at_s))
+    together = abs(near.at_s - gauges[-1].at_s) <= TOGETHER_S
+    return together and (near is walls[-1] or abs(near.value - walls[-1].value) < STILL_K)
 
 
 def _ranked(

@@ -18,6 +18,7 @@ from runbook.apparatus.instruments import permissible_error
 from runbook.apparatus.spaces import joined_spaces
 from runbook.assess.bounds import charge_bounds
 from runbook.assess.evidence.desk import what_instruments_tell
+from runbook.assess.making_safe import making_safe_findings
 from runbook.assess.mend import mends
 from runbook.assess.path import planned_path
 from runbook.assess.plan_line import plan_line
@@ -53,11 +54,17 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
     loaded, apparatus, procedure = scene.loaded, scene.apparatus, scene.procedure
     plan_lines = tuple(plan_line(scene, walked, i) for i in range(len(walked)))
     dated = certificates(apparatus, on)
+    places = [position(loaded, walked, i) for i in range(len(walked))]
+    outside = outside_tags(scene)
+    lets_down = next((w.verb.through for w in walked if isinstance(w.verb, LetDownTo)), None)
+    vent = lets_down or next((t for t in outside if any(v.tag == t for v in apparatus.valves)), None)
+    forbidden = scene.substance.data.hazards.release_forbidden
     found = (
         tuple(Finding(p.rule, p.severity, p.line, p.column, p.message) for p in writing_findings(loaded))
         + fluid_findings(scene)
         + line_findings(loaded, walked, plan_lines, dated)
-        + truth_findings(scene, walked, [position(loaded, walked, i) for i in range(len(walked))])
+        + truth_findings(scene, walked, places)
+        + making_safe_findings(scene, walked, plan_lines, None if forbidden else vent, places)
     )
     verdict = verdict_of(plan_lines, found)
     if verdict == "outside limits":
@@ -65,8 +72,6 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
     top = _ceiling(scene)
     low, high = scene.barometer.low_Pa, scene.barometer.high_Pa
     source = apparatus.heat_source
-    lets_down = next((w.verb.through for w in walked if isinstance(w.verb, LetDownTo)), None)
-    outside = outside_tags(scene)
     begun = _begun(scene, walked, part)
     return Plan(
         procedure=procedure.name,
@@ -100,8 +105,8 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
         source_tag=None if source is None else source.tag,
         source=begun.source,
         source_away=source is not None and source.taken_away_in_one_motion,
-        let_down_valve=lets_down or next((t for t in outside if any(v.tag == t for v in apparatus.valves)), None),
-        release_forbidden=scene.substance.data.hazards.release_forbidden,
+        let_down_valve=vent,
+        release_forbidden=forbidden,
         parts=_parts(scene, walked),
         lines=plan_lines,
         make_safe_also=tuple((a.do, a.who or "") for a in procedure.make_safe_also),

@@ -49,6 +49,36 @@ class SafePhase:
 
 
 @dataclass(frozen=True, slots=True)
+class Leaves:
+    """How the acts of a phase leave the vessel, for whoever proves that it then comes to rest."""
+
+    source_gone: bool
+    """The heat source is taken away, where it can be; else it is off and still connected."""
+    vent: str
+    """'open', 'shut' or 'stays'."""
+    away: bool
+    """Everybody is out of the room, or back behind the shield and away: it need not be at rest."""
+
+
+LEAVES: Final = {
+    Phase.A: Leaves(False, "open", True),
+    Phase.B: Leaves(False, "open", True),
+    Phase.B_PROVED: Leaves(False, "stays", False),
+    Phase.C: Leaves(False, "stays", False),
+    Phase.D: Leaves(True, "stays", True),
+    Phase.E: Leaves(True, "stays", False),
+    Phase.F: Leaves(False, "open", True),
+    Phase.G: Leaves(False, "stays", True),
+    Phase.H: Leaves(False, "open", False),
+    Phase.I: Leaves(False, "stays", True),
+    Phase.J: Leaves(False, "stays", True),
+    Phase.K: Leaves(False, "open", True),
+    Phase.L: Leaves(False, "stays", False),
+}
+"""Beside the acts below, which a test holds against it."""
+
+
+@dataclass(frozen=True, slots=True)
 class _At:
     """What of the bench the acts name."""
 

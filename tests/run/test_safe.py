@@ -10,7 +10,7 @@ import pytest
 from runbook.answers import ChargeBox, Phase
 from runbook.run.acts import GoOn, MakeSafe
 from runbook.run.events import MadeSafe
-from runbook.run.safe import ORDER, make_safe, phase_of, rest_shut
+from runbook.run.safe import LEAVES, ORDER, make_safe, phase_of, rest_shut
 from tests.run.plans import MOVING, begun, line, plan
 
 WHOLE = plan(line(1))
@@ -148,3 +148,18 @@ def test_gas_alarms_are_of_the_gas() -> None:
     for phase in (Phase.A, Phase.F):
         assert any("carbon dioxide" in act for act in make_safe(WHOLE, phase).acts)
         assert not any("carbon dioxide" in act for act in make_safe(other, phase).acts)
+
+
+@pytest.mark.parametrize("phase", list(Phase))
+def test_how_the_acts_leave_the_vessel_is_what_they_say(phase: Phase) -> None:
+    """The table that `check` proves rest from agrees with the words a person reads."""
+    acts, leaves = " ".join(make_safe(WHOLE, phase).acts), LEAVES[phase]
+    assert leaves.source_gone == ("TAKE " in acts)
+    if leaves.vent == "open" and phase is not Phase.K:
+        assert any(word in acts for word in ("OPEN V2", "LEAVE V2 open", "LID OFF"))
+    if leaves.vent == "stays":
+        assert "OPEN V2 now" not in acts
+    if leaves.away:
+        assert any(word in acts for word in ("OUT", "BACK", "AIR IN"))
+    else:
+        assert "OUT:" not in acts

@@ -10,6 +10,7 @@ from runbook.drawing import Chart, Filling
 from runbook.quantities import pressure_to_unit, to_unit
 from runbook.run.amounts import pressure, temperature
 from runbook.run.conductor import Conductor
+from runbook.run.sight_words import height_kept_back
 from runbook.run.standing import Standing
 from runbook.run.state import Ledger, Taken
 
@@ -29,7 +30,8 @@ def picture_of(desk: Conductor, standing: Standing) -> PictureView:
     lying = True
     if standing.hidden:
         return PictureView(_UNKNOWN, lying, None, "Kept back until the signer's own reading is in.")
-    return PictureView(_filling(plan, ledger.answer), lying, _chart(plan, ledger, standing), _words(plan, ledger))
+    filling = _UNKNOWN if height_kept_back(standing) else _filling(plan, ledger.answer)
+    return PictureView(filling, lying, _chart(plan, ledger, standing), _words(plan, ledger))
 
 
 def _filling(plan: Plan, answer: Answer | None) -> Filling:

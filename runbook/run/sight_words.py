@@ -5,6 +5,7 @@ One home, so that bench and line mode keep the same things back from a signer wh
 
 from __future__ import annotations
 
+from dataclasses import replace
 from typing import TYPE_CHECKING, Final
 
 from runbook.answers import Answer, Plan, PlanLine, Sight
@@ -15,6 +16,7 @@ if TYPE_CHECKING:
     from runbook.run.standing import Standing
 
 KEPT_BACK: Final = "Kept back until the signer's own reading is in."
+UNREAD: Final = "Where the surface stands is said when its height has been read."
 NOTHING: Final = "Nothing is expected to be seen."
 _AHEAD: Final = 2
 """Sights of a path that are said where nothing is computed of the vessel as it stands; the rest when asked."""
@@ -33,9 +35,24 @@ def sights_of(answer: Answer | None, line: PlanLine | None) -> tuple[Sight, ...]
     return (*answer.sights, *said) if moves else (*said, *answer.sights)
 
 
+def height_kept_back(standing: Standing) -> bool:
+    """A height is to be read now: a value that stands beside the empty box would be copied into it."""
+    return standing.hidden or any(w.need.what == "liquid height" and w.due_s <= 0.0 for w in standing.wanted)
+
+
 def seen_now(standing: Standing) -> tuple[Sight, ...]:
     """What is said without being asked: of the vessel as it stands, else the first of the line's path."""
-    return tuple(s for s in standing.sights if s.at_K is None) or standing.sights[:_AHEAD]
+    shown = _allowed(standing, standing.sights)
+    return tuple(s for s in shown if s.at_K is None) or shown[:_AHEAD]
+
+
+def _allowed(standing: Standing, sights: tuple[Sight, ...]) -> tuple[Sight, ...]:
+    """Without the heights, where one is to be read first."""
+    if not height_kept_back(standing):
+        return sights
+    return tuple(
+        replace(s, words=UNREAD, numbers=()) if any(name == "height" for name, _, _ in s.numbers) else s for s in sights
+    )
 
 
 def see_words(standing: Standing) -> str:
@@ -68,7 +85,7 @@ def details(plan: Plan, standing: Standing) -> tuple[tuple[str, tuple[str, ...],
     now = list(standing.sights)
     line = standing.line.sights if standing.line is not None else ()
     now += [sight for sight in line if sight.at_K is not None and sight not in now]
-    return tuple((timed(sight), figures(plan, sight), _trust(sight)) for sight in now)
+    return tuple((timed(s), figures(plan, s), _trust(s)) for s in _allowed(standing, tuple(now)))
 
 
 def timed(sight: Sight) -> str:

@@ -84,6 +84,17 @@ def test_a_charge_nobody_knows_places_no_surface(tmp_path: Path) -> None:
     assert "mm" not in found.words
 
 
+def test_bounds_of_more_than_a_few_millimetres_are_said(tmp_path: Path) -> None:
+    """117 to 140 g is no height but a span of it."""
+    found = of(computed(there(tmp_path), Look(0.117, 0.140, 293.15)), "meniscus")
+    assert "between 29 and 36 mm" in found.words
+
+
+def test_gas_alone_shows_no_surface(tmp_path: Path) -> None:
+    """Nothing to 10 g at 20 degC: even the most is thin gas."""
+    assert "at most gas is left" in of(computed(there(tmp_path), Look(0.0, 0.010, 293.15)), "no liquid").words
+
+
 def test_direction_on_warming_and_on_cooling(tmp_path: Path) -> None:
     """Over critical density the surface rises on warming and falls on cooling; nothing is said where it stands."""
     place = there(tmp_path)

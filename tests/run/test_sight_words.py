@@ -8,6 +8,7 @@ from runbook.answers import Sight
 from runbook.run.sight_words import (
     KEPT_BACK,
     NOTHING,
+    UNREAD,
     along,
     details,
     figures,
@@ -17,7 +18,8 @@ from runbook.run.sight_words import (
     sights_of,
 )
 from runbook.run.standing import Standing, standing
-from tests.run.plans import answer, begun, line, plan
+from runbook.run.wanted import Wanted
+from tests.run.plans import HS1, answer, begun, line, plan
 
 SAID = Sight("Every joint is dry.", False, "Make safe.")
 COMING = Sight("From about 30.2 °C a haze.", True, of="haze", at_K=303.32, trust="Good to a quarter.")
@@ -66,6 +68,16 @@ def test_nothing_gives_a_blind_reading_away() -> None:
     assert see_source(kept) == ""
     assert see_if_not(kept) == ""
     assert details(plan(line(1)), kept) == ((KEPT_BACK, (), ""),)
+
+
+def test_a_height_that_is_to_be_read_is_not_said_first() -> None:
+    """A value beside an empty box is copied: sentence and figures wait till the height has been read."""
+    due = Wanted(HS1, 0.0, False, "line")
+    asked = replace(stand(NOW, SAID), wanted=(due,))
+    assert see_words(asked) == f"{UNREAD} {SAID.words}"
+    assert "30" not in "".join(word for row in details(plan(line(1)), asked) for word in (row[0], *row[1]))
+    later = replace(asked, wanted=(replace(due, due_s=60.0),))
+    assert see_words(later) == f"{NOW.words} {SAID.words}"
 
 
 def test_asked_for_all_of_it_is_there() -> None:

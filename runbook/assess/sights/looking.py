@@ -81,6 +81,9 @@ def computed(scene: Scene, look: Look) -> tuple[Sight, ...]:
     frost = frost_sight(scene, look.temperature)
     around = () if frost is None else (frost,)
     if not look.known:
+        if _only_gas(scene, look):
+            return (Sight("No surface: at most gas is left.", True, of="no liquid", trust=say.GAS_TRUST,
+                          numbers=(("most", look.high_kg, "kg"),)), *around)  # fmt: skip
         words = "How much is in it is not known well enough to say where a surface stands."
         numbers = (("least", look.low_kg, "kg"), ("most", look.high_kg, "kg"))
         return (Sight(words, True, of="meniscus", numbers=numbers, trust=say.UNKNOWN_TRUST), *around)
@@ -99,6 +102,15 @@ def liquid_height(scene: Scene, mass: float, temperature: float) -> float | None
         return viewed_shape(scene).height(state.liquid)
     except RunbookError:
         return None
+
+
+def _only_gas(scene: Scene, look: Look) -> bool:
+    """Even the most it can hold is one thin phase."""
+    try:
+        density = max(look.high_kg, 1e-6) / scene.apparatus.volume.free.value
+        return scene.substance.region(look.temperature, density) in (Region.VAPOUR, Region.GAS)
+    except RunbookError:
+        return False
 
 
 def _inside(scene: Scene, look: Look) -> tuple[Sight, ...]:

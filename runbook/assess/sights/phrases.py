@@ -26,6 +26,7 @@ RAIN_TRUST: Final = "That it comes is sure; how thick it is hangs on how fast th
 BOIL_TRUST: Final = "Where the first bubbles rise hangs on the wall; a cell warmed slowly may show none."
 FROST_TRUST: Final = "If the room is humid, which is not known here; nothing grows where air does not reach."
 SNOW_TRUST: Final = "The most that can come, with no heat from valve and hose; a warm valve gives less, or none."
+GAS_TRUST: Final = "As sure as the most that can be in it; a cold corner out of view may still hold liquid or solid."
 UNKNOWN_TRUST: Final = "The charge is not known well enough; weigh it, or read the height at a known temperature."
 
 

@@ -16,6 +16,8 @@ _UNSEEN = 2e-4
 """Movement under which nobody sees a surface move, at the kelvin a minute of a lesson [m/K]."""
 _UNSEEN_NEAR = 2e-3
 """The same within 0.2 K of critical, where an equation's own error moves the surface [m/K]."""
+_SURE = 4e-3
+"""Bounds of the height further apart than this are said, not their middle [m]."""
 _RAIN = 0.5
 """Below the return of the surface drops still fall through the cell for about this long [K]; common practice."""
 _FLATTENED = 0.5
@@ -40,7 +42,8 @@ def surface_sight(
     away = fluid.critical_temperature - temperature
     near = away < _FLATTENED
     seen = _UNSEEN if away > SCALING_WITHIN else _UNSEEN_NEAR
-    words = place_words(now.height, window_of(scene)) + _direction(now, warming, seen) + "."
+    place = place_words(now.height, window_of(scene)) if most - least <= _SURE else range_words(least, most)
+    words = place + _direction(now, warming, seen) + "."
     return Sight(words, True, of="meniscus", numbers=numbers, trust=say.height_trust(charge.flattens, near))
 
 
@@ -58,6 +61,11 @@ def place_words(height: float, window: Window) -> str:
     if height > window.high:
         return f"The surface stands above the window, at {millimetres}"
     return f"The surface stands at {millimetres} on the scale"
+
+
+def range_words(least: float, most: float) -> str:
+    """As place_words, where the charge leaves more than a few millimetres open; heights [m]."""
+    return f"The surface stands between {least * 1000:.0f} and {most * 1000:.0f} mm, as far as the charge is known"
 
 
 def near_critical(scene: Scene, charge: Marks, warming: bool | None) -> Sight | None:

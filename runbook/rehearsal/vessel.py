@@ -1,38 +1,53 @@
 """The simulated vessel: advance(vessel, controls, dt) is pure; nothing here knows of procedures or screens.
 
-Plain on purpose: one temperature of the charge, one of the body, one of the source; vapour leaves by a choked
-hole; energies and masses are kept. Times show the trend. Raises OutsideValidity where the models end.
+One temperature of the charge, one of the body, one of the source. Closed, the heat balance is the one that left alone
+uses; open, what leaves is equilibrium flow through the holes that are open, and energy and mass are kept. Times show
+the trend. Raises OutsideValidity where the models end.
 """
 
 from __future__ import annotations
 
+import contextlib
 from dataclasses import dataclass, replace
-from math import pi, sqrt
 
+from runbook.charge.filling import air_pressure
 from runbook.charge.heat import HeatPath, Lumps
 from runbook.charge.heat import advance as advance_lumps
 from runbook.charge.isochore import Isochore
-from runbook.fluids.roots import bracketed_root
-from runbook.fluids.state import Region, State
+from runbook.charge.letdown import Contents, Hole, LetDown
+from runbook.errors import OutsideValidity
+from runbook.fluids.state import State
 from runbook.fluids.substance import Substance
 
-_GAS = 8.314462618
-"""[J/mol/K]"""
-_SOLID_CONTACT = 0.1
-"""Share of the coupling that lumps of solid in the open have, an estimate [1]."""
-_DISCHARGE = 0.84
-"""Discharge coefficient of a sharp hole [1]; common practice."""
-_GAMMA = 1.29
-"""Heat capacity ratio of carbon dioxide gas [1]."""
+_OPEN_CONTACT = 0.1
+"""Share of the coupling that lumps of solid, or liquid, in the open have, an estimate [1]."""
+_GONE = 1e-6
+"""[kg] below which a vessel counts as empty."""
 _GAS_CAPACITY = 700.0
-"""Heat capacity of carbon dioxide gas at fixed volume, about [J/kg/K]."""
-_STEP = 1.0
-"""Longest step while gas leaves [s]."""
+"""Heat capacity of a gas at fixed volume, about; only holds the step of a little gas in a warm body [J/kg/K]."""
+_STEP, _LEAK_STEP = 1.0, 30.0
+"""Longest step while gas leaves, and while it only seeps [s]."""
+_SEEPS = 2e-5
+"""Share of the charge a second under which it only seeps [1/s]."""
+RELIEF_BORE = 4.0e-3
+"""Bore of a relief device, which no apparatus file states: wide enough for what this vessel holds [m]."""
+_RESEATS = 0.9
+"""Share of its opening pressure at which a relief valve shuts again, common practice [1]."""
+
+
+@dataclass(frozen=True, slots=True)
+class Relieving:
+    """The relief device of the simulated vessel."""
+
+    opens_at: float
+    """Absolute [Pa]; infinite where it does not open at all."""
+    reseats: bool
+    """A valve shuts again; a disc does not."""
 
 
 @dataclass(frozen=True, slots=True)
 class Controls:
-    """What the operator has set."""
+    """What hands, and faults, have set."""
 
     vent_open: bool
     """Any way out to the room."""
@@ -44,6 +59,18 @@ class Controls:
     """[K]"""
     barometer: float
     """[Pa]"""
+    port: str = "top"
+    """Where that way out takes from."""
+    leak: float = 0.0
+    """Bore of a leak [m]; 0: tight."""
+    loss: float = 1.0
+    """Share of the body's loss to the room that is left [1]."""
+
+    @property
+    def holes(self) -> tuple[Hole, ...]:
+        """Every way out but the relief."""
+        ways = [Hole(self.bore, self.port)] if self.vent_open and self.bore > 0.0 else []
+        return (*ways, Hole(self.leak, "top")) if self.leak > 0.0 else tuple(ways)
 
 
 @dataclass(frozen=True, slots=True)
@@ -59,160 +86,173 @@ class Vessel:
     source_K: float
     """[K]"""
     in_the_open: bool
-    """Solid lies in the open vessel at the room's pressure."""
+    """Solid or liquid lies in the open vessel at the room's pressure."""
     released: float = 0.0
     """Gas given to the room so far [kg]."""
+    air: float = 0.0
+    """Closed in with the charge [mol]."""
+    relief_open: bool = False
+    """A relief device stands open."""
 
 
 class Simulation:
     """The physics of one vessel; holds no state but caches."""
 
-    def __init__(self, substance: Substance, volume: float, path: HeatPath) -> None:
+    def __init__(self, substance: Substance, volume: float, path: HeatPath, relief: Relieving | None = None) -> None:
         """volume [m3]."""
-        self.substance = substance
-        self.volume = volume
-        self.path = path
+        self.substance, self.volume, self.path, self.relief = substance, volume, path, relief
+        self._letdown = LetDown(substance, volume)
         self._isochore: tuple[float, Isochore] | None = None
+        self._state: tuple[tuple[float, float], State] | None = None
+
+    # -- looking --------------------------------------------------------------------------------------
 
     def loaded(self, vessel: Vessel, mass: float, barometer: float) -> Vessel:
-        """Solid of a mass [kg] laid into the open vessel, at its temperature in the open."""
-        temperature = self.sublimes_at(barometer)
+        """Solid (or liquid) of a mass [kg] laid into the open vessel, at its temperature in the open."""
+        temperature = self.in_the_open_at(barometer)
         density = max(mass / self.volume, 20.0)
         energy = self.substance.state(temperature, density).internal_energy or 0.0
         return replace(vessel, mass=mass, energy=energy, in_the_open=True)
 
-    def sublimes_at(self, pressure: float) -> float:
-        """Temperature of the solid at a pressure [Pa] below the triple point's [K]."""
-        fluid = self.substance
-        return bracketed_root(
-            lambda t: fluid.pressure(t, 500.0) - pressure, fluid.min_temperature, fluid.triple_temperature, 1e-4
-        )
+    def in_the_open_at(self, barometer: float) -> float:
+        """Temperature of what lies in the open [K]."""
+        return self.substance.boiling_temperature(barometer)
 
     def state(self, vessel: Vessel) -> State | None:
         """Of the closed charge; None when empty or in the open."""
-        if vessel.mass <= 0.0 or vessel.in_the_open:
+        if vessel.mass <= _GONE or vessel.in_the_open:
             return None
-        return self.state_of(vessel.mass / self.volume, vessel.energy)
-
-    def state_of(self, density: float, energy: float) -> State:
-        """The state at a density [kg/m3] and internal energy [J/kg]."""
-        fluid = self.substance
-        plateau = fluid.plateau(density)
-        if plateau is not None and plateau[0] <= energy <= plateau[1]:
-            return fluid.state(fluid.triple_temperature, density)
-        low, high = fluid.min_temperature + 5.0, 450.0
-        if plateau is not None:
-            low, high = (
-                (low, fluid.triple_temperature - 1e-6)
-                if energy < plateau[0]
-                else (
-                    fluid.triple_temperature + 1e-6,
-                    high,
-                )
-            )
-
-        def excess(temperature: float) -> float:
-            return (fluid.state(temperature, density).internal_energy or 0.0) - energy
-
-        if excess(low) >= 0.0:
-            return fluid.state(low, density)
-        return fluid.state(bracketed_root(excess, low, high, 1e-5), density)
+        key = (vessel.mass, vessel.energy)
+        if self._state is None or self._state[0] != key:
+            self._state = key, self._letdown.state(Contents(*key))
+        return self._state[1]
 
     def pressure(self, vessel: Vessel, controls: Controls) -> float:
-        """Absolute [Pa]."""
+        """Absolute [Pa], trapped air included."""
         state = self.state(vessel)
-        return controls.barometer if state is None else max(state.pressure, controls.barometer)
+        if state is None:
+            return controls.barometer
+        air = 0.0
+        if vessel.air > 0.0:
+            # Where the vessel is full of liquid the air is in it, and adds what nobody can say.
+            with contextlib.suppress(OutsideValidity):
+                air = air_pressure(self.substance, state.temperature, state.density, vessel.air, self.volume)
+        return max(state.pressure + air, controls.barometer)
 
     def wall(self, vessel: Vessel, controls: Controls) -> float:
         """Temperature of the wetted wall [K]: the charge's where there is one."""
         state = self.state(vessel)
         return vessel.body_K if state is None else state.temperature
 
+    # -- moving ---------------------------------------------------------------------------------------
+
     def advance(self, vessel: Vessel, controls: Controls, dt: float) -> Vessel:
         """The vessel after dt [s]."""
-        if vessel.mass <= 1e-6:
-            return self._empty(vessel, controls, dt)
-        if vessel.in_the_open:
-            if controls.vent_open:
-                return self._open(vessel, controls, dt)
-            vessel = replace(vessel, in_the_open=False)
-        if not controls.vent_open:
-            return self._closed(vessel, controls, dt)
         left = dt
-        while left > 0.0 and vessel.mass > 1e-6 and not vessel.in_the_open:
-            step = min(_STEP, left)
-            vessel = self._venting(vessel, controls, step)
+        while left > 1e-9:
+            vessel = self._relieved(vessel, controls)
+            if vessel.mass <= _GONE:
+                return self._empty(vessel, controls, left)
+            if vessel.in_the_open and controls.vent_open:
+                return self._open(vessel, controls, left)
+            vessel = replace(vessel, in_the_open=False)
+            holes = self._holes(vessel, controls)
+            if not holes:
+                step = min(left, _LEAK_STEP) if self.relief is not None else left
+                vessel = self._closed(vessel, controls, step)
+            else:
+                vessel, step = self._flowing(vessel, controls, holes, left)
             left -= step
-        return vessel if left <= 0.0 else self.advance(vessel, controls, left)
+        return self._relieved(vessel, controls)
+
+    def _relieved(self, vessel: Vessel, controls: Controls) -> Vessel:
+        """A relief device opens at its pressure; a valve shuts again well below it."""
+        if self.relief is None or vessel.in_the_open or vessel.mass <= _GONE:
+            return vessel
+        pressure = self.pressure(vessel, controls)
+        if not vessel.relief_open:
+            return replace(vessel, relief_open=True) if pressure >= self.relief.opens_at else vessel
+        shut = self.relief.reseats and pressure < _RESEATS * self.relief.opens_at
+        return replace(vessel, relief_open=False) if shut else vessel
+
+    def _holes(self, vessel: Vessel, controls: Controls) -> tuple[Hole, ...]:
+        return (*controls.holes, Hole(RELIEF_BORE, "top")) if vessel.relief_open else controls.holes
 
     def _empty(self, vessel: Vessel, controls: Controls, dt: float) -> Vessel:
         body = self.path.body_heat_capacity
         share = min(1.0, dt * self.path.loss_to_room / body) if body > 0 else 1.0
-        return replace(
-            vessel,
-            mass=0.0,
-            in_the_open=False,
-            body_K=vessel.body_K + share * (controls.room_K - vessel.body_K),
-        )
+        warmed = vessel.body_K + share * (controls.room_K - vessel.body_K)
+        return replace(vessel, mass=0.0, in_the_open=False, air=0.0, body_K=warmed)
 
     def _open(self, vessel: Vessel, controls: Controls, dt: float) -> Vessel:
-        """Solid sublimes in the open by what the body gives it."""
-        cold = self.sublimes_at(controls.barometer)
-        watt = _SOLID_CONTACT * self.path.from_fluid * max(0.0, vessel.body_K - cold)
-        gone = min(vessel.mass, watt * dt / 571e3)
+        """What lies in the open leaves by what the body gives it."""
+        cold = self.in_the_open_at(controls.barometer)
+        watt = _OPEN_CONTACT * self.path.from_fluid * max(0.0, vessel.body_K - cold)
+        gone = min(vessel.mass, watt * dt / self._latent(cold))
         warmed = self.path.loss_to_room * (controls.room_K - vessel.body_K)
         body = vessel.body_K + (warmed - watt) * dt / self.path.body_heat_capacity
         return replace(vessel, mass=vessel.mass - gone, body_K=body, released=vessel.released + gone)
 
+    def _latent(self, temperature: float) -> float:
+        """Heat [J/kg] from what lies in the open to its vapour at a temperature [K]."""
+        fluid = self.substance
+        if fluid.solid is not None and temperature < fluid.triple_temperature:
+            return fluid.solid.heat_of_sublimation(temperature)
+        both = fluid.saturation(temperature)
+        return temperature * (both.vapour_entropy - both.liquid_entropy)
+
     def _closed(self, vessel: Vessel, controls: Controls, dt: float) -> Vessel:
         isochore = self._isochore_of(vessel.mass / self.volume)
         energy = max(vessel.energy, isochore.energies[0])
+        path = replace(self.path, loss_to_room=controls.loss * self.path.loss_to_room)
         lumps = Lumps(energy, vessel.body_K, vessel.source_K)
-        after = advance_lumps(lumps, vessel.mass, isochore, self.path, controls.room_K, controls.heating, dt)
+        after = advance_lumps(lumps, vessel.mass, isochore, path, controls.room_K, controls.heating, dt)
         return replace(vessel, energy=after.fluid_energy, body_K=after.body_K, source_K=after.source_K)
 
-    def _venting(self, vessel: Vessel, controls: Controls, dt: float) -> Vessel:
-        """Vapour leaves by a choked hole; what stays is cooled by it."""
-        density = vessel.mass / self.volume
-        state = self.state_of(density, vessel.energy)
+    def _flowing(
+        self, vessel: Vessel, controls: Controls, holes: tuple[Hole, ...], longest: float
+    ) -> tuple[Vessel, float]:
+        """One step [s] of what leaves; what stays is cooled by it, and warmed by the body."""
+        state = self.state(vessel)
+        assert state is not None, "something closed is in it"
         if state.pressure <= controls.barometer * 1.001:
-            solid = state.region is Region.SOLID_VAPOUR
-            return replace(vessel, in_the_open=solid, mass=vessel.mass if solid else 0.0)
-        gone = min(self.flow(state, controls) * dt, 0.2 * vessel.mass)
+            lies = (state.solid or 0.0) > 0.0 or (0.0 < (state.liquid or 0.0) < 1.0)
+            return replace(vessel, in_the_open=lies, mass=vessel.mass if lies else 0.0), 0.0
+        out = [self._letdown.leaving(state, hole, controls.barometer) for hole in holes]
+        flow = sum(one.flow for one in out)
+        seeps = flow < _SEEPS * vessel.mass
+        step = min(longest, _LEAK_STEP if seeps else _STEP, 0.01 * vessel.mass / flow if flow > 0.0 else longest)
         # Implicit in the charge's own warming: a little gas in a warm body must not overshoot it.
-        coupling = self.path.from_fluid * dt
-        heat = coupling * (vessel.body_K - state.temperature) / (1.0 + coupling / (vessel.mass * _GAS_CAPACITY))
+        coupling = self.path.from_fluid * step
+        gap = vessel.body_K - state.temperature
+        heat = coupling * gap / (1.0 + coupling / (vessel.mass * _GAS_CAPACITY))
+        gone = min(flow * step, 0.5 * vessel.mass)
+        carried = sum(one.flow * one.enthalpy for one in out) / flow * gone if flow > 0.0 else 0.0
         left = vessel.mass - gone
-        total = vessel.mass * vessel.energy + heat - gone * self._leaving(state)
-        room = self.path.loss_to_room * (controls.room_K - vessel.body_K) * dt
-        body = vessel.body_K + (room - heat) / self.path.body_heat_capacity
-        return replace(vessel, mass=left, energy=total / left, body_K=body, released=vessel.released + gone)
+        body, source = self._warmed(vessel, controls, heat, step)
+        return replace(
+            vessel,
+            mass=left,
+            energy=(vessel.mass * vessel.energy + heat - carried) / left,
+            body_K=body,
+            source_K=source,
+            released=vessel.released + gone,
+            # Air leaves with the vapour it is in.
+            air=vessel.air * (left / vessel.mass),
+        ), step
 
-    def flow(self, state: State, controls: Controls) -> float:
-        """Mass flow of vapour [kg/s] through the bore, ideal gas: choked above 1.8 times the barometer."""
-        fluid = self.substance
-        area = pi * controls.bore**2 / 4.0
-        ratio = controls.barometer / state.pressure
-        specific = _GAS / fluid.molar_mass
-        root = sqrt(_GAMMA / (specific * state.temperature))
-        if ratio < (2.0 / (_GAMMA + 1.0)) ** (_GAMMA / (_GAMMA - 1.0)):
-            factor: float = (2.0 / (_GAMMA + 1.0)) ** ((_GAMMA + 1.0) / (2.0 * (_GAMMA - 1.0)))
-            return _DISCHARGE * area * state.pressure * root * factor
-        a, b = ratio ** (2.0 / _GAMMA), ratio ** ((_GAMMA + 1.0) / _GAMMA)
-        shape = sqrt(max(0.0, 2.0 / (_GAMMA - 1.0) * (a - b)))
-        return _DISCHARGE * area * state.pressure * root * shape
-
-    def _leaving(self, state: State) -> float:
-        """Enthalpy of the vapour that leaves [J/kg]."""
-        fluid = self.substance
-        if state.region in (Region.LIQUID_VAPOUR,):
-            both = fluid.saturation(state.temperature)
-            return both.vapour_energy + both.pressure / both.vapour_density
-        if state.region in (Region.SOLID_VAPOUR, Region.THREE_PHASE):
-            # Vapour's enthalpy hardly changes over the few kelvin below the triple point.
-            both = fluid.saturation(fluid.triple_temperature)
-            return both.vapour_energy + both.pressure / both.vapour_density
-        return (state.internal_energy or 0.0) + state.pressure / state.density
+    def _warmed(self, vessel: Vessel, controls: Controls, given: float, dt: float) -> tuple[float, float]:
+        """Body and source [K] after dt [s] in which the body gave the charge so much [J]."""
+        path = self.path
+        room = controls.loss * path.loss_to_room * (controls.room_K - vessel.body_K) * dt
+        if path.source_heat_capacity <= 0.0:
+            return vessel.body_K + (room - given) / path.body_heat_capacity, vessel.source_K
+        across = path.source_coupling * (vessel.source_K - vessel.body_K) * dt
+        limit = controls.heating if isinstance(controls.heating, float) else path.source_limit_K
+        on = controls.heating is not False and (limit is None or vessel.source_K < limit)
+        power = path.source_power * dt if on else 0.0
+        body = vessel.body_K + (room + across - given) / path.body_heat_capacity
+        return body, vessel.source_K + (power - across) / path.source_heat_capacity
 
     def _isochore_of(self, density: float) -> Isochore:
         if self._isochore is None or self._isochore[0] != density:

@@ -3,37 +3,42 @@
 It holds no rules of a run. What is shown comes from the conductor's standing, what is done goes to it as an act.
 The screens follow each other in `journey`; this module only keeps what must hold whatever screen is up: make safe
 first, nothing typed is lost, no key that waited behind a stall, no exit without a question.
+
+What a run needs is imported when one is opened: the first screen is painted without it.
 """
 
 from __future__ import annotations
 
 import asyncio
 import contextlib
+import gc
 import signal
 import time
 from collections.abc import Awaitable, Callable
 from typing import TYPE_CHECKING, ClassVar
 
 from textual import events
+from textual._styles_cache import StylesCache
 from textual.app import App
 from textual.binding import Binding, BindingType
 
-from runbook.bench.pace import Pace
 from runbook.bench.place import Place
 from runbook.bench.stall import StallGuard
 from runbook.bench.style import MAKE_SAFE_KEY, STALL_S
-from runbook.drawing import UNICODE, Glyphs
-from runbook.errors import ExitCode
-from runbook.run.acts import LeaveTool
+from runbook.errors import ExitCode, RunbookError
 
 if TYPE_CHECKING:
+    from runbook.bench.pace import Pace
     from runbook.bench.screens.run import RunScreen
+    from runbook.drawing import Glyphs
     from runbook.run.conductor import Conductor
 
 Journey = Callable[["BenchApp"], Awaitable[int]]
 """Shows one screen after the other; its result is the exit code."""
 REFRESH_S = 0.5
 """[s] between two looks at the clock; ages and times are shown in whole seconds."""
+TIDY_S = 1.0
+"""[s] between two collections: each screen leaves a thousand objects, a hundred at once hold up a key by 0.1 s."""
 LEAVING_S = 1.0
 """[s] the last event may take to reach the disk when the terminal is closed."""
 
@@ -51,11 +56,11 @@ class BenchApp(App[int]):
         Binding("ctrl+c", "quit", "leave", show=False, priority=True),
     ]
 
-    def __init__(self, journey: Journey, glyphs: Glyphs = UNICODE, *, drop_stalled: bool = True) -> None:
+    def __init__(self, journey: Journey, *, ascii_only: bool = False, drop_stalled: bool = True) -> None:
         """Show `journey`; without `drop_stalled` every key counts, however late."""
         super().__init__()
         self._journey = journey
-        self.glyphs = glyphs
+        self._ascii_only = ascii_only
         self.desk: Conductor | None = None
         """The open run; None before one is opened."""
         self.pace: Pace | None = None
@@ -64,6 +69,10 @@ class BenchApp(App[int]):
         """REHEARSAL and its speed; empty at the vessel."""
         self.drafts: dict[str, str] = {}
         """What was typed and neither finished nor thrown away."""
+        self.painted = asyncio.Event()
+        """The first screen stands; what comes now may take its time."""
+        self.failed: RunbookError | None = None
+        """Why the session could not go on; said when the screen is gone."""
         self.ended = asyncio.Event()
         """The run is over: closed, or left."""
         self.leaving = False
@@ -84,17 +93,32 @@ class BenchApp(App[int]):
         if self._guard is not None:
             self._guard.beats(time.monotonic())
             self.set_interval(STALL_S / 3.0, self._beat)
+            self.set_interval(TIDY_S, _tidy)
         self.set_interval(REFRESH_S, self.look)
         self.run_worker(self._begin(), name="journey", exit_on_error=True)
 
     async def _begin(self) -> None:
-        self.exit(await self._journey(self))
+        try:
+            self.exit(await self._journey(self))
+        except RunbookError as error:
+            self.failed = error
+            self.exit(int(error.exit_code))
+
+    @property
+    def glyphs(self) -> Glyphs:
+        """What pictures are drawn with."""
+        from runbook.drawing import ASCII, UNICODE
+
+        return ASCII if self._ascii_only else UNICODE
 
     # -- the run ----------------------------------------------------------------------------------------
 
     def take(self, desk: Conductor, pace: Pace | None = None) -> None:
         """The run that the screens show from now on."""
         self.desk, self.pace = desk, pace
+        if self._guard is not None:
+            # The plan stays to the end: walking through it again and again holds up keys.
+            gc.freeze()
         desk.changed = self.changed
         self._mark()
 
@@ -128,6 +152,9 @@ class BenchApp(App[int]):
     def _mark(self) -> None:
         if self.pace is not None:
             self.rehearsal_mark = f"REHEARSAL {self.pace.words}".strip()
+        elif self.desk is not None and self.desk.ledger.rehearsal:
+            # Taken up again at the bench: its record still says what it was.
+            self.rehearsal_mark = "REHEARSAL"
 
     def _ring(self) -> None:
         """The bell once for every look while the way back stands and nobody has said that it was heard."""
@@ -209,6 +236,8 @@ class BenchApp(App[int]):
             return
         self.leaving = True
         if self.desk is not None and not self.ended.is_set():
+            from runbook.run.acts import LeaveTool
+
             await self.desk.act(LeaveTool())
             with contextlib.suppress(TimeoutError):
                 await asyncio.wait_for(self.desk.settled(), LEAVING_S)
@@ -224,3 +253,12 @@ class BenchApp(App[int]):
         from runbook.bench.screens.run import RunScreen
 
         return next((screen for screen in self.screen_stack if isinstance(screen, RunScreen)), None)
+
+
+def _tidy() -> None:
+    """Throw away what closed screens have left, before it is so much that a key has to wait for it."""
+    # The toolkit keeps the painted rows of a thousand widgets that are gone, as keys of a memory of colours.
+    forget = getattr(getattr(StylesCache, "get_inner_outer", None), "cache_clear", None)
+    if forget is not None:
+        forget()
+    gc.collect()

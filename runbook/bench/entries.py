@@ -7,14 +7,14 @@ from __future__ import annotations
 
 import re
 from pathlib import Path
-from typing import Final
+from typing import TYPE_CHECKING, Final
 
 from runbook.bench.screens.listing import Entry
 from runbook.errors import InputUnusable, JournalError, RunbookError
 from runbook.procedure.shelf import list_procedures, shipped_folder
-from runbook.quantities import say
-from runbook.run.logbook import Logbook, RunFile
-from runbook.run.opening import charge_record, unfinished
+
+if TYPE_CHECKING:
+    from runbook.run.logbook import Logbook, RunFile
 
 _NAME: Final = re.compile(r"^name:\s*(.+?)\s*(?:\s#.*)?$", re.MULTILINE)
 _HEAD: Final = 4096
@@ -49,6 +49,10 @@ def procedures() -> tuple[tuple[Entry, ...], tuple[str, ...]]:
 
 def recorded(logbook: Logbook) -> tuple[tuple[Entry, ...], tuple[str, ...]]:
     """Open runs and loaded vessels, and what could not be read."""
+    # Here, not above: the list stands on the screen before these are needed.
+    from runbook.quantities import say
+    from runbook.run.opening import charge_record, unfinished
+
     try:
         runs = logbook.runs()
     except JournalError as error:

@@ -1,96 +1,129 @@
-"""One session, screen after screen: list, briefing, run, record."""
+"""One session, screen after screen, from the first painted one: list or opening, then a run's course.
+
+The first screen is painted with what Textual brings and names of files alone. Models, the run and the computing
+process come after it, the process first: it takes longest and does so on a core of its own.
+"""
 
 from __future__ import annotations
 
 import asyncio
 import contextlib
-import tempfile
 from collections.abc import Callable
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from runbook.answers import BindRequest, ChargeBox
+from runbook.bench import loading
 from runbook.bench.entries import procedures, recorded
-from runbook.bench.people import performer
-from runbook.bench.resuming import opening_of, request_from_record
-from runbook.bench.screens.briefing import BriefingScreen
 from runbook.bench.screens.listing import Entry, ListScreen
-from runbook.bench.screens.people import PeopleScreen
-from runbook.bench.screens.record import RecordScreen
-from runbook.bench.screens.run import RunScreen
-from runbook.bench.screens.setup import SetUpScreen
-from runbook.bench.simulated import Simulated
 from runbook.errors import ExitCode, RunbookError
-from runbook.procedure.reader import read_procedure
-from runbook.run.acts import Note
-from runbook.run.clock import Clock, ScaledClock, SystemClock
-from runbook.run.conductor import Conductor
-from runbook.run.engine import Bound, ChildEngine
-from runbook.run.journal import Journal, JournalWriter, read
-from runbook.run.logbook import Logbook, RunFile
-from runbook.run.opening import Participant, charge_record, people, played, run_opened
-from runbook.run.record import record_lines
 
 if TYPE_CHECKING:
     from runbook.bench.app import BenchApp
+    from runbook.bench.course import Course
+    from runbook.run.clock import Clock
+    from runbook.run.conductor import Conductor
+    from runbook.run.engine import ChildEngine
+    from runbook.run.logbook import Logbook
 
 
 @dataclass
 class Session:
     """What a session at the screens begins with."""
 
-    logbook: Logbook
+    folder: Path | None
+    """Of the logbook; None: where the system keeps it."""
     on: str
     """ISO date on which certificates are judged at the vessel."""
     start: Entry | None = None
     """Straight to this entry; None: the list."""
     seed: int = 1
     """Of a rehearsal's instruments."""
-    make_engine: Callable[[], ChildEngine] = ChildEngine
-    clock: Clock = field(default_factory=SystemClock)
+    make_engine: Callable[[], ChildEngine] | None = None
+    """Another computing process than the usual one."""
+    clock: Clock | None = None
+    """Another clock than the system's."""
     left: Conductor | None = None
     """The run as it was left, for the card that is printed."""
 
     async def __call__(self, app: BenchApp) -> int:
-        """The whole session; the exit code."""
-        engine = self.make_engine()
-        # The library loads while somebody reads the list.
+        """The whole session; the exit code. Raises RunbookError where what was named cannot be used."""
+        app.painted.clear()
+        course = asyncio.ensure_future(self._course(app))
+        try:
+            return await self._session(app, course)
+        finally:
+            course.cancel()
+            with contextlib.suppress(asyncio.CancelledError, RunbookError):
+                await (await course).close()
+
+    async def _course(self, app: BenchApp) -> Course:
+        """Everything a run needs, brought in once the first screen stands."""
+        await app.painted.wait()
+        await loading.load(loading.ENGINE)
+        from runbook.run.engine import ChildEngine
+
+        engine = (self.make_engine or ChildEngine)()
+        # Its library loads on the other core while the rest is read here, and while somebody reads the list.
         warming = asyncio.ensure_future(_warm(engine))
         try:
-            return await self._session(app, engine)
-        finally:
-            warming.cancel()
-            with contextlib.suppress(asyncio.CancelledError):
-                await warming
-            await engine.close()
+            await loading.load(loading.RUN)
+            from runbook.bench.course import Course
+            from runbook.run.clock import SystemClock
 
-    async def _session(self, app: BenchApp, engine: ChildEngine) -> int:
-        entry = self.start
+            return Course(engine, warming, self._logbook(), self.on, self.seed, self.clock or SystemClock())
+        except BaseException:
+            warming.cancel()
+            await engine.close()
+            raise
+
+    def _logbook(self) -> Logbook:
+        """Raises JournalError where no folder can be told."""
+        from runbook.run.logbook import Logbook, logbook_folder
+
+        return Logbook(logbook_folder(self.folder))
+
+    async def _session(self, app: BenchApp, coming: asyncio.Future[Course]) -> int:
+        if self.start is not None:
+            return await self._straight(app, coming, self.start)
         said: tuple[str, ...] = ()
         while True:
+            entry = await self._listed(app, coming, said)
             if entry is None:
-                entry = await self._listed(app, said)
-                if entry is None:
-                    return int(ExitCode.GOOD)
+                return int(ExitCode.GOOD)
+            said = ()
             try:
-                desk = await self._opened(app, engine, entry)
+                course = await asyncio.shield(coming)
+                desk = await course.opened(app, entry)
             except RunbookError as error:
-                if self.start is not None:
-                    raise
                 desk, said = None, (str(error),)
             if desk is not None:
-                return await self._run(app, desk)
-            if self.start is not None:
-                return int(ExitCode.NOT_GOOD)
-            entry = None
+                return await self._run(app, course, desk)
 
-    async def _listed(self, app: BenchApp, said: tuple[str, ...]) -> Entry | None:
+    async def _straight(self, app: BenchApp, coming: asyncio.Future[Course], start: Entry) -> int:
+        from runbook.bench.screens.opening import OpeningScreen
+
+        app.push_screen(OpeningScreen(start))
+        app.call_after_refresh(app.painted.set)
+        course = await asyncio.shield(coming)
+        desk = await course.opened(app, start)
+        return int(ExitCode.NOT_GOOD) if desk is None else await self._run(app, course, desk)
+
+    async def _run(self, app: BenchApp, course: Course, desk: Conductor) -> int:
+        self.left = desk
+        return await course.run(app, desk)
+
+    async def _listed(self, app: BenchApp, coming: asyncio.Future[Course], said: tuple[str, ...]) -> Entry | None:
         entries, wrong = procedures()
         screen = ListScreen(entries, (*wrong, *said))
 
         async def fill() -> None:
-            found, unread = await asyncio.to_thread(recorded, self.logbook)
+            app.call_after_refresh(app.painted.set)
+            try:
+                logbook = (await asyncio.shield(coming)).logbook
+                found, unread = await asyncio.to_thread(recorded, logbook)
+            except RunbookError as error:
+                found, unread = (), (str(error),)
             if screen.is_attached:
                 screen.add(found, unread)
 
@@ -98,99 +131,12 @@ class Session:
         try:
             return await app.push_screen_wait(screen)
         finally:
-            await filling
-
-    async def _opened(self, app: BenchApp, engine: ChildEngine, entry: Entry) -> Conductor | None:
-        if entry.kind == "resume":
-            return await self._resumed(app, engine, Path(entry.path))
-        rehearsal = entry.kind == "rehearse"
-        if rehearsal:
-            app.rehearsal_mark = "REHEARSAL"
-        known = read_procedure(Path(entry.path))
-        # A rehearsal is about the steps: certificates are judged on the procedure's own date.
-        on = str(known.procedure.issue.date) if rehearsal else self.on
-        held, said = (None, "") if rehearsal else self._held(known.apparatus.tag)
-        request = BindRequest(entry.path, on, charge=held, cell_closed=held is not None)
-        briefed = await app.push_screen_wait(BriefingScreen(engine.bind, request, held, rehearsal, said))
-        if briefed is None:
-            app.rehearsal_mark = ""
-            return None
-        bound, request = briefed
-        who = played(bound.plan.roles) if rehearsal else await self._people(app, bound)
-        if who is None or not (rehearsal or await app.push_screen_wait(_set_up(bound, request))):
-            return None
-        return await self._begun(app, engine, bound, request, who, rehearsal)
-
-    async def _people(self, app: BenchApp, bound: Bound) -> tuple[Participant, ...] | None:
-        roles = bound.plan.roles
-
-        def wrong(found: tuple[Participant, ...]) -> None:
-            people(found, roles)
-
-        return await app.push_screen_wait(PeopleScreen(roles, wrong))
-
-    async def _begun(
-        self,
-        app: BenchApp,
-        engine: ChildEngine,
-        bound: Bound,
-        request: BindRequest,
-        who: tuple[Participant, ...],
-        rehearsal: bool,
-    ) -> Conductor:
-        clock = ScaledClock(self.clock) if rehearsal else self.clock
-        path = self.logbook.new_run_path(bound.plan.vessel, clock.now(), rehearsal)
-        desk = Conductor(JournalWriter(Journal.create(path)), clock, engine)
-        await desk.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal))
-        if isinstance(clock, ScaledClock):
-            # The first person is who sits here; all others are played.
-            pace = Simulated(clock, who[1:])
-            await pace.open(request, bound.plan, self.seed)
-            app.take(desk, pace)
-        else:
-            app.take(desk)
-            await desk.act(Note("Set-up check confirmed point by point.", performer(desk.ledger)))
-        return desk
-
-    async def _resumed(self, app: BenchApp, engine: ChildEngine, path: Path) -> Conductor:
-        journal, records = Journal.open(path)
-        opened = opening_of(records, path)
-        folder = tempfile.TemporaryDirectory(prefix="runbook-")
-        request = request_from_record(opened, Path(folder.name))
-        engine.request = request
-        desk = Conductor(JournalWriter(journal), self.clock, engine)
-        await desk.resume(records, "the run was taken up again")
-        app.take(desk)
-        return desk
-
-    def _held(self, vessel: str) -> tuple[ChargeBox | None, str]:
-        """What the vessel's charge record says is in it, and what of its history cannot be read."""
-        skipped: list[RunFile] = []
-        record = charge_record(self.logbook, vessel, skipped)
-        said = " ".join(f"{run.path.name} cannot be read: {run.damaged}" for run in skipped)
-        return (None if record is None else record.box), said
-
-    async def _run(self, app: BenchApp, desk: Conductor) -> int:
-        app.push_screen(RunScreen(desk))
-        try:
-            await app.ended.wait()
-            await desk.settled()
-            outcome = desk.ledger.outcome or "left"
-            where = "" if desk.journal is None else str(desk.journal.path)
-            lines = () if desk.journal is None else record_lines(read(desk.journal.path).records)
-            await app.push_screen_wait(RecordScreen(outcome, where, lines))
-            return int(ExitCode.GOOD if outcome == "completed" else ExitCode.NOT_GOOD)
-        finally:
-            self.left = desk
-            if isinstance(app.pace, Simulated):
-                await app.pace.close()
-            await desk.close()
+            if not coming.done():
+                filling.cancel()
+            with contextlib.suppress(asyncio.CancelledError):
+                await filling
 
 
 async def _warm(engine: ChildEngine) -> None:
     with contextlib.suppress(RunbookError):
         await engine.warm()
-
-
-def _set_up(bound: Bound, request: BindRequest) -> SetUpScreen:
-    return SetUpScreen(bound.plan.bring, request.cell_closed)

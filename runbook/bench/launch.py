@@ -6,13 +6,14 @@ import contextlib
 import errno
 import os
 import sys
+from typing import TYPE_CHECKING
 
 from runbook.bench.app import BenchApp
-from runbook.bench.card import card_lines
-from runbook.bench.journey import Session
-from runbook.drawing import ASCII, UNICODE
 from runbook.errors import ExitCode, InputUnusable
-from runbook.run.conductor import Conductor
+
+if TYPE_CHECKING:
+    from runbook.bench.journey import Session
+    from runbook.run.conductor import Conductor
 
 
 def check_terminal(command: str) -> None:
@@ -25,8 +26,11 @@ def check_terminal(command: str) -> None:
 
 
 def run_screens(session: Session, ascii_only: bool = False) -> int:
-    """Show the session; the exit code. A closed terminal ends it without a traceback."""
-    app = BenchApp(session, ASCII if ascii_only else UNICODE)
+    """Show the session; the exit code. A closed terminal ends it without a traceback.
+
+    Raises RunbookError where the session could not go on; the screen is gone then.
+    """
+    app = BenchApp(session, ascii_only=ascii_only)
     gone = False
     try:
         app.run()
@@ -37,6 +41,8 @@ def run_screens(session: Session, ascii_only: bool = False) -> int:
     if gone:
         _forget_terminal()
         return int(ExitCode.NOT_GOOD)
+    if app.failed is not None:
+        raise app.failed
     if app.return_code:
         return app.return_code
     if session.left is not None and session.left.ledger.outcome is None:
@@ -47,6 +53,8 @@ def run_screens(session: Session, ascii_only: bool = False) -> int:
 
 def _print_card(desk: Conductor) -> None:
     """What to do at the bench, on paper or in the scrollback, now that no screen says it."""
+    from runbook.bench.card import card_lines
+
     with contextlib.suppress(OSError):
         print("\n".join(card_lines(desk)))
 

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from typing import Protocol
+from typing import TYPE_CHECKING, Protocol
 
-from runbook.run.state import Ledger
+if TYPE_CHECKING:
+    from runbook.run.state import Ledger
 
 
 class Pace(Protocol):

@@ -71,7 +71,6 @@ def _on_screens(kind: str, path: Path, on: str, logbook: Path | None, ascii_only
     from runbook.bench.entries import title_of
     from runbook.bench.journey import Session
     from runbook.bench.screens.listing import Entry
-    from runbook.run.logbook import Logbook, logbook_folder
 
     start = Entry(kind, title_of(path), str(path.parent), str(path))
-    return run_screens(Session(Logbook(logbook_folder(logbook)), on, start=start), ascii_only)
+    return run_screens(Session(logbook, on, start=start), ascii_only)

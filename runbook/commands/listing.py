@@ -16,9 +16,8 @@ def main(argv: list[str]) -> int:
     if sys.stdin.isatty() and sys.stdout.isatty() and sys.stderr.isatty():
         from runbook.bench.journey import Session
         from runbook.bench.launch import run_screens
-        from runbook.run.logbook import Logbook, logbook_folder
 
-        return run_screens(Session(Logbook(logbook_folder(None)), iso_date(None).isoformat()))
+        return run_screens(Session(None, iso_date(None).isoformat()))
     print("\n".join(list_lines()))
     return int(ExitCode.GOOD)
 

@@ -51,10 +51,9 @@ def _on_screens(path: Path, asked: Any) -> int:
     from runbook.bench.entries import title_of
     from runbook.bench.journey import Session
     from runbook.bench.screens.listing import Entry
-    from runbook.run.logbook import Logbook, logbook_folder
 
     start = Entry("rehearse", title_of(path), str(path.parent), str(path))
-    session = Session(Logbook(logbook_folder(asked.logbook)), iso_date(None).isoformat(), start=start, seed=asked.seed)
+    session = Session(asked.logbook, iso_date(None).isoformat(), start=start, seed=asked.seed)
     return run_screens(session, asked.ascii)
 
 

@@ -12,7 +12,7 @@ from math import acos, exp, log1p, pi, sqrt
 
 from runbook.errors import OutsideValidity
 from runbook.fluids.catalogue import find
-from runbook.fluids.substance import Region, Substance
+from runbook.fluids.substance import Substance
 
 SODIUM = 589.3e-9
 """Wavelength in vacuum [m]: the sodium D lines, the middle of what the eye sees."""
@@ -109,6 +109,7 @@ def turbidity(substance: Substance, temperature: float, density: float) -> Haze 
         near = abs(temperature - substance.critical_temperature) < SCALING_WITHIN
         compressed, correlated = (_scaling if near else _equation)(substance, temperature, phase, length, amplitude)
     except (OutsideValidity, ZeroDivisionError):
+        # Solid under pressure has no slope.
         return None
     seen = index_of(substance, phase)
     assert seen is not None, "the same fluid's index was known a moment ago"
@@ -116,12 +117,13 @@ def turbidity(substance: Substance, temperature: float, density: float) -> Haze 
 
 
 def _phase(substance: Substance, temperature: float, density: float) -> float | None:
-    """Density [kg/m3] of the one phase that is looked at."""
-    region = substance.region(temperature, density)
-    if region is Region.LIQUID_VAPOUR:
-        return substance.saturation(temperature).vapour_density * (1.0 - _BESIDE)
-    if region in (Region.SOLID_VAPOUR, Region.SOLID_LIQUID, Region.THREE_PHASE):
+    """Density [kg/m3] of the one phase that is looked at; None where there may be solid."""
+    if temperature <= substance.triple_temperature:
         return None
+    if temperature < substance.critical_temperature:
+        both = substance.saturation(temperature)
+        if both.vapour_density <= density <= both.liquid_density:
+            return both.vapour_density * (1.0 - _BESIDE)
     return density
 
 

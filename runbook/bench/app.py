@@ -37,6 +37,8 @@ Journey = Callable[["BenchApp"], Awaitable[int]]
 """Shows one screen after the other; its result is the exit code."""
 REFRESH_S = 0.5
 """[s] between two looks at the clock; ages and times are shown in whole seconds."""
+TYPING_S = 0.1
+"""[s] after a key; the next one is likely."""
 TIDY_S = 1.0
 """[s] between two collections: each screen leaves a thousand objects, a hundred at once hold up a key by 0.1 s."""
 LEAVING_S = 1.0
@@ -78,6 +80,8 @@ class BenchApp(App[int]):
         self.leaving = False
         self._heard: int | None = None
         """Number of the entry whose bell was heard."""
+        self._keyed = 0.0
+        """[s] when the last key came."""
         self._guard = StallGuard(time.monotonic()) if drop_stalled else None
 
     # -- beginning --------------------------------------------------------------------------------------
@@ -170,8 +174,14 @@ class BenchApp(App[int]):
 
     # -- keys -------------------------------------------------------------------------------------------
 
+    def typing(self) -> bool:
+        """Whether a key came just now, so that whatever can wait should."""
+        return time.monotonic() - self._keyed < TYPING_S
+
     async def on_event(self, event: events.Event) -> None:
         """Keys that waited behind a stall are dropped, all but make safe."""
+        if isinstance(event, events.Key):
+            self._keyed = time.monotonic()
         if (
             self._guard is not None
             and isinstance(event, (events.Key, events.Paste))

@@ -60,14 +60,14 @@ class Session:
     async def _course(self, app: BenchApp) -> Course:
         """Everything a run needs, brought in once the first screen stands."""
         await app.painted.wait()
-        await loading.load(loading.ENGINE)
+        await loading.load(loading.ENGINE, app.typing)
         from runbook.run.engine import ChildEngine
 
         engine = (self.make_engine or ChildEngine)()
         # Its library loads on the other core while the rest is read here, and while somebody reads the list.
         warming = asyncio.ensure_future(_warm(engine))
         try:
-            await loading.load(loading.RUN)
+            await loading.load(loading.RUN, app.typing)
             from runbook.bench.course import Course
             from runbook.run.clock import SystemClock
 

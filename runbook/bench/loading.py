@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import asyncio
 import gc
+from collections.abc import Callable
 from importlib import import_module
 from typing import Final
 
@@ -60,13 +61,17 @@ RUN: Final = (
 )
 """The rest of a run, as far as its last screen."""
 TURN_S: Final = 0.004
-"""[s] between two slices: a key needs several turns of the loop from the terminal to the screen."""
+"""[s] between two slices."""
+KEY_S: Final = 0.03
+"""[s] between two slices while somebody types: from the terminal to the screen a key needs many turns of the loop."""
 
 
-async def load(names: tuple[str, ...]) -> None:
-    """Import these modules, one at a turn of the loop."""
+async def load(names: tuple[str, ...], typing: Callable[[], bool]) -> None:
+    """Import these modules, one at a turn of the loop, and more slowly while somebody types."""
     for name in names:
         import_module(name)
+        # What is loaded stays: the collector need not walk through it again while somebody types.
+        gc.freeze()
         await asyncio.sleep(TURN_S)
-    # What is loaded stays: the collector need not walk through it again while somebody types.
-    gc.freeze()
+        if typing():
+            await asyncio.sleep(KEY_S)

@@ -79,19 +79,24 @@ def ask(view: AskView, width: int, height: int, page: int = 0, glyphs: Glyphs = 
     shape = {"yes": glyphs.yes, "not yet": glyphs.not_yet, "blocked": glyphs.blocked}[view.state]
     lead = f"{shape} {view.word}"
     indent = max(len(lead) + 2, 12)
+    rows = _items(view.items, indent, room) or [EMPTY]
+    key = row((view.key, "key"))
+    whole = len(rows) < height or (len(rows) == height and rows[-1].width + key.width < room)
+    if not whole and view.state == "blocked" and len(view.items) > 1 and not view.items[0][1]:
+        # What stands in the way goes before what it stands in the way of.
+        rows = _items(view.items[1:], indent, room)
+        whole = len(rows) < height or (len(rows) == height and rows[-1].width + key.width < room)
+    shown = last_beside(rows, key, room) if whole else fitted(rows, height, room, page, key, forced=True)
+    return [Row(((lead.ljust(indent), view.state), *shown[0].spans[1:])), *shown[1:]]
+
+
+def _items(items: tuple[tuple[str, str], ...], indent: int, room: int) -> list[Row]:
+    """Each reason, and beneath it what clears it."""
     rows: list[Row] = []
-    for what, clears in view.items:
+    for what, clears in items:
         rows += _indented("", what, indent, room)
         rows += _indented("clears it", clears, indent, room)
-    first = rows[0].spans[1:] if rows else ()
-    rows[:1] = [Row(((lead.ljust(indent), view.state), *first))]
-    key = row((view.key, "key"))
-    if len(rows) > height:
-        return fitted(rows, height, room, page, key)
-    if len(rows) < height or not view.key:
-        return last_beside(rows, key, room) if view.key else rows
-    joined = beside(rows[-1], key, room)
-    return [*rows[:-1], joined] if joined is not rows[-1] else fitted(rows, height, room, page, key, forced=True)
+    return rows
 
 
 def _indented(lead: str, text: str, indent: int, room: int) -> list[Row]:
@@ -177,14 +182,23 @@ def fitted(
         return rows + [EMPTY] * (height - len(rows))
     if height < 1:
         return []
+    shown, more = _page(rows, height, page, key)
+    if height < 3 or all(one.width <= width - more.width - 2 for one in rows):
+        return [*shown[:-1], _marked(shown[-1], more, width)]
+    # Where there are rows enough, no sentence is cut for the sake of the marker.
+    shown, more = _page(rows, height - 1, page, key)
+    return [*shown, beside(EMPTY, more, width)]
+
+
+def _page(rows: list[Row], height: int, page: int, key: Row) -> tuple[list[Row], Row]:
+    """The rows of one page, and what stands at its end."""
     pages = -(-len(rows) // height)
     start = min((page % pages) * height, max(0, len(rows) - height))
-    shown = rows[start : start + height]
-    hidden = max(1, len(rows) - height)
-    more = row((f"{hidden} of {len(rows)} lines more", "not yet"))
+    hidden = len(rows) - height
+    more = row((f"{hidden} of {len(rows)} lines more", "not yet")) if hidden > 0 else EMPTY
     if key.spans:
-        more = Row((*more.spans, ("  ", "plain"), *key.spans))
-    return [*shown[:-1], _marked(shown[-1], more, width)]
+        more = Row((*more.spans, ("  ", "plain"), *key.spans)) if more.spans else key
+    return rows[start : start + height], more
 
 
 def _marked(last: Row, more: Row, width: int) -> Row:

@@ -25,7 +25,7 @@ from runbook.bench.view import (
 from runbook.drawing import Ruler
 from runbook.quantities import pressure_to_unit
 from runbook.run.conductor import Conductor
-from runbook.run.reasons import Code
+from runbook.run.reasons import Code, Reason
 from runbook.run.sentences import (
     agreement_age,
     agreement_pair,
@@ -169,6 +169,9 @@ def _ask(desk: Conductor, standing: Standing) -> AskView:
     asked = {w.need.tag for w in standing.wanted}
     # A reading that is wanted is said with its time, not twice.
     reasons = tuple(r for r in standing.reasons if r.code is not Code.READING_WANTED or r.tag not in asked)
+    if first := _before_signing(standing):
+        # The signature comes after these.
+        reasons = (*first, *(r for r in reasons if r.code is not Code.NOT_SIGNED))
     items = list(reasons_words(desk.plan, desk.ledger, reasons))
     if standing.permission in ("yes", "blocked") and not standing.turned_back:
         items.insert(0, (next_words(standing), ""))
@@ -177,6 +180,14 @@ def _ask(desk: Conductor, standing: Standing) -> AskView:
     if standing.permission in ("yes", "not yet"):
         items += [(words, "") for words in _wanted(standing)]
     return AskView(_STATES.get(standing.permission, "blocked"), word, _each_once(items), _key(standing))
+
+
+def _before_signing(standing: Standing) -> tuple[Reason, ...]:
+    """What others have to do before a signature counts; the signer's own reading is asked for where they sign."""
+    hold = standing.hold
+    if hold is None or hold.signed_by:
+        return ()
+    return tuple(reason for reason in hold.missing if reason.code is not Code.OWN_WANTED)
 
 
 def _wanted(standing: Standing) -> tuple[str, ...]:
@@ -208,13 +219,18 @@ def _key(standing: Standing) -> str:
         return "answer four questions"
     if standing.take_up or (line is not None and line.kind is LineKind.EMPTY and not standing.wanted):
         return "F8 state"
+    if _before_signing(standing):
+        return "F3 read"
     if line is not None and line.kind is LineKind.HOLD and not (standing.hold and standing.hold.signed_by):
         return "F4 sign hold"
     if standing.witness is not None:
         return "F4 is here"
     if standing.wanted:
         return "F3 read"
-    return "F9 make safe" if standing.permission == "blocked" else ""
+    if standing.permission == "blocked":
+        # At rest there is time for the reading that clears it, for instance on a scale that falls.
+        return "F3 read" if standing.left_alone.known and standing.left_alone.at_rest else "F9 make safe"
+    return ""
 
 
 # -- ALONE, CEILING ------------------------------------------------------------------------------------------

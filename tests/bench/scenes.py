@@ -106,7 +106,9 @@ WARM = line(
     source="on",
     sights=(
         Sight("The surface fades in the middle of the window and is gone.", False, "Switch the jacket off."),
-        Sight("From about 30.2 °C a haze, seen with a lamp from the side.", True, of="haze", at_K=303.32, trust="Good."),
+        Sight(
+            "From about 30.2 °C a haze, seen with a lamp from the side.", True, of="haze", at_K=303.32, trust="Good."
+        ),
         Sight("At 31.0 °C the surface fades and is gone where it stands.", True, of="meniscus", at_K=304.13),
     ),
     if_not="Switch the jacket off and let it come back.",

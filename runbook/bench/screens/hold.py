@@ -108,10 +108,15 @@ class HoldScreen(Place[bool]):
             rows += [EMPTY, *self._expected(width), row((" your own number, set at the briefing:", "strong"))]
         elif one is not None:
             words = f" your own reading of {one.tag}, {one.reads} in {one.unit}, before you see any other:"
-            rows += [EMPTY, *wrapped(words, width - 1, "strong")]
+            rows += [EMPTY, *wrapped(words, width - 1, "strong"), *wrapped(self._together(), width - 1)]
         if (played := self._played()) is not None:
             rows.append(row((f" {self._who} is played in this rehearsal. Enter types for them: {played}", "rehearsal")))
         return rows
+
+    def _together(self) -> str:
+        """Two people who read a moving value one after the other never agree."""
+        stops = "" if self.bench.pace is None else " Esc, then p stops the clock of the rehearsal."
+        return f" Where it moves, both read at the same moment.{stops}"
 
     def _played(self) -> str | None:
         """What a played person types now; None: a real person, who types themselves."""

@@ -45,7 +45,8 @@ def header(view: HeaderView, width: int) -> Row:
     loud = f" {view.rehearsal} " if view.rehearsal else ""
     room = width - len(loud) - len(right) - 1
     if room < len(place) + 12:
-        place = ""
+        # Where one stands is news at every step, the title is not.
+        return row((loud, "rehearsal"), (cut(f" {view.place}", room + 1), "plain"), (right, "dim"))
     title = cut(view.title, max(0, room - len(place)))
     return row((loud, "rehearsal"), (" ", "plain"), (title, "strong"), (place, "plain"), (right, "dim"))
 

@@ -59,6 +59,7 @@ class Place(_Shared, Screen[R], Generic[R]):
     DEFAULT_CSS = """
     Place { layers: base small; layout: vertical; overflow: hidden; }
     Place > #body { height: 1fr; }
+    Place VerticalScroll { scrollbar-size-vertical: 1; }
     """
     KEYS: ClassVar[Keys] = ()
     """Shown in the last row after make safe."""

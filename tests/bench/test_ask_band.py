@@ -6,7 +6,7 @@ import pytest
 
 from runbook.bench import bands
 from runbook.bench.screens.run import RunScreen
-from runbook.bench.view import AskView
+from runbook.bench.view import AskView, HeaderView
 from tests.bench import scenes
 from tests.bench.pilot import running
 
@@ -63,3 +63,11 @@ async def test_a_measuring_hold_asks_for_the_other_reading_first() -> None:
         await bench.press("f3", *"30", "enter", "enter")
         assert "Another person reads HS1." not in bench.text
         assert "F4 sign hold" in bench.text
+
+
+def test_the_place_goes_before_the_title() -> None:
+    """Where the header has no room for both, it says where the run stands, in the middle of a rehearsal too."""
+    view = HeaderView("A long title", "Let down and prove empty, step 4 of 8", "log 136", "14:21", "REHEARSAL PAUSED")
+
+    assert bands.header(view, 80).text.startswith(" REHEARSAL PAUSED  Let down and prove empty, step 4 of 8")
+    assert bands.header(view, 80).text.endswith("log 136  14:21 ")

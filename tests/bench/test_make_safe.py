@@ -191,3 +191,11 @@ async def test_without_a_run_it_says_what_can_be_said() -> None:
         await bench.press("f9")
 
         assert bench.desk.ledger.outcome == "made safe"
+
+
+async def test_what_a_person_may_see_is_not_scrolled_away() -> None:
+    """On 24 rows every act and every key for what one sees stands on the screen at once."""
+    async with running() as bench:
+        await bench.press("enter", "f9")
+        for word in ("HEAT OFF", "WALK AWAY", "G  if you see", "W  if you see", "F  if you see", "CEILING"):
+            assert word in bench.text, word

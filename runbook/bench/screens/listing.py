@@ -47,6 +47,7 @@ class ListScreen(Place[Entry | None]):
     DEFAULT_CSS = """
     ListScreen OptionList { height: 1fr; border: none; padding: 0 1; background: $background; }
     ListScreen OptionList:focus { border: none; }
+    ListScreen OptionList > .option-list--option-disabled { color: $text; }
     ListScreen #said { padding: 0 1; color: $text-warning; }
     """
     HEADING = "RUNBOOK  guides a demonstration with a sealed charge, step by step"

@@ -94,7 +94,8 @@ class SafeScreen(RunPlace):
         rows.append(EMPTY)
         for key, words in _SEES:
             rows.append(row(" ", (key, "key"), f"  if you see {words}"))
-        return rows + (wrapped(f" {self._said}", width - 1, "blocked") if self._said else [])
+        rows += wrapped(f" {self._said}", width - 1, "blocked") if self._said else []
+        return _closer(rows, self.query_one(VerticalScroll).size.height)
 
     async def on_key(self, event: events.Key) -> None:
         """One key an act; nothing to type. Digits open the reading field as everywhere."""
@@ -111,6 +112,17 @@ class SafeScreen(RunPlace):
     async def _do(self, act: Act) -> None:
         self._said = await do(self._desk, act)
         self.update_run()
+
+
+def _closer(rows: list[Row], height: int) -> list[Row]:
+    """`rows` without as many blank rows, the last first, as it takes to show all of them at once."""
+    kept = list(rows)
+    for i in range(len(rows) - 1, -1, -1):
+        if len(kept) <= height:
+            break
+        if rows[i] is EMPTY:
+            del kept[i]
+    return kept
 
 
 def _big(text: str, width: int) -> list[Row]:

@@ -46,6 +46,8 @@ class Course:
     """ISO date on which certificates are judged at the vessel."""
     seed: int
     """Of a rehearsal's instruments."""
+    fault: str
+    """What goes wrong in a rehearsal; empty: nothing."""
     clock: Clock
     _texts: tempfile.TemporaryDirectory[str] | None = None
     """Both files of a run taken up again: a computing process that is started anew reads them anew."""
@@ -104,7 +106,7 @@ class Course:
         if isinstance(clock, ScaledClock):
             # The first person is who sits here; all others are played.
             pace = Simulated(clock, who[1:])
-            await pace.open(request, bound.plan, self.seed)
+            await pace.open(request, bound.plan, self.seed, self.fault)
             app.take(desk, pace)
         else:
             app.take(desk)

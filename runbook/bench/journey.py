@@ -39,6 +39,8 @@ class Session:
     """Straight to this entry; None: the list."""
     seed: int = 1
     """Of a rehearsal's instruments."""
+    fault: str = ""
+    """What goes wrong in a rehearsal; empty: nothing."""
     make_engine: Callable[[], ChildEngine] | None = None
     """Another computing process than the usual one."""
     clock: Clock | None = None
@@ -71,7 +73,7 @@ class Session:
             from runbook.bench.course import Course
             from runbook.run.clock import SystemClock
 
-            return Course(engine, warming, self._logbook(), self.on, self.seed, self.clock or SystemClock())
+            return Course(engine, warming, self._logbook(), self.on, self.seed, self.fault, self.clock or SystemClock())
         except BaseException:
             warming.cancel()
             await engine.close()

@@ -51,8 +51,8 @@ class Simulated:
 
     # -- the other process ------------------------------------------------------------------------------
 
-    async def open(self, request: BindRequest, plan: Plan, seed: int) -> None:
-        """Start the simulated vessel; where that fails the dials stay dark."""
+    async def open(self, request: BindRequest, plan: Plan, seed: int, fault: str = "") -> None:
+        """Start the simulated vessel, with a fault by name; where that fails the dials stay dark."""
         self._plan = plan
         try:
             self._process = await asyncio.create_subprocess_exec(
@@ -65,7 +65,7 @@ class Simulated:
             )
         except OSError:
             return
-        asked = {"request": to_plain(request), "seed": seed, "boot": self.clock.now().boot}
+        asked = {"request": to_plain(request), "seed": seed, "boot": self.clock.now().boot, "fault": fault}
         self._looking = asyncio.ensure_future(self._exchange(asked, 30.0))
 
     async def close(self) -> None:

@@ -31,9 +31,9 @@ from runbook.run.opening import Participant, charge_record, people, played, run_
 from runbook.run.record import record_lines
 
 
-def rehearse_plain(path: Path, seed: int, logbook: Path | None) -> int:
+def rehearse_plain(path: Path, seed: int, logbook: Path | None, fault: str = "") -> int:
     """A rehearsal in lines; returns the exit code."""
-    return asyncio.run(_rehearse(path, seed, Logbook(logbook_folder(logbook))))
+    return asyncio.run(_rehearse(path, seed, Logbook(logbook_folder(logbook)), fault))
 
 
 def bench_plain(path: Path, on: str, part: int, logbook: Path | None, closed_kg: float | None = None) -> int:
@@ -54,7 +54,7 @@ class _Pace(Simulated):
         self.clock.set_speed(factor)
 
 
-async def _rehearse(path: Path, seed: int, logbook: Logbook) -> int:
+async def _rehearse(path: Path, seed: int, logbook: Logbook, fault: str) -> int:
     on = read_procedure(path).procedure.issue.date.isoformat()
     request = BindRequest(str(path), on)
     engine, clock = ChildEngine(), ScaledClock(SystemClock())
@@ -67,7 +67,7 @@ async def _rehearse(path: Path, seed: int, logbook: Logbook) -> int:
     desk = Conductor(JournalWriter(Journal.create(target)), clock, engine)
     await desk.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal=True))
     pace = _Pace(clock, who[1:])
-    await pace.open(request, bound.plan, seed)
+    await pace.open(request, bound.plan, seed, fault)
     try:
         return await _to_the_end(Session(desk, Input(), pace), target)
     finally:

@@ -16,9 +16,10 @@ from typing import TYPE_CHECKING, Any
 from runbook.commands.arguments import Arguments, iso_date
 from runbook.errors import ExitCode, InputUnusable
 from runbook.procedure.shelf import find_procedure
+from runbook.rehearsal.faults import FAULTS, parse_fault
 
 if TYPE_CHECKING:
-    from runbook.rehearsal.headless import Outcome
+    from runbook.rehearsal.headless import FaultStory, Outcome
 
 
 def main(argv: list[str]) -> int:
@@ -28,19 +29,31 @@ def main(argv: list[str]) -> int:
     parser.add_argument("--headless", action="store_true", help="no screen: the ideal operator does it")
     parser.add_argument("--plain", action="store_true", help="prompts and lines instead of screens")
     parser.add_argument("--seed", type=int, default=1, metavar="N", help="of the instruments' errors (1)")
+    parser.add_argument("--fault", metavar="NAME[@S]", default="",
+                        help="what goes wrong, and seconds after its situation; 'random', or 'list'")  # fmt: skip
+    parser.add_argument("--every-fault", action="store_true", help="with --headless: each in turn; 1 if one goes badly")
     parser.add_argument("--json", action="store_true", help="with --headless: one document, SI")
     parser.add_argument("--logbook", metavar="DIR", type=Path, help="where the record goes")
     parser.add_argument("--ascii", action="store_true", help="no braille and no box characters")
     asked = parser.parse_args(argv)
     if asked.json and not asked.headless:
         raise InputUnusable("--json goes with --headless")
+    if asked.every_fault and not asked.headless:
+        raise InputUnusable("--every-fault goes with --headless")
+    if asked.fault == "list":
+        return _list_faults()
+    if asked.fault:
+        # A name mistyped is told before anything is loaded.
+        parse_fault(asked.fault, asked.seed)
     path = find_procedure(asked.file)
+    if asked.every_fault:
+        return _every_fault(path, asked.seed, asked.json)
     if asked.headless:
-        return _headless(path, asked.seed, asked.json, asked.logbook)
+        return _headless(path, asked.seed, asked.json, asked.logbook, asked.fault)
     if asked.plain:
         from runbook.commands.plain import rehearse_plain
 
-        return rehearse_plain(path, asked.seed, asked.logbook)
+        return rehearse_plain(path, asked.seed, asked.logbook, asked.fault)
     return _on_screens(path, asked)
 
 
@@ -53,14 +66,55 @@ def _on_screens(path: Path, asked: Any) -> int:
     from runbook.bench.screens.listing import Entry
 
     start = Entry("rehearse", title_of(path), str(path.parent), str(path))
-    session = Session(asked.logbook, iso_date(None).isoformat(), start=start, seed=asked.seed)
+    session = Session(asked.logbook, iso_date(None).isoformat(), start=start, seed=asked.seed,
+                      fault=asked.fault)  # fmt: skip
     return run_screens(session, asked.ascii)
 
 
-def _headless(path: Path, seed: int, as_json: bool, logbook: Path | None) -> int:
+def _list_faults() -> int:
+    for one in FAULTS:
+        print(f"{one.name:<26}{one.words}; from: {one.begins}")
+    return int(ExitCode.GOOD)
+
+
+def _every_fault(path: Path, seed: int, as_json: bool) -> int:
+    """Each fault in a rehearsal of its own; 1 where one went badly."""
     from runbook.rehearsal.headless import rehearse
 
-    outcome = asyncio.run(rehearse(path, seed, _journal(path, logbook)))
+    told = []
+    for one in FAULTS:
+        outcome = asyncio.run(rehearse(path, seed, fault=(one, 0.0)))
+        told.append(as_document(outcome))
+        if not as_json:
+            print("\n".join(_fault_lines(outcome)), flush=True)
+    if as_json:
+        print(json.dumps({"faults": told}, indent=2, allow_nan=False))
+    return int(ExitCode.NOT_GOOD if any(t["fault"]["wrong"] for t in told) else ExitCode.GOOD)
+
+
+def _fault_lines(outcome: Outcome) -> list[str]:
+    story = outcome.fault
+    if story is None:
+        return []
+    if story.began_s is None:
+        return [f"{story.name}: its situation never came; {outcome.outcome}"]
+
+    def at(seconds: float | None) -> str:
+        return "never" if seconds is None else f"{seconds / 60.0:.0f} min"
+
+    lines = [
+        f"{story.name}: {outcome.outcome}; began {at(story.began_s)}, first noticed {at(story.noticed_s)}, "
+        f"made safe {at(story.acted_s)}, highest {story.highest_after / 1e5:.1f} bar(a)"
+    ]
+    lines += [f"  said first: {story.said}"] if story.said else []
+    return [*lines, *(f"  BADLY: {words}" for words in story.wrong)]
+
+
+def _headless(path: Path, seed: int, as_json: bool, logbook: Path | None, fault: str) -> int:
+    from runbook.rehearsal.headless import rehearse
+
+    chosen = parse_fault(fault, seed) if fault else None
+    outcome = asyncio.run(rehearse(path, seed, _journal(path, logbook), fault=chosen))
     if as_json:
         print(json.dumps(as_document(outcome), indent=2, allow_nan=False))
     else:
@@ -69,6 +123,7 @@ def _headless(path: Path, seed: int, as_json: bool, logbook: Path | None) -> int
             print(f"  {outcome.reason}")
         print(f"  {outcome.steps_done} steps in {outcome.duration_s / 3600:.2f} h of simulated time")
         print(f"  highest pressure {outcome.highest_pressure / 1e5:.1f} bar(a), {outcome.events} events")
+        print("\n".join(f"  {line}" for line in _fault_lines(outcome)), end="\n" if outcome.fault else "")
     return int(ExitCode.GOOD if outcome.outcome == "completed" else ExitCode.NOT_GOOD)
 
 
@@ -83,6 +138,18 @@ def as_document(outcome: Outcome) -> dict[str, Any]:
         "highest_pressure_Pa": found["highest_pressure"],
         "least_margin_Pa": found["least_margin"],
         "events": found["events"],
+    } | ({} if outcome.fault is None else {"fault": _story(outcome.fault)})
+
+
+def _story(story: FaultStory) -> dict[str, Any]:
+    return {
+        "name": story.name,
+        "began_s": story.began_s,
+        "noticed_s": story.noticed_s,
+        "said": story.said,
+        "acted_s": story.acted_s,
+        "highest_after_Pa": story.highest_after,
+        "wrong": list(story.wrong),
     }
 
 

@@ -18,6 +18,7 @@ from runbook.assess.bind import plan_of
 from runbook.assess.child import opened, serve_standard
 from runbook.codec import from_plain
 from runbook.errors import RunbookError
+from runbook.rehearsal.faults import Trouble, Troubles, parse_fault
 from runbook.rehearsal.world import World
 from runbook.run.clock import Moment
 from runbook.run.state import Ledger, Stated
@@ -28,7 +29,9 @@ def open_world(asked: dict[str, Any]) -> World:
     request = from_plain(BindRequest, asked["request"])
     scene, lines = opened(request)
     plan = plan_of(scene, date.fromisoformat(request.on), lines, request.part)
-    return World(scene, lines, plan, int(asked["seed"]), Moment(float(asked["boot"]), 0.0), request.part)
+    seed, named = int(asked["seed"]), str(asked.get("fault", ""))
+    troubles = Troubles([Trouble(*parse_fault(named, seed))] if named else [])
+    return World(scene, lines, plan, seed, Moment(float(asked["boot"]), 0.0), request.part, troubles)
 
 
 def look(world: World, asked: dict[str, Any]) -> dict[str, float]:

@@ -5,18 +5,23 @@ Time is simulated, so an hour takes under a second; the same seed gives the same
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Final
 
 from runbook.answers import BindRequest, ChargeBox
-from runbook.assess.local import LocalEngine
+from runbook.apparatus.model import Apparatus
 from runbook.procedure.reader import read_procedure
+from runbook.quantities import NotKnown
+from runbook.rehearsal.failing import FailingEngine
+from runbook.rehearsal.faults import Fault, Trouble, Troubles
 from runbook.rehearsal.operator import Operator
+from runbook.rehearsal.story import Story
 from runbook.rehearsal.world import World
-from runbook.run.acts import Act, GoOn
+from runbook.run.acts import Act, GoOn, MakeSafe
 from runbook.run.clock import FakeClock
 from runbook.run.conductor import Conductor
+from runbook.run.events import Answered
 from runbook.run.journal import JournalWriter
 from runbook.run.opening import people, played, run_opened
 from runbook.run.reasons import Reason, Refused
@@ -26,6 +31,10 @@ PATIENCE_S: Final = 24 * 3600.0
 """[s] the operator waits in one line before giving up."""
 _NO_PROGRESS: Final = 400
 """Wishes in one line without an event, after which the operator gives up."""
+_FAULT_PATIENCE_S: Final = 8 * 3600.0
+"""[s] the operator waits in one line when something may be wrong, before making safe."""
+_AFTER_S: Final = 12 * 3600.0
+"""[s] for which a vessel that was made safe is watched."""
 _START: Final = FakeClock().now()
 
 
@@ -44,14 +53,43 @@ class Outcome:
     least_margin: float | None
     """Of pressure limits, as computed from readings [Pa]."""
     events: int
+    fault: FaultStory | None = None
+    """How it went with a fault; None: there was none."""
+
+
+@dataclass(frozen=True, slots=True)
+class FaultStory:
+    """How a rehearsal with a fault went."""
+
+    name: str
+    began_s: float | None
+    """[s since the run was opened]; None: its situation never came."""
+    noticed_s: float | None
+    """When the run first blocked, turned back, or said that gauge and model disagree [s since the run was opened]."""
+    said: str
+    """What it said first."""
+    acted_s: float | None
+    """When make safe was begun [s since the run was opened]."""
+    highest_after: float
+    """True pressure, to twelve hours after the end [Pa]."""
+    wrong: tuple[str, ...]
+    """What should not have happened; empty is good."""
 
 
 async def rehearse(
-    path: Path, seed: int, journal: JournalWriter | None = None, charge: ChargeBox | None = None, part: int = 0
+    path: Path,
+    seed: int,
+    journal: JournalWriter | None = None,
+    charge: ChargeBox | None = None,
+    part: int = 0,
+    fault: tuple[Fault, float] | None = None,
 ) -> Outcome:
-    """One rehearsal of a procedure. Raises FileProblems or InputUnusable where it cannot be bound."""
+    """One rehearsal of a procedure; fault: what goes wrong, and seconds after its situation.
+
+    Raises FileProblems or InputUnusable where it cannot be bound.
+    """
     loaded = read_procedure(path)
-    engine = LocalEngine()
+    engine = FailingEngine()
     request = BindRequest(
         procedure_path=str(path), on=loaded.procedure.issue.date.isoformat(), charge=charge, part=part
     )
@@ -63,9 +101,12 @@ async def rehearse(
     await conductor.settled()
     scene, lines = engine.here.scene, engine.here.lines
     assert scene is not None, "bind leaves a scene"
-    world = World(scene, lines, bound.plan, seed, clock.now(), part)
+    troubles = Troubles([] if fault is None else [Trouble(fault[0], fault[1])])
+    world = World(scene, lines, bound.plan, seed, clock.now(), part, troubles)
+    engine.away = lambda: troubles.lost(clock.now().boot)
+    run = _Run(conductor, world, Operator(conductor, world, lines, who), clock, loaded.apparatus)
     try:
-        return await _Run(conductor, world, Operator(conductor, world, lines, who), clock).go()
+        return await run.go()
     finally:
         await conductor.close()
 
@@ -78,6 +119,9 @@ class _Run:
     world: World
     operator: Operator
     clock: FakeClock
+    apparatus: Apparatus
+    story: Story = field(default_factory=Story)
+    seen: int = 0
     refusals: int = 0
     last_reason: Reason | None = None
     entered: int = -2
@@ -91,7 +135,14 @@ class _Run:
         while self.conductor.ledger.outcome is None and self.conductor.ledger.halted is None:
             self._watch_line()
             if self._given_up():
-                return self._outcome("refused")
+                if not self._trouble or self.conductor.ledger.safe is not None:
+                    return self._outcome("refused")
+                self.since, self.refusals = self.clock.now().boot, 0
+                await self._do(MakeSafe(), 0.0)
+                continue
+            if self.world.troubles.away(self.clock.now().boot):
+                await self._wait(60.0)
+                continue
             wish = self.operator.next()
             if wish.act is not None:
                 await self._do(wish.act, wish.wait_s)
@@ -101,10 +152,14 @@ class _Run:
         return self._outcome(ledger.outcome or "halted")
 
     async def _do(self, act: Act, wait_s: float) -> None:
+        before = self.conductor.ledger
         found = await self.conductor.act(act)
-        await self.conductor.settled()
+        if found is not None and not isinstance(found, Refused):
+            self.story.happened(before, found, self.clock.now(), self._began)
+        await self._heard()
         self.world.follow(self.conductor.ledger)
         if isinstance(found, Refused):
+            self.story.refused(self.conductor.ledger, found, self.clock.now(), self._began)
             self.refusals += 1
             self.last_reason = found.reasons[0]
             self.operator.look_again = isinstance(act, GoOn) and found.kind == "blocked"
@@ -120,10 +175,29 @@ class _Run:
             step = min(left, 10.0)
             self.clock.advance(step)
             self.world.move_to(self.clock.now())
-            await self.conductor.tick()
-            await self.conductor.settled()
+            before = self.conductor.ledger
+            ticked = await self.conductor.tick()
+            if ticked is not None:
+                self.story.happened(before, ticked, self.clock.now(), self._began)
+            await self._heard()
             self._watch_margin()
             left -= step
+
+    async def _heard(self) -> None:
+        """What the physics said since."""
+        await self.conductor.settled()
+        ledger = self.conductor.ledger
+        if ledger.answer is not None and ledger.seq != self.seen:
+            self.seen = ledger.seq
+            self.story.happened(ledger, Answered(ledger.answer), self.clock.now(), self._began)
+
+    @property
+    def _trouble(self) -> bool:
+        return bool(self.world.troubles.all)
+
+    @property
+    def _began(self) -> float | None:
+        return next((one.began for one in self.world.troubles.all), None)
 
     def _watch_margin(self) -> None:
         answer = self.conductor.ledger.answer
@@ -136,11 +210,13 @@ class _Run:
             self.entered, self.since, self.refusals = self.conductor.ledger.line, self.clock.now().boot, 0
 
     def _given_up(self) -> bool:
-        return self.refusals > _NO_PROGRESS or self.clock.now().boot - self.since > PATIENCE_S
+        patience = _FAULT_PATIENCE_S if self._began is not None else PATIENCE_S
+        return self.refusals > _NO_PROGRESS or self.clock.now().boot - self.since > patience
 
     def _outcome(self, outcome: str) -> Outcome:
         ledger = self.conductor.ledger
         reason = None
+        highest = self.world.highest_pressure
         if outcome != "completed":
             reason = ledger.halted or (self._said() if outcome == "refused" else f"make safe in line {ledger.line + 1}")
         return Outcome(
@@ -148,10 +224,38 @@ class _Run:
             reason=reason,
             steps_done=ledger.line + (1 if outcome == "completed" else 0),
             duration_s=self.clock.now().boot - ledger.opened_at.boot,
-            highest_pressure=self.world.highest_pressure,
+            highest_pressure=highest,
             least_margin=self.least_margin,
             events=ledger.seq,
+            fault=self._told(outcome) if self._trouble else None,
         )
+
+    def _told(self, outcome: str) -> FaultStory:
+        """What became of the fault, and what the vessel did in the twelve hours after."""
+        start, trouble = self.conductor.ledger.opened_at.boot, self.world.troubles.all[0]
+        highest = self.world.watch(_AFTER_S)
+        wrong = list(self.story.wrong)
+        top = self._most_allowed()
+        if highest > top and trouble.fault.name != "relief never":
+            wrong.append(f"{highest / 1e5:.1f} bar(a) was reached; 110 % of MAWP is {top / 1e5:.1f}")
+        if outcome == "made safe" and not self.world.at_rest():
+            wrong.append("twelve hours after make safe the vessel is not at rest")
+
+        def since(moment: float | None) -> float | None:
+            return None if moment is None else moment - start
+
+        return FaultStory(
+            trouble.fault.name, since(trouble.began), since(self.story.noticed_s), self.story.said,
+            since(self.story.acted_s), highest, tuple(wrong),
+        )  # fmt: skip
+
+    def _most_allowed(self) -> float:
+        """110 % of the maximum allowable working pressure (ASME VIII-1 UG-125), absolute [Pa]."""
+        rating = self.apparatus.mawp.rating
+        if isinstance(rating, NotKnown):
+            return float("inf")
+        barometer = self.conductor.plan.barometer
+        return 1.1 * rating.gauge(barometer) + barometer
 
     def _said(self) -> str:
         if self.last_reason is None:

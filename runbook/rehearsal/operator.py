@@ -56,7 +56,7 @@ class Operator:
         """The next act, or how long to wait."""
         ledger = self._conductor.ledger
         if ledger.gap_open:
-            names = tuple(p.name for p in self._who)
+            names = tuple(p.name for p in self._there)
             return Wish(GapAnswers(ledger.source, self._vent_position(), "no", names))
         if ledger.safe is not None:
             undone = [i for i in range(len(ledger.safe.acts)) if i not in ledger.safe_done]
@@ -81,7 +81,10 @@ class Operator:
             return self._hold(line)
         if line.kind is LineKind.WITNESS:
             came = self._conductor.ledger.entry.witness
-            return None if came else Wish(Attend(self._person(line.witness.called if line.witness else "")))
+            called = self._participant(line.witness.called if line.witness else "")
+            if not came and called not in self._there:
+                return Wish(None, 30.0)
+            return None if came else Wish(Attend(called.name))
         if line.kind is LineKind.EMPTY:
             return self._empty(line)
         if not self._arrived():
@@ -170,6 +173,9 @@ class Operator:
         if ledger.entry.signed_by or line.hold is None:
             return None
         signer = self._participant(line.hold.signed_by)
+        if signer not in self._there:
+            # Nobody to sign: a hold stands where the vessel is at rest, so one waits.
+            return Wish(None, 60.0)
         need = line.hold.read
         if need is not None:
             others = [
@@ -224,6 +230,11 @@ class Operator:
         by = self._person(role or self._conductor.plan.roles[0])
         said = f"{shown:.6g}"
         return Read(tag, shown, said, f"{tag} {said} [SI]", by, blind)
+
+    @property
+    def _there(self) -> tuple[Participant, ...]:
+        """Who is in the room."""
+        return self._who[:1] if self._world.troubles.alone else self._who
 
     def _person(self, role: str) -> str:
         return self._participant(role).name

@@ -153,7 +153,7 @@ class Simulation:
             vessel = self._relieved(vessel, controls)
             if vessel.mass <= _GONE:
                 return self._empty(vessel, controls, left)
-            if vessel.in_the_open and controls.vent_open:
+            if vessel.in_the_open and self._holes(vessel, controls):
                 return self._open(vessel, controls, left)
             vessel = replace(vessel, in_the_open=False)
             holes = self._holes(vessel, controls)

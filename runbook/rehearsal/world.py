@@ -6,17 +6,21 @@ what is asked, at once. What happens then, the simulated vessel decides. It know
 
 from __future__ import annotations
 
+import contextlib
 from dataclasses import replace
 
 from runbook.answers import Plan
+from runbook.apparatus.relief import lowest_opening
 from runbook.assess.boxes import viewed_shape
 from runbook.assess.futures import hottest_source
 from runbook.assess.heat_time import heat_path
-from runbook.assess.scene import Scene
+from runbook.assess.scene import GAS_CONSTANT, Scene
 from runbook.assess.walk import Walked, valves_of
+from runbook.errors import OutsideValidity
 from runbook.procedure.model import CoolTo, DoStep, Load, WarmTo
+from runbook.rehearsal.faults import CLOSED, HEATING, LETTING_DOWN, LOADING, Troubles
 from runbook.rehearsal.instruments import Dials, Shown
-from runbook.rehearsal.vessel import Controls, Simulation, Vessel
+from runbook.rehearsal.vessel import Controls, Relieving, Simulation, Vessel
 from runbook.run.clock import Moment
 from runbook.run.ledger import Ledger
 
@@ -32,14 +36,32 @@ class World:
     """Vessel, instruments and room of a rehearsal, moved on with the clock."""
 
     def __init__(
-        self, scene: Scene, lines: tuple[Walked, ...], plan: Plan, seed: int, now: Moment, part: int = 0
+        self,
+        scene: Scene,
+        lines: tuple[Walked, ...],
+        plan: Plan,
+        seed: int,
+        now: Moment,
+        part: int = 0,
+        troubles: Troubles | None = None,
     ) -> None:
         """A world in which nothing has been done yet; part: the one the run begins with, from 0."""
+        self.troubles = troubles if troubles is not None else Troubles()
+        """What goes wrong in it."""
         source = scene.apparatus.heat_source
         limit = None if source is None else hottest_source(scene, source)
         room = 0.5 * (scene.room_hottest + scene.room_coldest)
         self._scene, self._lines, self._plan = scene, lines, plan
-        self._simulation = Simulation(scene.substance, scene.apparatus.volume.free.value, heat_path(scene, limit))
+        volume = scene.apparatus.volume.free.value
+        self._simulation = Simulation(
+            scene.substance, volume, heat_path(scene, limit), _relieving(scene, self.troubles)
+        )
+        self._set: Controls | None = None
+        self._connected = False
+        self._full_of_air = plan.barometer * volume / (GAS_CONSTANT * room)
+        self._high_gauge = next(
+            (i.tag for i in plan.instruments if i.reads == "pressure" and i.of == scene.charge_space), None
+        )
         self.room_K = room
         """Temperature of the room [K]."""
         self._dials = Dials(plan.instruments, seed)
@@ -65,20 +87,63 @@ class World:
                     self.vessel = self._simulation.loaded(self.vessel, mass, self.controls.barometer)
         self._line = ledger.line
         vent_open, bore = self._vent(ledger, line)
-        self.controls = replace(self.controls, vent_open=vent_open, bore=bore, heating=self._heating(ledger, line))
+        self._connected = ledger.source in ("on", "off", "do not know")
+        self._set = replace(self.controls, vent_open=vent_open, bore=bore, heating=self._heating(ledger, line))
+        self._trouble()
+
+    def _trouble(self) -> None:
+        """Faults whose situation stands begin, and what the hands have set becomes what it really is."""
+        self.troubles.look(self._situations(), self._at)
+        if self._set is not None:
+            self.controls = self.troubles.controls(replace(self._set, leak=0.0, loss=1.0), self._at, self._connected)
+        if self._simulation.relief is not None:
+            self._simulation.relief = _relieving(self._scene, self.troubles)
+        fills = self.troubles.air_fills
+        if fills and self.vessel.mass > 0.0 and not self.vessel.in_the_open and self.vessel.air == 0.0:
+            self.vessel = replace(self.vessel, air=fills * self._full_of_air)
+
+    def _situations(self) -> set[str]:
+        """In which situations the vessel is."""
+        found = {LOADING} if self.vessel.mass > 0.0 else set()
+        closed = self.vessel.mass > 0.0 and self._set is not None and not self._set.vent_open
+        if closed:
+            found.add(CLOSED)
+            if self._set is not None and self._set.heating is not False:
+                found.add(HEATING)
+        elif self.vessel.mass > 0.0 and self.pressure() > 5.0e5:
+            found.add(LETTING_DOWN)
+        return found
 
     def move_to(self, now: Moment) -> None:
         """Let the time since the last look pass."""
         left = max(0.0, now.boot - self._at)
-        self._at = now.boot
+        self._at = now.boot - left
         while left > 0.0:
+            self._trouble()
             # Far from anything that moves fast an hour need not be cut into seconds.
-            step = min(left, _LONGEST if self.controls.vent_open and self.vessel.mass > 0.0 else 30.0)
+            moving = self.controls.holes or self.vessel.relief_open
+            step = min(left, _LONGEST if moving and self.vessel.mass > 0.0 else 30.0)
             self.vessel = self._simulation.advance(self.vessel, self.controls, step)
             self._shown = self._dials.follow(self._shown, self.truth(), step)
             self.highest_pressure = max(self.highest_pressure, self.pressure())
             left -= step
+            self._at += step
         self._shown = self._dials.follow(self._shown, self.truth(), 0.0)
+
+    def watch(self, seconds: float) -> float:
+        """Let the vessel go on by itself [s], and say the highest true pressure of all [Pa]."""
+        with contextlib.suppress(OutsideValidity):
+            # Where the models end the last that they said stands.
+            self.move_to(Moment(self._at + seconds, 0.0))
+        return self.highest_pressure
+
+    def at_rest(self) -> bool:
+        """Nothing of it moves any more: empty, in the open, or as warm as the room with every limit far."""
+        if self.vessel.mass <= 1e-6 or self.vessel.in_the_open:
+            return True
+        before = self.pressure()
+        self.watch(1800.0)
+        return abs(self.pressure() - before) < 0.02 * before or self.pressure() < before
 
     def pressure(self) -> float:
         """In the vessel, true, absolute [Pa]."""
@@ -98,7 +163,7 @@ class World:
         for one in self._plan.instruments:
             value = self._true(one.tag, one.reads)
             if value is not None:
-                found[one.tag] = value
+                found[one.tag] = self.troubles.truth(one.tag, one.reads, value, self.room_K, self._high_gauge)
         return found
 
     def _true(self, tag: str, reads: str) -> float | None:
@@ -153,3 +218,14 @@ class World:
         state = self._scene.substance.state(self.room_K, mass / self._scene.apparatus.volume.free.value)
         self.vessel = replace(self.vessel, mass=mass, energy=state.internal_energy or 0.0)
         self.controls = replace(self.controls, vent_open=False, bore=0.0)
+
+
+def _relieving(scene: Scene, troubles: Troubles) -> Relieving | None:
+    """The relief device on the charge's space, as it truly opens; None where there is none."""
+    device = next((r for r in scene.apparatus.relief if r.space == scene.charge_space), None)
+    if device is None:
+        return None
+    rated = device.bursts_at if device.bursts_at is not None else device.opens_at
+    assert rated is not None, "the model refuses a device without a pressure"
+    opens = troubles.relief_opens(lowest_opening(device).pascal, rated.pascal)
+    return Relieving(scene.barometer.middle_Pa + opens, device.kind == "relief valve")

@@ -1,0 +1,73 @@
+"""How a fault went: when it began, when the run first noticed, what it said first, when the operator made safe.
+
+Told from what happened alone; whether that was good is judged here too, by rules that know nothing of the interlock.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+
+from runbook.answers import Effect, Phase, PlanLine
+from runbook.run.clock import Moment
+from runbook.run.events import Answered, Event, MadeSafe, TurnedBack, WentOn
+from runbook.run.ledger import Ledger
+from runbook.run.reasons import Refused
+from runbook.run.safe import make_safe
+from runbook.run.sentences import reason_words
+
+
+@dataclass
+class Story:
+    """Of one rehearsal with faults."""
+
+    noticed_s: float | None = None
+    """When the run first blocked, turned back, or said that gauge and model disagree [s]."""
+    said: str = ""
+    """What it said first."""
+    acted_s: float | None = None
+    """When make safe was begun [s]."""
+    wrong: list[str] = field(default_factory=list)
+    """What should not have happened, in words."""
+    _disagrees: bool = False
+
+    def refused(self, ledger: Ledger, refused: Refused, now: Moment, began: float | None) -> None:
+        """A wish that was refused."""
+        if refused.kind == "blocked" and ledger.plan is not None:
+            self._notice(now, began, reason_words(ledger.plan, ledger, refused.reasons[0]))
+
+    def happened(self, before: Ledger, event: Event, now: Moment, began: float | None) -> None:
+        """An event, with the ledger before it."""
+        if isinstance(event, Answered):
+            self._disagrees = event.answer.agreement.verdict == "disagrees"
+            blocked = [m for m in event.answer.now if m.margin is not None and m.margin <= 0.0]
+            if self._disagrees and began is not None:
+                self._notice(now, began, "gauge and model disagree")
+            elif blocked:
+                self._notice(now, began, f"{blocked[0].limit} {blocked[0].kind}: no margin is left")
+        elif isinstance(event, TurnedBack):
+            self._notice(now, began, event.why)
+        elif isinstance(event, MadeSafe):
+            self._made_safe(before, event, now)
+        elif isinstance(event, WentOn) and before.plan is not None:
+            line = before.plan.lines[event.to]
+            if self._disagrees and _raises(line):
+                self.wrong.append(f"went on into step {line.number}, which raises, while gauge and model disagreed")
+
+    def _made_safe(self, before: Ledger, event: MadeSafe, now: Moment) -> None:
+        if self.acted_s is None:
+            self.acted_s = now.boot
+        if before.plan is None:
+            return
+        phase = Phase(event.phase)
+        firsts = {make_safe(before.plan, phase, rest).acts[0] for rest in (False, True)}
+        if event.acts and event.acts[0] not in firsts:
+            self.wrong.append(f"make safe began with '{event.acts[0]}', not with the first act of phase {phase}")
+
+    def _notice(self, now: Moment, began: float | None, words: str) -> None:
+        if self.noticed_s is None and began is not None and now.boot >= began:
+            self.noticed_s, self.said = now.boot, words
+
+
+def _raises(line: PlanLine) -> bool:
+    effects = [effect for _, effect in line.effects]
+    return any(e in (Effect.RAISES, Effect.UNKNOWN) for e in effects) and Effect.LOWERS not in effects

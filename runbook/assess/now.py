@@ -174,7 +174,8 @@ def _readings(scene: Scene, question: Question) -> Readings:
     walls = [o for o in question.observations if o.what == "temperature"]
     gauges = [o for o in question.observations if o.what == "pressure"]
     shut = tuple(o.tag for o in gauges if isolated(scene.apparatus, o.tag, positions))
-    joined = [o for o in gauges if o.tag not in shut]
+    # What a gauge showed over the open vessel says nothing of the charge that has been closed in since.
+    joined = [o for o in gauges if o.tag not in shut and (o.closed or question.closed == "open")]
     return Readings(
         max(walls, key=lambda o: (o.value, o.sequence), default=None),
         max(joined, key=lambda o: (o.value, o.sequence), default=None),

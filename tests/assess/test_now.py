@@ -125,3 +125,9 @@ def test_every_line_of_the_walk_has_a_kind_and_a_number(tmp_path: Path) -> None:
     assert lines[0].number == "1.1"
     assert {kind_of(w.step).value for w in lines} >= {"do", "hold", "quick", "show empty", "parked"}
     assert isinstance(lines[warming(scene(tmp_path))[1]].verb, WarmTo)
+
+
+def test_a_gauge_read_over_the_open_vessel_is_not_compared_with_the_closed_charge(tmp_path: Path) -> None:
+    """Zero before closing is no disagreement with 58 bar after it: there is no reading to compare yet."""
+    found = ask(scene(tmp_path), observed("pressure", 1.0 * BAR, 2, closed=False))
+    assert found.agreement.verdict == "no reading"

@@ -9,7 +9,6 @@ Raises OutsideValidity beyond the table, whose ends are where the models end.
 from __future__ import annotations
 
 from bisect import bisect_right
-from dataclasses import replace
 from math import inf
 
 from runbook.errors import OutsideValidity
@@ -137,7 +136,7 @@ class Isochore:
         Raises OutsideValidity.
         """
         if self.plateau and self.plateau[0] < energy < self.plateau[1]:
-            return self._melting_state(energy)
+            return self.substance.plateau_state(self.density, energy)
         return self.substance.state(self.temperature_of_energy(energy), self.density)
 
     def solid_fraction(self, energy: float) -> float:
@@ -174,28 +173,6 @@ class Isochore:
                 f"modelled from {self.lowest_temperature:.6g} K to {self.highest_temperature:.6g} K"
             )
         return max(0, min(bisect_right(self.energies, energy) - 1, len(self.energies) - 2))
-
-    def _melting_state(self, energy: float) -> State:
-        """On the plateau the fractions go in a straight line from its beginning to its end (lever rule)."""
-        assert self.plateau is not None
-        begin, end = self.substance.plateau_states(self.density)
-        share = (energy - self.plateau[0]) / (self.plateau[1] - self.plateau[0])
-        solid, liquid, vapour = (
-            (a or 0.0) + share * ((b or 0.0) - (a or 0.0))
-            for a, b in ((begin.solid, end.solid), (begin.liquid, end.liquid), (begin.vapour, end.vapour))
-        )
-        return replace(
-            begin,
-            region=Region.THREE_PHASE,
-            solid=solid,
-            liquid=liquid,
-            vapour=vapour,
-            liquid_density=end.liquid_density,
-            internal_energy=energy,
-            entropy=None
-            if begin.entropy is None or end.entropy is None
-            else (begin.entropy + share * (end.entropy - begin.entropy)),
-        )
 
 
 def _rows(

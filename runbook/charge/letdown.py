@@ -77,9 +77,7 @@ class LetDown:
         fluid, density = self.substance, contents.mass / self.volume
         plateau = fluid.plateau(density)
         if plateau is not None and plateau[0] < contents.energy < plateau[1]:
-            begin, end = fluid.plateau_states(density)
-            share = (contents.energy - plateau[0]) / (plateau[1] - plateau[0])
-            return _between(begin, end, share, contents.energy)
+            return fluid.plateau_state(density, contents.energy)
         low, high = fluid.min_temperature, min(fluid.max_temperature, 700.0)
         if plateau is not None:
             low, high = (
@@ -179,16 +177,3 @@ class LetDown:
             return bracketed_root(excess, low, high, 1e-8)
         except ValueError as error:
             raise OutsideValidity(f"no state of {density:.6g} kg/m3 has {energy:.6g} J/kg") from error
-
-
-def _between(begin: State, end: State, share: float, energy: float) -> State:
-    """On the plateau fractions go in a straight line from its beginning to its end (lever rule)."""
-
-    def mixed(one: float | None, other: float | None) -> float:
-        return (one or 0.0) + share * ((other or 0.0) - (one or 0.0))
-
-    return State(
-        begin.temperature, begin.density, begin.pressure, Region.THREE_PHASE, mixed(begin.solid, end.solid),
-        mixed(begin.liquid, end.liquid), mixed(begin.vapour, end.vapour), end.liquid_density, begin.vapour_density,
-        energy, mixed(begin.entropy, end.entropy),
-    )  # fmt: skip

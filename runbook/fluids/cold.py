@@ -57,6 +57,22 @@ class Cold:
         edges.sort(key=lambda state: state.internal_energy or 0.0)
         return edges[0], edges[-1]
 
+    def plateau_state(self, density: float, energy: float) -> State:
+        """All three phases at an energy [J/kg] between the ends of the plateau: fractions go in a straight line."""
+        begin, end = self.plateau_states(density)
+        low, high = begin.internal_energy or 0.0, end.internal_energy or 0.0
+        share = (energy - low) / (high - low)
+
+        def mixed(one: float | None, other: float | None) -> float:
+            return (one or 0.0) + share * ((other or 0.0) - (one or 0.0))
+
+        both = self._equation.saturation(self._triple)
+        return State(
+            self._triple, density, begin.pressure, Region.THREE_PHASE, mixed(begin.solid, end.solid),
+            mixed(begin.liquid, end.liquid), mixed(begin.vapour, end.vapour), both.liquid_density,
+            both.vapour_density, energy, mixed(begin.entropy, end.entropy),
+        )  # fmt: skip
+
     @cached_property
     def _triple_vapour(self) -> Phase:
         return self._equation.vapour_phase(self._triple, self._equation.triple_pressure)

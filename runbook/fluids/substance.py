@@ -294,6 +294,13 @@ class Substance:
         """
         return self._frozen(self.triple_temperature).plateau_states(density)
 
+    def plateau_state(self, density: float, energy: float) -> State:
+        """All three phases at a density [kg/m3] and an energy [J/kg] between the ends of the plateau.
+
+        Raises OutsideValidity where no solid is modelled, or it is too dense.
+        """
+        return self._frozen(self.triple_temperature).plateau_state(density, energy)
+
     def _is_cold(self, temperature: float) -> bool:
         """Where solid may be; no number at all counts as cold, and is refused there."""
         above = temperature > self.triple_temperature

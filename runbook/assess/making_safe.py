@@ -25,6 +25,9 @@ def making_safe_findings(
     found: list[Finding] = []
     told: set[tuple[Phase, str]] = set()
     for line, plan, at in zip(lines, planned, places, strict=True):
+        if any(m.margin is None or m.margin <= 0.0 for m in plan.ahead):
+            # The step itself is outside, or not proved: that is told, and is mended first.
+            continue
         for phase in plan.phases:
             fails = _fails(scene, line.after, phase, vent)
             # One sentence a phase and limit: the rest of the lines say nothing new.
@@ -46,10 +49,11 @@ def _fails(scene: Scene, state: VesselState, phase: Phase, vent: str | None) -> 
         return ""
     after = _after(scene, state, phase, vent)
     alone, margins = left_alone(scene, after, with_times=False)
-    if alone.at_rest:
+    # Gas in the room is the people's business, not the vessel's rest.
+    blocked = [m for m in margins if (m.margin is None or m.margin <= 0.0) and m.limit != "room"]
+    if alone.at_rest or (alone.known and not blocked):
         return ""
-    worst = next((m for m in margins if m.margin is None or m.margin <= 0.0), None)
-    return "what happens is not known" if worst is None else f"{worst.limit}, {worst.kind}, with {worst.cause}"
+    return f"{blocked[0].limit}, {blocked[0].kind}, with {blocked[0].cause}" if blocked else "what happens is not known"
 
 
 def _after(scene: Scene, state: VesselState, phase: Phase, vent: str | None) -> VesselState:

@@ -14,8 +14,9 @@ from runbook.apparatus.model import Apparatus
 from runbook.apparatus.model import Instrument as InstrumentFile
 from runbook.assess.assumptions import ALL, Assumptions
 from runbook.charge.filling import air_pressure
-from runbook.errors import FileProblems
+from runbook.errors import FileProblems, InputUnusable
 from runbook.fluids.substance import Substance, substance
+from runbook.procedure.document import located, split_lines
 from runbook.procedure.model import Procedure
 from runbook.procedure.reader import Loaded
 from runbook.procedure.writing import findings as writing_findings
@@ -196,13 +197,21 @@ def open_scene(
 
     height_m: above sea level [m]; hottest_K: hottest room [K]; None: as the procedure says. cell_closed: it is
     closed already, with what the record says or, without one, with as much as it can hold. Raises
-    InputUnusable for a fluid that is not known, OutsideValidity for an impossible barometer, FileProblems where
-    a step names what the apparatus does not have: no margin can be computed for that.
+    OutsideValidity for an impossible barometer, FileProblems for a fluid that is not known and where a step names
+    what the apparatus does not have: no margin can be computed for that.
     """
     _refuse_unbound(loaded)
     stated = loaded.procedure.room.height
     height = height_m if height_m is not None else None if stated is None else stated.value
-    return Scene(loaded, barometer(reading_Pa, height), charge, assume, hottest_K, cell_closed)
+    air = barometer(reading_Pa, height)
+    try:
+        return Scene(loaded, air, charge, assume, hottest_K, cell_closed)
+    except InputUnusable as unknown:
+        at = loaded.positions.get(("fluid",))
+        if at is None:
+            raise
+        lines = split_lines(loaded.procedure_text)
+        raise FileProblems((located(loaded.procedure_file, lines, at, str(unknown), "fluid"),)) from None
 
 
 UNBOUND = ("unknown tag", "wrong instrument", "position")

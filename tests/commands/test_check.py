@@ -118,3 +118,12 @@ def test_a_room_without_air_is_refused(tmp_path: Path, capsys: pytest.CaptureFix
     """A volume of zero is told where it stands, not divided by."""
     code, _ = checked(changed_files(tmp_path, {"volume: 180 m3": "volume: 0 m3"}), capsys)
     assert code == 2
+
+
+def test_a_fluid_that_is_not_known_is_told_where_it_stands(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """Exit 2 with the place of the word and the fluids that are known."""
+    code, found = checked(changed_files(tmp_path, {"fluid: carbon dioxide": "fluid: phlogiston"}), capsys)
+    assert (code, found["verdict"]) == (2, "unreadable")
+    (finding,) = found["findings"]
+    assert (finding["line"], finding["column"]) == (24, 8)
+    assert "carbon dioxide" in finding["message"]

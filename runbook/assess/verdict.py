@@ -8,6 +8,7 @@ from runbook.answers import Certificate, Effect, Finding, LineKind, Margin, Plan
 from runbook.assess.mend import Mend
 from runbook.assess.scene import Scene
 from runbook.assess.walk import Walked
+from runbook.procedure.document import Place, Route
 from runbook.procedure.reader import Loaded
 from runbook.quantities import say
 
@@ -29,9 +30,9 @@ def line_findings(
         Finding(
             "certificate",
             "error" if c.state != "not known" else "warning",
-            1,
-            1,
+            *_dated_at(loaded, c),
             f"{c.tag}: {c.what} {_DATED[c.state]} (until {c.until}). Renew it, or plan another date.",
+            loaded.apparatus_file,
         )
         for c in dated
         if c.state != "valid"
@@ -55,6 +56,19 @@ def fluid_findings(scene: Scene) -> tuple[Finding, ...]:
     name = scene.substance.name
     said = f"{name} burns: no procedure with it is proved, since ignition and ventilation have no rules here"
     return (Finding("flammable", "error", *at, said),)
+
+
+def _dated_at(loaded: Loaded, one: Certificate) -> Place:
+    """Where in the apparatus file a dated proof stands."""
+    apparatus, places = loaded.apparatus, loaded.apparatus_positions
+    routes: list[Route] = [("relief", i, "valid_until") for i, r in enumerate(apparatus.relief) if r.tag == one.tag]
+    routes += [("instruments", i, "valid_until") for i, r in enumerate(apparatus.instruments) if r.tag == one.tag]
+    if apparatus.heat_source is not None and apparatus.heat_source.tag == one.tag:
+        routes += [("heat_source", "tested"), ("heat_source",)]
+    if one.tag == apparatus.tag:
+        word = "approved" if "approval" in one.what else "cycles" if "cycles" in one.what else "proof_test"
+        routes += [(word, "date"), (word, "valid_until"), (word, "allowed"), (word,)]
+    return next((places[route] for route in routes if route in places), (1, 1))
 
 
 def mend_findings(loaded: Loaded, found: Sequence[Mend]) -> tuple[Finding, ...]:

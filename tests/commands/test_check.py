@@ -127,3 +127,17 @@ def test_a_fluid_that_is_not_known_is_told_where_it_stands(tmp_path: Path, capsy
     (finding,) = found["findings"]
     assert (finding["line"], finding["column"]) == (24, 8)
     assert "carbon dioxide" in finding["message"]
+
+
+def test_a_certificate_is_told_where_it_stands(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """In the vessel's file, at the date that has passed."""
+    path = changed_files(tmp_path)
+    main([str(path), "--on", "2033-06-01"])
+    vessel = tmp_path / "apparatus" / "view-cell-250.yaml"
+    lines = vessel.read_text("utf-8").splitlines()
+    told = [line for line in capsys.readouterr().out.splitlines() if "[certificate]" in line]
+    assert len(told) >= 9
+    for line in told:
+        assert line.startswith(f"{vessel}:"), line
+        row, column = (int(x) for x in line.removeprefix(f"{vessel}:").split(":")[:2])
+        assert lines[row - 1][column - 1 :].startswith(("203", "{")), line

@@ -59,6 +59,6 @@ def _page(file: str, on: date, barometer: str | None) -> tuple[str | None, str, 
     lines = walk(scene)
     plan = plan_of(scene, on, lines)
     if plan.verdict != "within limits":
-        said = [f"{file}:{f.line}:{f.column}: {f.severity}: {f.message} [{f.rule}]" for f in plan.findings]
+        said = [f"{f.file or file}:{f.line}:{f.column}: {f.severity}: {f.message} [{f.rule}]" for f in plan.findings]
         return None, plan.verdict, said
     return booklet(plan, loaded.procedure.issue, gauge_card(scene, lines), on), plan.verdict, []

@@ -10,11 +10,11 @@ from datetime import UTC, datetime
 from typing import Final
 
 from runbook.answers import LineKind, PlanLine, SafetyMessage
+from runbook.bench.asking import PROOFS, ask_view, due_proof
 from runbook.bench.picturing import picture_of
 from runbook.bench.view import (
     AgreeView,
     AloneView,
-    AskView,
     CeilingView,
     DoView,
     HeaderView,
@@ -25,7 +25,6 @@ from runbook.bench.view import (
 from runbook.drawing import Ruler
 from runbook.quantities import pressure_to_unit
 from runbook.run.conductor import Conductor
-from runbook.run.reasons import Code, Reason
 from runbook.run.sentences import (
     agreement_age,
     agreement_pair,
@@ -36,22 +35,13 @@ from runbook.run.sentences import (
     hold_words,
     left_alone_verdict,
     left_alone_words,
-    next_words,
-    permission_words,
     proof_words,
     quick_words,
-    reasons_words,
-    unknown_words,
-    wanted_words,
     witness_words,
 )
 from runbook.run.sight_words import KEPT_BACK, see_if_not, see_source, see_words
 from runbook.run.standing import Standing
 
-_STATES: Final = {"yes": "yes", "finished": "yes", "not yet": "not yet"}
-"""Permission -> how it is painted; everything else is painted as blocked."""
-_TAG: Final = "\0"
-"""Stands for the instrument while sentences are compared."""
 _JUMP_S: Final = 300.0
 """[s] where nothing is asked for at any known moment."""
 _EARLY_S: Final = 5.0
@@ -92,7 +82,7 @@ def run_view(desk: Conductor, mark: str) -> RunView:
     return RunView(
         header=_header(desk, standing, mark),
         do=_do(desk, standing),
-        ask=_ask(desk, standing),
+        ask=ask_view(desk, standing),
         alone=_alone(desk, standing),
         ceiling=_ceiling(desk, standing),
         see=_see(standing),
@@ -145,10 +135,19 @@ def _instruction(desk: Conductor, standing: Standing, line: PlanLine) -> str:
         case LineKind.QUICK:
             return "\n".join(quick_words(item) for item in standing.quick)
         case LineKind.EMPTY:
-            ledger = desk.ledger
-            return "\n".join(proof_words(desk.plan, ledger, proof) for proof in standing.proofs)
+            return "\n".join(_proofs(desk, standing))
         case _:
             return imperative(line.text)
+
+
+def _proofs(desk: Conductor, standing: Standing) -> list[str]:
+    """Each proof of empty; of the one that is due what it states. What it still wants stands beside ON?."""
+    rows = []
+    due = due_proof(standing)
+    for proof in standing.proofs:
+        words = proof_words(desk.plan, desk.ledger, proof)
+        rows.append(f"{words.partition(': ')[0]}: {PROOFS[proof.name]}" if proof is due else words)
+    return rows
 
 
 def imperative(text: str) -> str:
@@ -159,78 +158,6 @@ def imperative(text: str) -> str:
 
 def _who(standing: Standing, line: PlanLine) -> str:
     return f"{line.who} {', '.join(standing.who)}".strip() if line.who is not None else ""
-
-
-# -- ON? -----------------------------------------------------------------------------------------------------
-
-
-def _ask(desk: Conductor, standing: Standing) -> AskView:
-    word = permission_words(standing).partition(" ")[2]
-    asked = {w.need.tag for w in standing.wanted}
-    # A reading that is wanted is said with its time, not twice.
-    reasons = tuple(r for r in standing.reasons if r.code is not Code.READING_WANTED or r.tag not in asked)
-    if first := _before_signing(standing):
-        # The signature comes after these.
-        reasons = (*first, *(r for r in reasons if r.code is not Code.NOT_SIGNED))
-    items = list(reasons_words(desk.plan, desk.ledger, reasons))
-    if standing.permission in ("yes", "blocked") and not standing.turned_back:
-        items.insert(0, (next_words(standing), ""))
-    if unknown := unknown_words(standing):
-        items.append((unknown, ""))
-    if standing.permission in ("yes", "not yet"):
-        items += [(words, "") for words in _wanted(standing)]
-    return AskView(_STATES.get(standing.permission, "blocked"), word, _each_once(items), _key(standing))
-
-
-def _before_signing(standing: Standing) -> tuple[Reason, ...]:
-    """What others have to do before a signature counts; the signer's own reading is asked for where they sign."""
-    hold = standing.hold
-    if hold is None or hold.signed_by:
-        return ()
-    return tuple(reason for reason in hold.missing if reason.code is not Code.OWN_WANTED)
-
-
-def _wanted(standing: Standing) -> tuple[str, ...]:
-    """What is to be read and when; instruments that are due together in one sentence."""
-    grouped: dict[str, list[str]] = {}
-    for one in standing.wanted:
-        grouped.setdefault(wanted_words(one).replace(one.need.tag, _TAG), []).append(one.need.tag)
-    return tuple(words.replace(_TAG, " and ".join(tags)) for words, tags in grouped.items())
-
-
-def _each_once(items: list[tuple[str, str]]) -> tuple[tuple[str, str], ...]:
-    """No sentence twice: several reasons are often cleared by the same act."""
-    said: set[str] = set()
-    found = []
-    for what, clears in items:
-        found.append(("" if what in said else what, "" if clears in said else clears))
-        said |= {what, clears}
-    return tuple(item for item in found if any(item))
-
-
-def _key(standing: Standing) -> str:
-    """The key that goes on from here."""
-    line = standing.line
-    if standing.permission == "yes":
-        return "Enter"
-    if standing.permission in ("halted", "make safe"):
-        return "F9 make safe"
-    if standing.gap_open:
-        return "answer four questions"
-    if standing.take_up or (line is not None and line.kind is LineKind.EMPTY and not standing.wanted):
-        return "F8 state"
-    if _before_signing(standing):
-        return "F3 read"
-    if line is not None and line.kind is LineKind.HOLD and not (standing.hold and standing.hold.signed_by):
-        return "F4 sign hold"
-    if standing.witness is not None:
-        return "F4 is here"
-    if standing.wanted:
-        return "F3 read"
-    if standing.permission == "blocked":
-        # At rest there is time for the reading that clears it, for instance on a scale that falls.
-        return "F3 read" if standing.left_alone.known and standing.left_alone.at_rest else "F9 make safe"
-    return ""
 
 
 # -- ALONE, CEILING ------------------------------------------------------------------------------------------

@@ -13,6 +13,7 @@ from textual.widget import Widget
 
 from runbook.answers import LineKind
 from runbook.bench.acting import do
+from runbook.bench.asking import PROOFS
 from runbook.bench.place import Keys, Panel
 from runbook.bench.rows import Row, row, wrapped
 from runbook.bench.widgets.lines import Lines
@@ -23,12 +24,6 @@ if TYPE_CHECKING:
 
 _SIGNS = "123456789abcdefghijkmnopqrstuvwxyz"
 """Keys in the order in which they are given out; l would be taken for 1."""
-_PROOFS = (
-    ("vent", "the vent is open and proved clear"),
-    ("wall", "the coldest wall has been above -40 °C for 10 min"),
-    ("low gauge", "the vent was shut for 10 min and the low gauge rose less than 0.1 bar"),
-    ("left open", "the vent is open again, left open and tagged"),
-)
 
 
 class StatePanel(Panel[None]):
@@ -56,7 +51,7 @@ class StatePanel(Panel[None]):
             found.append(("this step", "take it up again", TakeUp()))
         if line is not None and line.kind is LineKind.EMPTY and ledger.safe is None:
             done = {name for name, _ in ledger.entry.proofs}
-            for name, words in _PROOFS:
+            for name, words in PROOFS.items():
                 if name not in done:
                     found.append(("proof", words, Prove(name)))
                     break

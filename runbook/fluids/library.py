@@ -257,11 +257,11 @@ class Equation:
             error = self._raw(temperature, density) - pressure
             low, high = (low, density) if error > 0 else (density, high)
             slope = self._fluid.first_partial_deriv(cp.iP, cp.iDmass, cp.iT)
+            # Before the bracket is asked: a step of rounding size lands on the bracket's own end, and is an arrival.
+            if slope > 0 and abs(error) <= 1e-12 * density * slope:
+                return density - error / slope
             trial = density - error / slope if slope > 0 else low
-            trial = trial if low < trial < high else 0.5 * (low + high)
-            if abs(trial - density) < 1e-12 * density:
-                return trial
-            density = trial
+            density = trial if low < trial < high else 0.5 * (low + high)
         raise OutsideValidity(f"no liquid density found at {temperature:.6g} K and {pressure:.6g} Pa")
 
     def _check_saturation(self, temperature: float) -> None:

@@ -200,8 +200,7 @@ class Substance:
 
         Beside vapour that of the saturation or sublimation pressure. In one phase that of the density, times
         the slope; from 5 % below critical density up, the dense figure; never less than the saturation
-        pressure's share. Solid beside liquid: 1.5 % of the melting pressure (Span and Wagner 1996).
-        Raises OutsideValidity.
+        pressure's share. Solid beside liquid that of the melting pressure. Raises OutsideValidity.
         """
         region = self.region(temperature, density)
         if region is Region.LIQUID_VAPOUR:

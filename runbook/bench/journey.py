@@ -106,7 +106,6 @@ class Session:
         from runbook.bench.screens.opening import OpeningScreen
 
         app.push_screen(OpeningScreen(start))
-        app.call_after_refresh(app.painted.set)
         course = await asyncio.shield(coming)
         desk = await course.opened(app, start)
         return int(ExitCode.NOT_GOOD) if desk is None else await self._run(app, course, desk)
@@ -120,7 +119,6 @@ class Session:
         screen = ListScreen(entries, (*wrong, *said))
 
         async def fill() -> None:
-            app.call_after_refresh(app.painted.set)
             try:
                 logbook = (await asyncio.shield(coming)).logbook
                 found, unread = await asyncio.to_thread(recorded, logbook)

@@ -60,7 +60,7 @@ RUN: Final = (
     "runbook.bench.course",
 )
 """The rest of a run, as far as its last screen."""
-TURN_S: Final = 0.004
+TURN_S: Final = 0.001
 """[s] between two slices."""
 KEY_S: Final = 0.03
 """[s] between two slices while somebody types: from the terminal to the screen a key needs many turns of the loop."""

@@ -11,7 +11,6 @@ from pathlib import Path
 from runbook.commands.arguments import Arguments, iso_date
 from runbook.errors import InputUnusable
 from runbook.procedure.shelf import find_procedure
-from runbook.quantities import Dimension, parse
 
 
 def main(argv: list[str]) -> int:
@@ -45,6 +44,8 @@ def _closed(mass: str | None) -> float | None:
     """Mass stated to be closed in [kg]; infinite: nobody knows; None: the vessel is not closed."""
     if mass is None:
         return None
+    from runbook.quantities import Dimension, parse
+
     return float("inf") if mass == "?" else parse(mass, Dimension.MASS)
 
 

@@ -16,7 +16,6 @@ from typing import TYPE_CHECKING, Any
 from runbook.commands.arguments import Arguments, iso_date
 from runbook.errors import ExitCode, InputUnusable
 from runbook.procedure.shelf import find_procedure
-from runbook.rehearsal.faults import FAULTS, parse_fault
 
 if TYPE_CHECKING:
     from runbook.rehearsal.headless import FaultStory, Outcome
@@ -43,7 +42,9 @@ def main(argv: list[str]) -> int:
     if asked.fault == "list":
         return _list_faults()
     if asked.fault:
-        # A name mistyped is told before anything is loaded.
+        # A name mistyped is told before anything else is loaded; without a fault not even this is.
+        from runbook.rehearsal.faults import parse_fault
+
         parse_fault(asked.fault, asked.seed)
     path = find_procedure(asked.file)
     if asked.every_fault:
@@ -72,6 +73,8 @@ def _on_screens(path: Path, asked: Any) -> int:
 
 
 def _list_faults() -> int:
+    from runbook.rehearsal.faults import FAULTS
+
     for one in FAULTS:
         print(f"{one.name:<26}{one.words}; from: {one.begins}")
     return int(ExitCode.GOOD)
@@ -79,6 +82,7 @@ def _list_faults() -> int:
 
 def _every_fault(path: Path, seed: int, as_json: bool) -> int:
     """Each fault in a rehearsal of its own; 1 where one went badly."""
+    from runbook.rehearsal.faults import FAULTS
     from runbook.rehearsal.headless import rehearse
 
     told = []
@@ -111,6 +115,7 @@ def _fault_lines(outcome: Outcome) -> list[str]:
 
 
 def _headless(path: Path, seed: int, as_json: bool, logbook: Path | None, fault: str) -> int:
+    from runbook.rehearsal.faults import parse_fault
     from runbook.rehearsal.headless import rehearse
 
     chosen = parse_fault(fault, seed) if fault else None

@@ -23,7 +23,8 @@ from tests.bench.svgtext import rows_of
 CODE = """
 import sys
 import runbook.__main__, runbook.commands.listing, runbook.bench.launch, runbook.bench.journey
-print([name for name in ("pydantic", "yaml", "json", "runbook.answers", "runbook.run") if name in sys.modules])
+import runbook.bench.screens.opening, runbook.commands.bench, runbook.commands.rehearse
+print([name for name in ("pydantic", "yaml", "runbook.answers", "runbook.run") if name in sys.modules])
 """
 
 

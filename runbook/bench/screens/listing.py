@@ -73,6 +73,8 @@ class ListScreen(Place[Entry | None]):
         listed = self.query_one(OptionList)
         listed.focus()
         listed.action_first()
+        # What takes time waits until this stands.
+        self.call_after_refresh(self.bench.painted.set)
 
     def add(self, entries: tuple[Entry, ...], said: tuple[str, ...] = ()) -> None:
         """What was found after the list was up; the choice stays where it is."""

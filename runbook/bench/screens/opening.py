@@ -32,6 +32,10 @@ class OpeningScreen(Place[None]):
         super().__init__()
         self._entry = entry
 
+    def on_mount(self) -> None:
+        """What takes time waits until this stands."""
+        self.call_after_refresh(self.bench.painted.set)
+
     def heading(self) -> str:
         """The procedure's name, or that of the record."""
         return self._entry.title

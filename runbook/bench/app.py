@@ -37,6 +37,8 @@ Journey = Callable[["BenchApp"], Awaitable[int]]
 """Shows one screen after the other; its result is the exit code."""
 REFRESH_S = 0.5
 """[s] between two looks at the clock; ages and times are shown in whole seconds."""
+PAINT_S = 0.05
+"""[s] three frames: layout and painting go in steps, and whatever is loaded between them holds them up."""
 TYPING_S = 0.1
 """[s] after a key; the next one is likely."""
 TIDY_S = 1.0
@@ -114,6 +116,10 @@ class BenchApp(App[int]):
         from runbook.drawing import ASCII, UNICODE
 
         return ASCII if self._ascii_only else UNICODE
+
+    def stands(self) -> None:
+        """Said by a first screen when it is mounted; it is on the terminal a few frames of the toolkit later."""
+        self.set_timer(PAINT_S, self.painted.set)
 
     # -- the run ----------------------------------------------------------------------------------------
 

@@ -74,7 +74,7 @@ class ListScreen(Place[Entry | None]):
         listed.focus()
         listed.action_first()
         # What takes time waits until this stands.
-        self.call_after_refresh(self.bench.painted.set)
+        self.bench.stands()
 
     def add(self, entries: tuple[Entry, ...], said: tuple[str, ...] = ()) -> None:
         """What was found after the list was up; the choice stays where it is."""

@@ -34,7 +34,7 @@ class OpeningScreen(Place[None]):
 
     def on_mount(self) -> None:
         """What takes time waits until this stands."""
-        self.call_after_refresh(self.bench.painted.set)
+        self.bench.stands()
 
     def heading(self) -> str:
         """The procedure's name, or that of the record."""

@@ -142,9 +142,7 @@ class JournalWriter:
         except RuntimeError:
             raise JournalError(f"{self.path} has been put away; nothing more is written there.") from None
 
-    async def append(
-        self, kind: str, data: Mapping[str, object], now: Moment, version: int = 1
-    ) -> Record:
+    async def append(self, kind: str, data: Mapping[str, object], now: Moment, version: int = 1) -> Record:
         """Write an event without stopping the loop; it is on the disk when this returns. Raises as `submit`."""
         waiting = asyncio.wrap_future(self.submit(kind, data, now, version))
         # Shielded: whoever waits may be cancelled, the event is written all the same. Its failure is then nobody's

@@ -256,6 +256,4 @@ def _json(value: object) -> str:
     return text
 
 
-_dump: Final = json.JSONEncoder(
-    sort_keys=True, separators=(",", ":"), allow_nan=False, ensure_ascii=False
-).encode
+_dump: Final = json.JSONEncoder(sort_keys=True, separators=(",", ":"), allow_nan=False, ensure_ascii=False).encode

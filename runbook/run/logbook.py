@@ -131,9 +131,7 @@ class Logbook:
         """All rehearsals, those begun last first. Raises JournalError where the folder cannot be read."""
         return self._list(rehearsal=True)
 
-    def history(
-        self, vessel: str, fold: Callable[[S, Record], S], start: S, skipped: list[RunFile] | None = None
-    ) -> S:
+    def history(self, vessel: str, fold: Callable[[S, Record], S], start: S, skipped: list[RunFile] | None = None) -> S:
         """What the runs of `vessel`, oldest first, make of `start`, each record handed to `fold` in order.
 
         A damaged journal is passed over and put into `skipped`; whoever leans on the answer must look there, and

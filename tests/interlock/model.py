@@ -15,16 +15,14 @@ from runbook.run import acts
 from runbook.run.clock import Moment
 from runbook.run.events import (
     Event,
-    NotAttended,
-    Proved,
     QuickConfirmed,
     RunOpened,
     Signed,
-    WitnessCame,
 )
 from tests.interlock import away, points
+from tests.interlock.finish import finished
 from tests.interlock.past import Past, lowers, raises
-from tests.interlock.points import PROOFS, count
+from tests.interlock.points import count
 
 Verdict = tuple[bool, str]
 """Permitted, and why not."""
@@ -61,6 +59,7 @@ class Model:
     def __init__(self, opened: RunOpened, at: Moment) -> None:
         """A run that has just been opened."""
         self.past = Past(opened, at)
+        self.past.judge = finished
         self.plan = opened.plan
         self.asked: away.Asked = []
 
@@ -203,32 +202,4 @@ class Model:
 
     def finished(self, now: Moment) -> bool:
         """Whether the line the run stands in is finished."""
-        line = self.past.line()
-        if line is None:
-            return True
-        if self.past.turned_back():
-            return False
-        match line.kind:
-            case LineKind.DO | LineKind.PARKED:
-                return self._read(line.reads, now)
-            case LineKind.HOLD:
-                return count(self.past, Signed) > 0
-            case LineKind.WITNESS:
-                return count(self.past, WitnessCame, NotAttended) > 0
-            case LineKind.QUICK:
-                done = count(self.past, QuickConfirmed) == len(line.quick)
-                return done and self._read(line.read_after, now)
-            case LineKind.EMPTY:
-                return count(self.past, Proved) == len(PROOFS)
-
-    def _read(self, needs: tuple[Need, ...], now: Moment) -> bool:
-        """Each latest reading was taken in this entry, is accepted and is young enough."""
-        for need in needs:
-            readings = self.past.readings(need.tag, self.past.entry())
-            if not readings:
-                return False
-            _, reading, at = readings[-1]
-            limit = need.fresh_s if need.every_s is None else min(need.fresh_s, need.every_s)
-            if not reading.in_range or now.age(at) > limit:
-                return False
-        return True
+        return finished(self.past, now)

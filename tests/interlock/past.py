@@ -7,6 +7,8 @@ It refuses to judge; it only finds things in the list.
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
 from runbook.answers import Answer, Effect, Instrument, Need, PlanLine
 from runbook.run.clock import Moment
 from runbook.run.events import (
@@ -42,6 +44,11 @@ def lowers(line: PlanLine) -> bool:
     return any(effect is Effect.LOWERS for _, effect in line.effects)
 
 
+def moved(line: PlanLine) -> set[str]:
+    """Valves that a line moves, by itself or by an item of its quick sequence."""
+    return {tag for tag, _ in line.valves} | {tag for item in line.quick for tag, _ in item.valves}
+
+
 class Past:
     """The list, and questions that are answered by reading it from one end to the other."""
 
@@ -52,6 +59,17 @@ class Past:
         self.events: list[Dated] = [(opened, at)]
         self.first = opened.plan.parts[opened.part].first
         """Index of the run's first line."""
+        self.judge: Callable[[Past, Moment], bool] = lambda past, now: False
+        """Whether the line a run stands in is finished: the model's own notion, which lives apart (finish.py)."""
+        self._done: dict[int, bool] = {}
+
+    def left_finished(self, n: int) -> bool:
+        """Whether the line that event number n went on from was finished then, by what had happened before it."""
+        if n not in self._done:
+            before = Past(self.opened, self.events[0][1])
+            before.events = self.events[:n]
+            self._done[n] = self.judge(before, self.events[n][1])
+        return self._done[n]
 
     # Where the run stands.
 
@@ -115,20 +133,41 @@ class Past:
     def stated(self, tag: str) -> list[tuple[int, str]]:
         """Everything said of one valve's position: (number of the event, position), oldest first."""
         said = [(0, position) for name, position in self.plan.valves if name == tag]
-        where = self.first - 1
+        where, entered = self.first - 1, 0
         for n, (event, _) in enumerate(self.events):
             pairs: tuple[tuple[str, str], ...] = ()
             if isinstance(event, ValveStated):
                 pairs = ((event.tag, event.position),)
             elif isinstance(event, QuickConfirmed):
                 pairs = self.plan.lines[event.line].quick[event.item].valves
-            elif isinstance(event, GapAnswered) and self.plan.let_down_valve is not None:
-                pairs = ((self.plan.let_down_valve, event.vent),)
+            elif isinstance(event, GapAnswered):
+                pairs = self._after_gap(event)
             elif isinstance(event, WentOn):
-                pairs = self.plan.lines[where].valves if where >= 0 else ()
+                since = any(m > entered and position != "do not know" for m, position in said)
+                pairs = self._left(where, n, tag, since)
                 where = event.to
+            if self.enters(event):
+                entered = n
             said += [(n, position) for name, position in pairs if name == tag]
         return said
+
+    def _after_gap(self, event: GapAnswered) -> tuple[tuple[str, str], ...]:
+        """The vent is where it is said to be; where something may have been touched, nobody knows the others."""
+        vent = self.plan.let_down_valve
+        others = [] if event.touched == "no" else [(t, "do not know") for t, _ in self.plan.valves if t != vent]
+        return (*others, *([] if vent is None else [(vent, event.vent)]))
+
+    def _left(self, where: int, n: int, tag: str, since: bool) -> tuple[tuple[str, str], ...]:
+        """What going on (event number n) says of one valve: a finished line was done, of another nobody knows.
+
+        since: somebody has said where it stands since the line was entered.
+        """
+        if where < 0:
+            return ()
+        line = self.plan.lines[where]
+        if self.left_finished(n):
+            return line.valves
+        return ((tag, "do not know"),) if tag in moved(line) and not since else ()
 
     def position(self, tag: str) -> str:
         """The last that was said of a valve's position."""
@@ -137,8 +176,10 @@ class Past:
 
     def position_asked(self, tag: str) -> str:
         """The position a question carries: while a line moves a valve it is unknown until somebody says so."""
+        if self.gap_open():
+            return "do not know"
         line = self.line()
-        if line is not None and any(name == tag for name, _ in line.valves):
+        if line is not None and tag in moved(line):
             said = [position for n, position in self.stated(tag) if n > self.entry()]
             return said[-1] if said else "do not know"
         return self.position(tag)
@@ -164,7 +205,8 @@ class Past:
             elif isinstance(event, WentOn | TakenUp):
                 line = self.plan.lines[event.to if isinstance(event, WentOn) else event.line]
                 state = line.source if line.source is not None else state
-        return state
+        # In an open gap nobody knows, unless there is nothing to know.
+        return "do not know" if self.gap_open() and self.plan.source != "none" else state
 
     def answer(self, key: str, upto: int | None = None) -> Answer | None:
         """The latest word on a question, among the first `upto` events; None is unknown."""

@@ -186,7 +186,8 @@ class Run:
         event, facts = self.model.past.events[-1][0], self.model.facts()
         changed = self.facts is not None and facts != self.facts
         same = self.keys and key == self.keys[-1]
-        if same and (changed or isinstance(event, ReadingTaken)):
+        # A closed run asks nothing: its key is empty and stays so.
+        if key and same and (changed or isinstance(event, ReadingTaken)):
             raise Disagreement(f"the key stayed after {event}")
         if self.keys and not same and not changed and not isinstance(event, ReadingTaken | GapOpened | RunClosed):
             raise Disagreement(f"the key changed after {event}")

@@ -101,7 +101,7 @@ def gate(plan: Plan, ledger: Ledger, now: Moment, to: int) -> tuple[Reason, ...]
     """What blocks entering line `to`; empty: nothing."""
     line = plan.lines[to]
     answer = ledger.answer
-    found: list[Reason] = list(_containment(plan, ledger)) if line.opens_containment else []
+    found: list[Reason] = list(_containment(plan, ledger, now)) if line.opens_containment else []
     if not raises(line):
         return tuple(found)
     if lowers(line) and not (answer is not None and answer.left_alone.at_rest):
@@ -121,18 +121,18 @@ def gate(plan: Plan, ledger: Ledger, now: Moment, to: int) -> tuple[Reason, ...]
     return tuple(found)
 
 
-def _containment(plan: Plan, ledger: Ledger) -> Iterator[Reason]:
+def _containment(plan: Plan, ledger: Ledger, now: Moment) -> Iterator[Reason]:
     vent = plan.let_down_valve
     if not ledger.empty_proved:
         yield Reason(BLOCKED, Code.NOT_PROVED_EMPTY)
-    if vent is None or _position_after_leaving(ledger, vent) != "open":
+    if vent is None or _position_after_leaving(plan, ledger, now, vent) != "open":
         yield Reason(BLOCKED, Code.VENT_NOT_OPEN, tag=vent or "")
 
 
-def _position_after_leaving(ledger: Ledger, tag: str) -> str:
-    """Of a valve, once going on has confirmed what the present line does to it."""
+def _position_after_leaving(plan: Plan, ledger: Ledger, now: Moment, tag: str) -> str:
+    """Of a valve, once going on has confirmed what the present line does to it, if that line is finished."""
     line = ledger.present
-    moved = dict(line.valves) if line is not None and ledger.entry.turned_back is None else {}
+    moved = dict(line.valves) if line is not None and not unfinished(plan, ledger, now) else {}
     return moved.get(tag, ledger.position(tag))
 
 

@@ -15,9 +15,10 @@ from runbook.codec import to_plain
 from runbook.run import events as ev
 from runbook.run.clock import Moment
 from runbook.run.events import Event
-from runbook.run.gate import PROOFS
+from runbook.run.gate import PROOFS, unfinished
 from runbook.run.past import NOTHING, with_past
 from runbook.run.questions import (
+    UNKNOWN,
     after_gap,
     canonical,
     closed,
@@ -90,14 +91,18 @@ def _opened(ledger: Ledger, event: ev.RunOpened, at: Moment) -> Ledger:
 def _entry(ledger: Ledger, at: Moment) -> Entry:
     """Standing in the ledger's line from now on."""
     line = ledger.present
-    moved = () if line is None else tuple(tag for tag, _ in line.valves)
-    return Entry(seq=ledger.seq, at=at, unconfirmed=moved)
+    pairs = () if line is None else (*line.valves, *(pair for item in line.quick for pair in item.valves))
+    return Entry(seq=ledger.seq, at=at, unconfirmed=tuple(dict.fromkeys(tag for tag, _ in pairs)))
 
 
 def _went_on(ledger: Ledger, event: ev.WentOn, at: Moment) -> Ledger:
-    left = ledger.present
-    for tag, position in left.valves if left is not None else ():
-        ledger = _state(ledger, tag, position, at)
+    left, plan = ledger.present, ledger.plan
+    if left is not None and plan is not None:
+        # Going on says that a finished line was done. Of one that was left undone nobody knows where its valves stand.
+        done = not unfinished(plan, ledger, at)
+        doubtful = tuple((tag, UNKNOWN) for tag in ledger.entry.unconfirmed)
+        for tag, position in left.valves if done else doubtful:
+            ledger = _state(ledger, tag, position, at)
     ledger = replace(ledger, line=event.to, before=ledger.here, here=Trail())
     return _enter(ledger, at)
 
@@ -227,7 +232,11 @@ def _gap(ledger: Ledger, event: ev.GapOpened, at: Moment) -> Ledger:
 
 def _gap_answered(ledger: Ledger, event: ev.GapAnswered, at: Moment) -> Ledger:
     ledger = replace(ledger, gap_open=False, source=event.source)
-    vent = ledger.plan.let_down_valve if ledger.plan is not None else None
+    plan = ledger.plan
+    vent = plan.let_down_valve if plan is not None else None
+    if plan is not None and event.touched != "no":
+        for tag, _ in plan.valves:
+            ledger = ledger if tag == vent else _state(ledger, tag, UNKNOWN, at)
     return ledger if vent is None else _state(ledger, vent, event.vent, at)
 
 

@@ -38,7 +38,7 @@ def question(plan: Plan, ledger: Ledger) -> Question | None:
         to=to_line(ledger),
         closed=closed(ledger),
         valves=positions(ledger),
-        source=ledger.source,
+        source=source(ledger),
         charge=plan.charge,
         observations=observations(ledger.seen),
         history=ledger.past.readings,
@@ -52,9 +52,14 @@ def to_line(ledger: Ledger) -> int:
 
 
 def positions(ledger: Ledger) -> tuple[tuple[str, str], ...]:
-    """Every valve's position by tag: 'open', 'shut' or 'do not know'."""
-    doubtful = ledger.entry.unconfirmed
+    """Every valve's position by tag: 'open', 'shut' or 'do not know'; the last for all while a gap is not answered."""
+    doubtful = ledger.stated.keys() if ledger.gap_open else ledger.entry.unconfirmed
     return tuple((t, UNKNOWN if t in doubtful else s.position) for t, s in sorted(ledger.stated.items()))
+
+
+def source(ledger: Ledger) -> str:
+    """The heat source as it was last said to be; while a gap is not answered nobody knows, where there is one."""
+    return UNKNOWN if ledger.gap_open and ledger.plan is not None and ledger.plan.source != "none" else ledger.source
 
 
 def closed(ledger: Ledger) -> str:
@@ -113,7 +118,7 @@ def key_of(ledger: Ledger) -> str:
     text = (
         f'{{"charge":{ledger.charge_json},"closed":"{closed(ledger)}","line":{ledger.line},'
         f'"observations":[{ledger.observations_json}],"plan":"{ledger.plan_digest}",'
-        f'"source":{canonical(ledger.source)},"to":{to_line(ledger)},"valves":{canonical(positions(ledger))}}}'
+        f'"source":{canonical(source(ledger))},"to":{to_line(ledger)},"valves":{canonical(positions(ledger))}}}'
     )
     return hashlib.sha256(text.encode()).hexdigest()
 

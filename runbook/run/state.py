@@ -98,7 +98,8 @@ class Entry:
     turned_back: str | None = None
     """Why the way back stands on the screen; None: it does not."""
     unconfirmed: tuple[str, ...] = ()
-    """Valves this line moves that nobody has stated since the entry: their position counts as not known."""
+    """Valves this line or its quick sequence moves that nobody has stated since the entry: where they stand counts as
+    not known."""
 
 
 @dataclass(frozen=True, slots=True)

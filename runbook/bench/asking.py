@@ -12,7 +12,14 @@ from runbook.answers import LineKind
 from runbook.bench.view import AskView
 from runbook.run.conductor import Conductor
 from runbook.run.reasons import Code, Reason
-from runbook.run.sentences import next_words, permission_words, reasons_words, unknown_words, wanted_words
+from runbook.run.sentences import (
+    next_words,
+    permission_words,
+    reasons_words,
+    unknown_words,
+    unstated_words,
+    wanted_words,
+)
 from runbook.run.standing import ProofState, Standing
 
 _STATES: Final = {"yes": "yes", "finished": "yes", "not yet": "not yet"}
@@ -45,6 +52,9 @@ def ask_view(desk: Conductor, standing: Standing) -> AskView:
     items = list(reasons_words(desk.plan, desk.ledger, reasons))
     if standing.permission in ("yes", "blocked") and not standing.turned_back:
         items.insert(0, (next_words(standing), ""))
+    if unstated := unstated_words(standing):
+        # Where it blocks, the margins behind the other reasons are the worst of all positions.
+        items.insert(1 if standing.permission == "blocked" else len(items), (unstated, ""))
     if unknown := unknown_words(standing):
         items.append((unknown, ""))
     if standing.permission in ("yes", "not yet"):
@@ -100,6 +110,8 @@ def _key(standing: Standing) -> str:
         return "F4 sign hold"
     if standing.witness is not None:
         return "F4 is here"
+    if standing.permission == "blocked" and standing.unstated:
+        return "F8 state"
     if standing.wanted:
         return "F3 read"
     if standing.permission == "blocked":

@@ -73,6 +73,8 @@ def _on(plan: Plan, ledger: Ledger, standing: Standing) -> list[str]:
         lines.append(f"         {wrong}")
         lines += [f"         clears it: {clears}"] if clears else []
     lines += [f"         {say.wanted_words(w)} ({w.need.what}, {w.need.unit})" for w in standing.wanted]
+    if unstated := say.unstated_words(standing):
+        lines.append(f"         {unstated}: valve {standing.unstated[0]} open | shut")
     line = standing.line
     if standing.hold is not None:
         lines.append(f"         {say.hold_words(standing.hold)}")

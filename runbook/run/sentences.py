@@ -272,6 +272,15 @@ def unknown_words(standing: Standing) -> str:
     return "margins are not known" + ("" if left is None else f"; the way back comes in {duration(left)}")
 
 
+def unstated_words(standing: Standing) -> str:
+    """Which valves have to be looked at and stated."""
+    tags = standing.unstated
+    if not tags:
+        return ""
+    stand = "stands" if len(tags) == 1 else "stand"
+    return f"Nobody has said where {' and '.join(tags)} {stand}: look, and state it"
+
+
 # -- hold, witness, quick sequence, proofs ---------------------------------------------------------------
 
 

@@ -15,6 +15,7 @@ from runbook.run.clock import Moment
 from runbook.run.decide import allowed_unknown, decide, unknown_for
 from runbook.run.gate import PROOFS, gate, is_blocked, unfinished
 from runbook.run.proofs import not_proved
+from runbook.run.questions import UNKNOWN
 from runbook.run.reasons import NOT_YET, Code, Reason, Refused
 from runbook.run.safe import SafePhase, make_safe, phase_of, rest_shut
 from runbook.run.sight_words import sights_of
@@ -101,6 +102,8 @@ class Standing:
     turned_back: str
     """Why; empty: it was not."""
     wanted: tuple[Wanted, ...]
+    unstated: tuple[str, ...]
+    """Valves of which nobody knows where they stand and which going on does not confirm: to be looked at."""
     now: tuple[Margin, ...]
     ahead: tuple[Margin, ...]
     ceiling: Ceiling
@@ -172,6 +175,7 @@ def standing(plan: Plan, ledger: Ledger, now: Moment) -> Standing:
         take_up=ledger.entry.turned_back is not None and not gate(plan, ledger, now, ledger.line),
         turned_back=ledger.entry.turned_back or "",
         wanted=wanted(plan, ledger, now),
+        unstated=_unstated(ledger),
         now=answer.now if answer is not None else (),
         ahead=answer.ahead if answer is not None else (),
         ceiling=ceiling(plan, ledger),
@@ -224,6 +228,14 @@ def _permission(plan: Plan, ledger: Ledger, now: Moment) -> tuple[str, tuple[Rea
         return (NOT_YET, missing) if missing else ("yes", ())
     decided = decide(plan, ledger, now, GoOn())
     return (decided.kind, decided.reasons) if isinstance(decided, Refused) else ("yes", ())
+
+
+def _unstated(ledger: Ledger) -> tuple[str, ...]:
+    if ledger.gap_open or ledger.outcome is not None:
+        # The questions after a gap come first.
+        return ()
+    doubtful = ledger.entry.unconfirmed
+    return tuple(t for t, s in sorted(ledger.stated.items()) if s.position == UNKNOWN and t not in doubtful)
 
 
 def _part(plan: Plan, ledger: Ledger) -> str:

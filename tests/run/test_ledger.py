@@ -190,17 +190,9 @@ REPLAY = """
 import sys
 sys.modules["CoolProp"] = None
 sys.modules["numpy"] = None
-import time
 from tests.run.test_ledger import long_run, fold_all
-pairs = long_run(10_000)
-best = 1e9
-for _ in range(3):
-    begun = time.perf_counter()
-    ledger = fold_all(pairs)
-    best = min(best, time.perf_counter() - begun)
-assert ledger.seq == 10_000
+assert fold_all(long_run(10_000)).seq == 10_000
 assert not [name for name in sys.modules if name.startswith(("runbook.fluids", "runbook.charge", "runbook.assess"))]
-print(best)
 """
 
 
@@ -221,10 +213,9 @@ def long_run(count: int) -> list[tuple[Event, Moment]]:
 
 
 def test_ten_thousand_events_replay_without_physics() -> None:
-    """Ten thousand events fold in under half a second with the property library blocked."""
+    """Ten thousand events fold with the property library blocked; how fast is for tests/benchmarks/bench_replay.py."""
     done = subprocess.run([sys.executable, "-c", REPLAY], capture_output=True, text=True, check=False, timeout=120)
     assert done.returncode == 0, done.stderr
-    assert float(done.stdout) < 0.5
 
 
 def test_a_line_with_thousands_of_readings_costs_no_more_each() -> None:

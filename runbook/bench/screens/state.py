@@ -85,7 +85,8 @@ class StatePanel(Panel[None]):
         if what == self._desk.plan.source_tag:
             return f"is {ledger.source}"
         if what in dict(self._desk.plan.valves):
-            return f"is {ledger.position(what)}"
+            position = "do not know" if what in ledger.entry.unconfirmed else ledger.position(what)
+            return "is not known" if position == "do not know" else f"is {position}"
         return ""
 
     async def on_key(self, event: events.Key) -> None:

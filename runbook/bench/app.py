@@ -15,12 +15,14 @@ import gc
 import signal
 import time
 from collections.abc import Awaitable, Callable
-from typing import TYPE_CHECKING, ClassVar
+from typing import TYPE_CHECKING, Any, ClassVar
 
 from textual import events
 from textual._styles_cache import StylesCache
 from textual.app import App
 from textual.binding import Binding, BindingType
+from textual.css.query import NoMatches
+from textual.screen import Screen
 
 from runbook.bench.place import Place
 from runbook.bench.stall import StallGuard
@@ -140,14 +142,23 @@ class BenchApp(App[int]):
         """Every screen that shows the run anew, also beneath a panel."""
         self._mark()
         for screen in self.screen_stack:
-            update = getattr(screen, "update_run", None)
-            if update is not None and screen.is_mounted:
-                update()
+            if screen.is_mounted:
+                self.paint_screen(screen)
         if not isinstance(self.screen, Place):
             # What lies beneath a panel is painted with it.
             self.screen.refresh()
         if self.desk is not None and self.desk.ledger.outcome is not None:
             self.ended.set()
+
+    def paint_screen(self, screen: Screen[Any]) -> None:
+        """One screen anew, if it shows the run; one that is still being filled once more a little later."""
+        update = getattr(screen, "update_run", None)
+        if update is None:
+            return
+        try:
+            update()
+        except NoMatches:
+            self.set_timer(PAINT_S, self.paint)
 
     async def look(self) -> None:
         """The clock looks."""

@@ -88,7 +88,7 @@ class PicturesScreen(Place[None]):
 
     def on_mount(self) -> None:
         """The first picture."""
-        self.update_run()
+        self.bench.paint_screen(self)
 
     def update_run(self) -> None:
         """The pictures as they are now."""

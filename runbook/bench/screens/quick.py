@@ -91,7 +91,7 @@ class QuickScreen(Place[None]):
 
     async def _confirm(self) -> None:
         self._said = await do(self._desk, QuickDone(len(self._desk.ledger.entry.quick)))
-        self.update_run()
+        self.bench.paint_screen(self)
 
 
 def _present(number: int, item: QuickState, left: float, width: int) -> list[Row]:

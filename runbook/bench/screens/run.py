@@ -91,7 +91,7 @@ class RunScreen(RunPlace):
 
     def on_mount(self) -> None:
         """The first picture."""
-        self.update_run()
+        self.bench.paint_screen(self)
 
     def on_resize(self, event: events.Resize) -> None:
         """Rows for the new size."""

@@ -111,7 +111,7 @@ class SafeScreen(RunPlace):
 
     async def _do(self, act: Act) -> None:
         self._said = await do(self._desk, act)
-        self.update_run()
+        self.bench.paint_screen(self)
 
 
 def _closer(rows: list[Row], height: int) -> list[Row]:

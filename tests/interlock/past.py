@@ -187,7 +187,9 @@ class Past:
     def vessel(self) -> str:
         """Whether the charge's space is closed: 'open', 'closed' or 'do not know'."""
         line = self.line()
-        if line is not None and line.seals:
+        confirmed = sum(isinstance(e, QuickConfirmed) for e, _ in self.events[self.entry() + 1 :])
+        if line is not None and line.seals and not (line.quick and confirmed == len(line.quick)):
+            # Closed at once; a quick sequence that was gone through has said itself where its valves stand.
             return "closed"
         positions = [self.position_asked(tag) for tag in self.plan.outside_valves]
         if "open" in positions:

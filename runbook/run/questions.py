@@ -65,7 +65,9 @@ def source(ledger: Ledger) -> str:
 def closed(ledger: Ledger) -> str:
     """Whether the vessel is closed: 'open', 'closed' or 'do not know'."""
     line = ledger.present
-    if line is not None and line.seals:
+    gone_through = line is not None and line.quick and len(ledger.entry.quick) == len(line.quick)
+    if line is not None and line.seals and not gone_through:
+        # At once; a quick sequence that was gone through has said itself where its valves stand.
         return "closed"
     found = dict(positions(ledger))
     outside = [found.get(tag, UNKNOWN) for tag in (ledger.plan.outside_valves if ledger.plan else ())]

@@ -2,11 +2,14 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import pytest
 
+from runbook.answers import QuickItem
 from runbook.run import acts
 from runbook.run.events import GapOpened
-from runbook.run.questions import question
+from runbook.run.questions import closed, question
 from runbook.run.sentences import unstated_words
 from runbook.run.standing import standing
 from tests.run.plans import BS1, Run, begun, line, plan, quick
@@ -93,3 +96,17 @@ def test_a_gap(touched: str, kept: str) -> None:
     run.must(acts.GapAnswers("off", "open", touched, ("Ada",)))
     assert (asked(run)[vent], asked(run)[other]) == ("open", kept)
     assert (other in unstated(run)) is (kept == "do not know")
+
+
+def test_a_sequence_that_closes_and_lets_go_ends_open() -> None:
+    """While it is gone through the vessel counts as closed; once all items are confirmed, as its valves were stated."""
+    items = (
+        QuickItem("Shut V2", 60.0, "Let go.", (("V2", "shut"),), True),
+        QuickItem("Let V2 go", 60.0, "Let go.", (("V2", "open"),)),
+    )
+    run = begun(plan(replace(quick(), quick=items, seals=True), line(2)))
+    run.must(acts.GoOn())
+    run.must(acts.QuickDone(0))
+    assert closed(run.ledger) == "closed"
+    run.must(acts.QuickDone(1))
+    assert closed(run.ledger) == "open"

@@ -258,7 +258,8 @@ def wanted_words(wanted: Wanted) -> str:
     if wanted.overdue:
         return f"READ {tag} NOW"
     if wanted.outside:
-        return f"read {tag} again: {wanted.need.if_not}" if wanted.need.if_not else f"read {tag} again"
+        # What the author says to do outside the range stands with the reason, once.
+        return f"read {tag} again"
     if wanted.due_s > 0.0:
         return f"next reading of {tag} in {duration(wanted.due_s)}"
     return f"read {tag}"

@@ -598,7 +598,7 @@ def test_no_agreement_in_words() -> None:
         (Wanted(PG1, 0.0, False, "this step"), "read PG1"),
         (Wanted(PG1, -5.0, True, "this step"), "READ PG1 NOW"),
         (Wanted(BS1, 0.0, False, "this step", outside=True), "read BS1 again"),
-        (Wanted(replace(BS1, if_not="Stop."), 0.0, False, "this step", outside=True), "read BS1 again: Stop."),
+        (Wanted(replace(BS1, if_not="Stop."), 0.0, False, "this step", outside=True), "read BS1 again"),
         (Wanted(HS1, 0.0, False, "signing", blind=True), "the signer reads HS1 without sight of the other reading"),
     ],
 )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from runbook.fluids.library import Saturation
+from runbook.fluids.library import Saturation, SaturationSlopes
 from runbook.fluids.solids.curves import Solid
 from runbook.fluids.solids.gibbs import Phase
 from runbook.fluids.state import Region, State
@@ -71,3 +71,20 @@ def _together(
 def _share(density: float, one: float, other: float) -> float:
     """Volume fraction [1] of the phase of density one; clamped, since at an edge rounding may pass it."""
     return min(1.0, max(0.0, (density - other) / (one - other)))
+
+
+def heat_capacity_beside_vapour(density: float, both: Saturation, slopes: SaturationSlopes) -> float:
+    """Heat capacity of liquid beside vapour at fixed volume [J/kg/K], from both saturated phases; density [kg/m3].
+
+    How they share the volume changes with temperature; the equation's own figure means nothing there.
+    """
+    liquid, vapour = 1.0 / both.liquid_density, 1.0 / both.vapour_density
+    liquid_slope = -slopes.liquid_density * liquid * liquid
+    vapour_slope = -slopes.vapour_density * vapour * vapour
+    share = (1.0 / density - liquid) / (vapour - liquid)
+    share_slope = -(liquid_slope + share * (vapour_slope - liquid_slope)) / (vapour - liquid)
+    return (
+        slopes.liquid_energy
+        + share * (slopes.vapour_energy - slopes.liquid_energy)
+        + (both.vapour_energy - both.liquid_energy) * share_slope
+    )

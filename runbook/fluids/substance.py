@@ -9,11 +9,11 @@ from __future__ import annotations
 from functools import cache
 
 from runbook.errors import OutsideValidity
+from runbook.fluids import landmarks
 from runbook.fluids.catalogue import FluidData, find
 from runbook.fluids.cold import Cold
 from runbook.fluids.library import Equation, Frozen, Saturation, SaturationSlopes
-from runbook.fluids.mixing import liquid_and_vapour, solid_and_liquid
-from runbook.fluids.roots import bracketed_root
+from runbook.fluids.mixing import heat_capacity_beside_vapour, liquid_and_vapour, solid_and_liquid
 from runbook.fluids.solids.curves import Solid
 from runbook.fluids.solids.gibbs import Phase
 from runbook.fluids.solids.making import solid_of
@@ -124,17 +124,7 @@ class Substance:
 
         Raises OutsideValidity at pressures above critical and below the curves.
         """
-        if pressure >= self.triple_pressure:
-            if not pressure < self.critical_pressure:
-                raise OutsideValidity(f"nothing boils at {pressure / 1e5:.5g} bar: above the critical pressure")
-            span = self.triple_temperature, self.critical_temperature
-            return bracketed_root(lambda t: self._equation.dome(t)[0] - pressure, *span, 1e-6)
-        ice = self._ice(self.triple_temperature - 1.0)
-        if pressure < ice.sublimation_pressure(self.min_temperature):
-            raise OutsideValidity(f"nothing stands beside its vapour at {pressure:.5g} Pa")
-        return bracketed_root(
-            lambda t: ice.sublimation_pressure(t) - pressure, self.min_temperature, self.triple_temperature, 1e-6
-        )
+        return landmarks.boiling(self._equation, self._cold, pressure)
 
     def saturation_slopes(self, temperature: float) -> SaturationSlopes:
         """Slopes along the saturation curve at a temperature [K] below critical. Raises OutsideValidity."""
@@ -180,17 +170,7 @@ class Substance:
         region = self.region(temperature, density)
         if region is Region.LIQUID_VAPOUR:
             both = self._equation.saturation(temperature)
-            slopes = self._equation.saturation_slopes(temperature)
-            liquid, vapour = 1.0 / both.liquid_density, 1.0 / both.vapour_density
-            liquid_slope = -slopes.liquid_density * liquid * liquid
-            vapour_slope = -slopes.vapour_density * vapour * vapour
-            share = (1.0 / density - liquid) / (vapour - liquid)
-            share_slope = -(liquid_slope + share * (vapour_slope - liquid_slope)) / (vapour - liquid)
-            return (
-                slopes.liquid_energy
-                + share * (slopes.vapour_energy - slopes.liquid_energy)
-                + (both.vapour_energy - both.liquid_energy) * share_slope
-            )
+            return heat_capacity_beside_vapour(density, both, self._equation.saturation_slopes(temperature))
         if region in _SEVERAL:
             raise OutsideValidity(f"no heat capacity of {region} at {temperature:.6g} K: use energies")
         return self._equation.slopes(temperature, density)[2]
@@ -244,12 +224,7 @@ class Substance:
         None where it never does: near critical density (the landmark is critical), thinner, and at densities
         above that of liquid at the triple point, which are full of solid and liquid once the vapour goes.
         """
-        if density <= self.critical_density or self.is_critical(density):
-            return None
-        if not density <= self._equation.triple_liquid_density:
-            return None
-        span = self.triple_temperature, self.critical_temperature
-        return bracketed_root(lambda t: self._equation.dome(t)[1] - density, *span, 1e-6)
+        return None if self.is_critical(density) else landmarks.liquid_full(self._equation, density)
 
     def dry_temperature(self, density: float) -> float | None:
         """Temperature [K] at which the last liquid of a charge has gone on warming, or the last solid.
@@ -257,17 +232,7 @@ class Substance:
         density [kg/m3]; solid where it is too thin for liquid.
         None near critical density and denser, and where it lies below the models' range.
         """
-        if not 0.0 < density < self.critical_density or self.is_critical(density):
-            return None
-        if density >= self._equation.triple_vapour_density:
-            span = self.triple_temperature, self.critical_temperature
-            return bracketed_root(lambda t: self._equation.dome(t)[2] - density, *span, 1e-6)
-        if self._cold is None or self._cold.frost_density(self.min_temperature) > density:
-            return None
-        cold = self._cold
-        return bracketed_root(
-            lambda t: cold.frost_density(t) - density, self.min_temperature, self.triple_temperature, 1e-6
-        )
+        return None if self.is_critical(density) else landmarks.dry(self._equation, self._cold, density)
 
     def landmarks(self, density: float) -> Landmarks:
         """All landmarks of a charge of that density [kg/m3]."""

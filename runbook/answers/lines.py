@@ -113,6 +113,7 @@ class Empty:
 
     low_gauge: str
     isolator: str
+    """Empty where the gauge is on the vessel itself."""
     wall: str
     vent: str
 

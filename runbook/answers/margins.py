@@ -106,7 +106,7 @@ class Future:
     """One computed future of the vessel with everybody gone."""
 
     cause: str
-    """'heat off' or 'heat stuck on'."""
+    """'heat off' or 'heat stuck on'; of a vent held shut by hand 'V1 let go' and 'V1 stuck shut'."""
     ends_K: float | None
     """Temperature it ends at, worst corner [K]."""
     ends_Pa: float | None
@@ -130,7 +130,7 @@ class LeftAlone:
     known: bool
     """False: nothing could be computed, which is shown and counts as not at rest."""
     futures: tuple[Future, ...]
-    """Heat off first; heat stuck on where a source is connected."""
+    """Heat off first, heat stuck on where a source is connected; of a held vent let go first, then stuck."""
 
 
 @dataclass(frozen=True, slots=True)

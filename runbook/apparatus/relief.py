@@ -29,6 +29,17 @@ def lowest_opening(relief: Relief) -> Level:
     return Level(rated.pascal * (1.0 + lowest) * (1.0 - relief.tolerance), "gauge")
 
 
+def highest_opening(relief: Relief) -> Level:
+    """Highest pressure at which it opens, gauge [Pa]: as lowest_opening(), upwards."""
+    rated = relief.bursts_at if relief.bursts_at is not None else relief.opens_at
+    if rated is None:  # the model refuses such a device
+        raise ValueError(f"{relief.tag} has neither bursts_at nor opens_at")
+    highest = 0.0
+    if relief.manufacturing_range is not None and relief.manufacturing_range.high is not None:
+        highest = relief.manufacturing_range.high
+    return Level(rated.pascal * (1.0 + highest) * (1.0 + relief.tolerance), "gauge")
+
+
 def ceiling(relief: Relief) -> Level:
     """Highest pressure the vessel is run at below this device, gauge [Pa]: its share of the lowest opening."""
     return Level(lowest_opening(relief).pascal * relief.run_below, "gauge")

@@ -64,6 +64,12 @@ def ways_out(apparatus: Apparatus, space: str) -> tuple[str, ...]:
     return (*valves, *(o.tag for o in apparatus.openings if o.space == space))
 
 
+def springs_open(apparatus: Apparatus) -> frozenset[str]:
+    """Tags of the valves between the charge's space and the room that open when a hand lets go of them."""
+    ways = set(ways_out(apparatus, apparatus.spaces[0]))
+    return frozenset(v.tag for v in apparatus.valves if v.let_go == "opens" and v.tag in ways)
+
+
 def _reach(apparatus: Apparatus, positions: Mapping[str, str], start: str, through: frozenset[str]) -> frozenset[str]:
     seen, todo = {start}, [start]
     while todo:

@@ -11,7 +11,8 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 
 from runbook.answers import LeftAlone, Margin
-from runbook.assess.futures import left_alone
+from runbook.assess.futures import hottest_body, left_alone
+from runbook.assess.held import held_reach, stuck_margins
 from runbook.assess.limits import closed_extremes, margins, open_extremes, worst_of
 from runbook.assess.scene import Scene
 from runbook.assess.walk import VesselState, Walked, by_source
@@ -49,6 +50,13 @@ def look(scene: Scene, lines: Sequence[Walked], index: int, with_times: bool, hi
 def path_margins(scene: Scene, line: Walked, cause: str) -> list[Margin]:
     """Margins of what the line itself reaches."""
     during = line.during
+    if line.held is not None:
+        hottest = hottest_body(scene, during)
+        reach = held_reach(scene, line.held, during, hottest)
+        return [
+            *margins(scene, reach, during.valves, cause),
+            *stuck_margins(scene, during, line.held.vent, hottest),
+        ]
     if line.lets_down and line.before.closed:
         # Gas goes to the room, the wall may reach dry ice; the pressure starts where it stood.
         start = closed_extremes(scene, line.before.high_kg, line.before.hot, line.before.cold)
@@ -63,6 +71,9 @@ def path_margins(scene: Scene, line: Walked, cause: str) -> list[Margin]:
 
 
 def _committed(scene: Scene, lines: Sequence[Walked], index: int, high_kg: float | None) -> list[Margin]:
+    if lines[index].lets_down:
+        # It lets go again of what it closes: the next closing is judged when it comes.
+        return []
     found: list[Margin] = []
     connected = False
     judged: tuple[object, ...] = ()

@@ -9,6 +9,7 @@ from __future__ import annotations
 from runbook.answers import Future, LeftAlone, Margin
 from runbook.apparatus.model import HeatSource
 from runbook.assess.heat_time import seconds_to_pressure, seconds_to_temperature
+from runbook.assess.held import held_vent, let_go, stuck_margins, stuck_pressure
 from runbook.assess.limits import Extremes, closed_extremes, margins, open_extremes, worst_of
 from runbook.assess.scene import Scene
 from runbook.assess.walk import VesselState
@@ -31,6 +32,18 @@ def hottest_source(scene: Scene, source: HeatSource) -> float | None:
     return balance if source.hottest is None else min(balance, source.hottest.high)
 
 
+def hottest_body(scene: Scene, state: VesselState) -> float | None:
+    """Hottest that the body may be while somebody is at it [K]: the room's, or its connected source's.
+
+    None where that source's cut-out is not known.
+    """
+    source = scene.apparatus.heat_source
+    if source is None or state.source not in CONNECTED:
+        return max(scene.room_hottest, state.hot)
+    hottest = hottest_source(scene, source)
+    return None if hottest is None else max(scene.room_hottest, state.hot, hottest)
+
+
 def left_alone(
     scene: Scene, state: VesselState, with_times: bool, stuck: bool | None = None
 ) -> tuple[LeftAlone, tuple[Margin, ...]]:
@@ -39,6 +52,9 @@ def left_alone(
     with_times: also when the first limit falls (integrates; not for live evaluation). stuck: whether the
     source counts as stuck on; None: whenever it is connected.
     """
+    vent = held_vent(scene, state)
+    if vent is not None:
+        return _hand_gone(scene, state, vent, with_times)
     futures: list[Future] = []
     found: list[Margin] = []
     off, off_margins = _future(scene, state, "heat off", scene.room_hottest, with_times)
@@ -55,6 +71,20 @@ def left_alone(
     known = all(f.ends_Pa is not None for f in futures)
     alone = LeftAlone(all(f.at_rest for f in futures), known, tuple(futures))
     return alone, worst_of(found)
+
+
+def _hand_gone(scene: Scene, state: VesselState, vent: str, with_times: bool) -> tuple[LeftAlone, tuple[Margin, ...]]:
+    """Both futures of a vessel that a hand keeps shut: the vent springs open, or it sticks."""
+    hottest = hottest_body(scene, state)
+    opened, found = _future(scene, let_go(scene, state, vent), f"{vent} let go", hottest, with_times)
+    stuck = list(stuck_margins(scene, state, vent, hottest))
+    blocked = [m for m in worst_of(stuck) if m.margin is None or m.margin <= 0.0]
+    ends = stuck_pressure(scene, state, hottest).value
+    limit = blocked[0].limit if blocked else None
+    shut = Future(f"{vent} stuck shut", None, ends, ends is not None and not blocked, limit, None)
+    futures = (opened, shut)
+    known = all(f.ends_Pa is not None for f in futures)
+    return LeftAlone(all(f.at_rest for f in futures), known, futures), worst_of([*found, *stuck])
 
 
 def _future(

@@ -77,6 +77,9 @@ def _of_valves(scene: Scene, line: Walked) -> dict[Hazard, Effect]:
     found: dict[Hazard, Effect] = {}
     if line.seals:
         found[Hazard.OVER_PRESSURE] = Effect.RAISES
+        if line.lets_down:
+            # It lets go again of what it closes: that takes back nothing of what closing raised.
+            return found | {Hazard.COLD: Effect.RAISES, Hazard.GAS: Effect.RAISES}
     opened = {t for t, p in after.valves.items() if p == "open" and before.valves.get(t) != "open"}
     if not opened or not before.loaded:
         return found

@@ -20,9 +20,11 @@ from runbook.assess.agreement import Computed, agreement, computed_pressure, rea
 from runbook.assess.ahead import look, standing_valves
 from runbook.assess.boxes import charge_box, gas_left
 from runbook.assess.corners import Worst, temperature_at_pressure
+from runbook.assess.course import Held
 from runbook.assess.evidence.estimate import charge_estimate
 from runbook.assess.evidence.live import explained
-from runbook.assess.futures import CONNECTED, left_alone
+from runbook.assess.futures import CONNECTED, hottest_body, left_alone
+from runbook.assess.held import held_reach, held_vent
 from runbook.assess.limits import (
     Extremes,
     closed_extremes,
@@ -58,15 +60,17 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     if box is not None and after_letting_down and question.closed != "open":
         box = gas_left(scene, box, readings.temperature, readings.pressure) or box
     state = _state(scene, lines, question, box)
-    rate = worst_rate(scene, state, lines[question.line] if question.line >= 0 else None)
+    line = lines[question.line] if question.line >= 0 else None
+    rate = worst_rate(scene, state, line)
     wall = _wall(scene, state, readings.temperature, rate)
     state = replace(state, hot=wall[1], cold=wall[0])
-    reach = _reach(scene, state, readings)
+    held = line.held if line is not None else None
+    reach = _reach(scene, state, readings, held)
     computed = None
     if box is not None and state.closed and readings.temperature is not None:
         computed = computed_pressure(scene, box, readings.temperature, rate)
     standing = worst_of(margins(scene, reach, state.valves, "now"))
-    distance = _distance(scene, state, reach, rate, standing)
+    distance = _distance(scene, state, reach, rate, standing, held is not None)
     found_now = _timed(standing, distance)
     ahead = _ahead(scene, lines, question, box)
     alone, _ = left_alone(scene, state, with_times=False)
@@ -76,7 +80,7 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     found = _assemble(
         scene,
         question,
-        lines[question.line] if question.line >= 0 else None,
+        line,
         state,
         box,
         reach,
@@ -130,6 +134,7 @@ def _assemble(
         hot=state.hot,
         cold=state.cold,
         pressure=_highest_read(scene, readings),
+        by_hand=held_vent(scene, state) is not None,
     )
     return Answer(
         key=question.key,
@@ -206,11 +211,14 @@ def _wall(scene: Scene, state: VesselState, read: Observation | None, rate: floa
     return read.value - U, read.value + U + lag * rate
 
 
-def _reach(scene: Scene, state: VesselState, readings: Readings) -> Extremes:
-    """Extremes now: the worse of measured and computed, plus U."""
+def _reach(scene: Scene, state: VesselState, readings: Readings, held: Held | None) -> Extremes:
+    """Extremes now: the worse of measured and computed, plus U; held: a hand lets go before it comes further."""
     if not state.loaded or (not state.closed and not state.letting_down):
         return open_extremes(scene, state.hot, state.cold)
-    reach = closed_extremes(scene, state.high_kg, state.hot, state.cold)
+    if held is not None:
+        reach = held_reach(scene, held, state, hottest_body(scene, state))
+    else:
+        reach = closed_extremes(scene, state.high_kg, state.hot, state.cold)
     read = readings.pressure
     if read is None:
         return reach
@@ -235,14 +243,16 @@ def _timed(found: tuple[Margin, ...], distance: Distance) -> tuple[Margin, ...]:
     return tuple(lasting)
 
 
-def _distance(scene: Scene, state: VesselState, reach: Extremes, rate: float, standing: tuple[Margin, ...]) -> Distance:
+def _distance(
+    scene: Scene, state: VesselState, reach: Extremes, rate: float, standing: tuple[Margin, ...], held: bool
+) -> Distance:
     """To the lowest pressure limit along the worst corner's own isochore."""
     worst = reach.pressure.value
     limits = [m for m in standing if m.kind == "pressure" and m.allowed is not None]
     if worst is None or not limits:
         return Distance(None, None, None, rate)
     ceiling = min(limits, key=lambda m: m.allowed or 0.0).allowed
-    if ceiling is None or not state.closed:
+    if ceiling is None or not state.closed or held:
         return Distance(None if ceiling is None else ceiling - worst, None, None, rate)
     reached = temperature_at_pressure(scene, state.high_kg, ceiling, state.hot)
     if worst >= ceiling:

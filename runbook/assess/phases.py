@@ -18,11 +18,14 @@ def phases(
     hot: float,
     cold: float,
     pressure: float | None,
+    by_hand: bool = False,
 ) -> tuple[Phase, ...]:
     """Phases of a state: most charge [kg], wall between cold and hot [K], highest pressure read or computed
-    [Pa] (None: not known)."""
+    [Pa] (None: not known); by_hand: a vent that springs open is held shut, and to let go of it comes first."""
     if not loaded:
         return (Phase.A,)
+    if by_hand and closed:
+        return (Phase.B,)
     if letting_down:
         return _letting_down(scene, pressure)
     if not closed:

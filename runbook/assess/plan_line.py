@@ -8,6 +8,7 @@ from runbook.answers import (
     Empty,
     Hold,
     LineKind,
+    Phase,
     PlanLine,
     QuickItem,
     SafetyMessage,
@@ -15,6 +16,7 @@ from runbook.answers import (
 )
 from runbook.assess.ahead import commits, look
 from runbook.assess.hazards import effects
+from runbook.assess.held import held_vent
 from runbook.assess.needs import entry_needs, need_of, seal_items
 from runbook.assess.phases import phases
 from runbook.assess.scene import Scene
@@ -41,7 +43,6 @@ def plan_line(scene: Scene, walked: Sequence[Walked], index: int) -> PlanLine:
     ahead = look(scene, walked, index, with_times=True)
     line_effects = effects(scene, line)
     sights, if_not = line_sights(scene, line)
-    state = line.after
     return PlanLine(
         number=line.number,
         part=line.part,
@@ -66,22 +67,33 @@ def plan_line(scene: Scene, walked: Sequence[Walked], index: int) -> PlanLine:
         seals=line.seals,
         ahead=ahead.margins,
         left_alone=ahead.left_alone,
-        phases=phases(
-            scene,
-            loaded=state.loaded,
-            closed=state.closed,
-            letting_down=state.letting_down,
-            high_kg=state.high_kg,
-            proved=_proved_by(walked, index),
-            hot=state.hot,
-            cold=state.cold,
-            pressure=None,
-        ),
+        phases=_phases(scene, walked, index),
         way_back=_way_back(scene, line),
         sights=sights,
         if_not=if_not,
         lasts_s=_lasts(line),
     )
+
+
+def _phases(scene: Scene, walked: Sequence[Walked], index: int) -> tuple[Phase, ...]:
+    """As the line leaves the vessel; of one that lets go of what it closes, closed as well."""
+    line, proved = walked[index], _proved_by(walked, index)
+    states = (line.during, line.after) if line.held is not None else (line.after,)
+    found: list[Phase] = []
+    for state in states:
+        found += phases(
+            scene,
+            loaded=state.loaded,
+            closed=state.closed,
+            letting_down=state.letting_down,
+            high_kg=state.high_kg,
+            proved=proved,
+            hot=state.hot,
+            cold=state.cold,
+            pressure=None,
+            by_hand=held_vent(scene, state) is not None,
+        )
+    return tuple(dict.fromkeys(found))
 
 
 def kind_of(step: Step | Parked) -> LineKind:
@@ -107,14 +119,19 @@ def text_of(step: Step | Parked) -> str:
     if isinstance(step, QuickStep):
         return "; ".join(item.do for item in step.quick)
     if isinstance(step, EmptyStep):
-        return "Show that the vessel is empty, by all four proofs"
+        e = step.show_empty
+        isolated = f"{e.isolator} open and " if e.isolator else ""
+        return (
+            f"Show that the vessel is empty: {e.vent} open and clear; {e.wall} warm again; "
+            f"with {isolated}{e.vent} shut {e.low_gauge} stands still; {e.vent} open again and tagged"
+        )
     return f"Leave the vessel at rest: heat {step.heat}, shield {step.shield}, key with {step.key_with}"
 
 
 def _leans_on(line: Walked) -> tuple[str, ...]:
     if line.warms:
         return ("temperature", "charge")
-    if line.lets_down:
+    if line.lets_down and not line.seals:
         return ("pressure",)
     return ()
 
@@ -179,7 +196,7 @@ def _empty(step: Step | Parked) -> Empty | None:
     if not isinstance(step, EmptyStep):
         return None
     e = step.show_empty
-    return Empty(e.low_gauge, e.isolator, e.wall, e.vent)
+    return Empty(e.low_gauge, e.isolator or "", e.wall, e.vent)
 
 
 def _valves(scene: Scene, step: Step | Parked) -> tuple[tuple[str, str], ...]:
@@ -195,6 +212,8 @@ def _way_back(scene: Scene, line: Walked) -> str:
     then = f" Then read {gauge}." if gauge else ""
     if line.warms and source is not None:
         return f"HEAT OFF: switch {source.tag} off." + then
+    if line.held is not None:
+        return f"LET GO of {line.held.vent}." + then
     if line.lets_down:
         tag = line.verb.through if isinstance(line.verb, LetDownTo) else "the vent"
         return f"SHUT {tag} only if the vessel is at rest with it shut; else leave it open and step back." + then

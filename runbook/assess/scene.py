@@ -58,6 +58,9 @@ class Scene:
     """Look-aheads by line, most charge [kg] and valve positions."""
     reached: dict[tuple[float, float], float | None] = field(init=False, default_factory=dict)
     """Temperature [K] at which most charge [kg] reaches a pressure [Pa] at the worst corner."""
+    risen: dict[tuple[float, float, float, float], float | str] = field(init=False, default_factory=dict)
+    """Pressure [Pa] that a held charge rises to, or why that cannot be said, by most charge [kg], level [Pa], hottest
+    body [K] and seconds."""
     weighed_by_height: dict[tuple[float, float], tuple[float, float] | None] = field(init=False, default_factory=dict)
     """Least and most charge [kg] that a height [m] at a temperature [K] means."""
     estimated_by_height: dict[tuple[float, float], tuple[float, float] | None] = field(init=False, default_factory=dict)

@@ -10,6 +10,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
 from runbook.apparatus.instruments import permissible_error
+from runbook.assess.course import Held, course_of
 from runbook.assess.scene import Scene
 from runbook.procedure.model import (
     CoolTo,
@@ -68,6 +69,8 @@ class Walked:
     lets_down: bool
     rate: float
     """Fastest warming the line states [K/s]; 0 where it states none."""
+    held: Held | None = None
+    """A quick sequence that closes the vessel only by a hand on a vent that springs open, and lets go of it."""
 
 
 def start_state(scene: Scene) -> VesselState:
@@ -142,20 +145,29 @@ def _one(
     valves = dict(before.valves) | valves_of(step)
     source = _source_after(scene, before, step, verb)
     during = replace(before, valves=valves, source=source)
-    seals = before.loaded and not before.closed and is_closed(scene, valves)
+    course = course_of(scene.apparatus, before.valves, step)
+    ends_closed = is_closed(scene, valves)
+    seals = before.loaded and not before.closed and (ends_closed or course.closes)
     if isinstance(verb, Load):
         low, high = verb.load.low, verb.load.high
         during = replace(during, loaded=True, low_kg=low, high_kg=high, cold=scene.coldest_in_the_open)
     if seals:
+        # Of what was let down before nobody knows how little is left; never more than was closed in first.
+        low = 0.0 if before.letting_down else sealed[0]
         during = replace(
-            during, closed=True, low_kg=sealed[0], high_kg=sealed[1], hot=max(during.hot, scene.room_hottest)
-        )
+            during, closed=True, letting_down=False, low_kg=low, high_kg=sealed[1],
+            hot=max(during.hot, scene.room_hottest),
+        )  # fmt: skip
     during = _moved(scene, during, verb)
-    opened = before.closed and not is_closed(scene, valves)
+    opened = (before.closed or course.closes) and not ends_closed
     lets_down = isinstance(verb, LetDownTo) or opened
+    let_down = during
     if lets_down:
-        during = replace(during, closed=False, letting_down=True, cold=scene.coldest_in_the_open)
-    after = _after(scene, during, step, verb)
+        let_down = replace(during, closed=False, letting_down=True, cold=scene.coldest_in_the_open)
+    if not seals:
+        # A sequence that closes and lets go again stands in the line closed, which is the worse of the two.
+        during = let_down
+    after = _after(scene, let_down, step, verb)
     return Walked(
         number=number,
         part=part,
@@ -168,6 +180,7 @@ def _one(
         warms=isinstance(verb, WarmTo) and by_source(scene, verb) and before.loaded,
         lets_down=lets_down,
         rate=_rate(verb),
+        held=course.held if seals else None,
     )
 
 

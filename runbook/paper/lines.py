@@ -114,12 +114,13 @@ def _more(line: PlanLine) -> list[Element]:
         return [tag("ol", *items, class_="acts")]
     if line.empty is not None:
         e = line.empty
+        joined = f"{e.isolator} open, " if e.isolator else ""
         return [
             tag(
                 "ol",
                 tag("li", f"☐ {e.vent} open, and proved clear: gas or air passes through it"),
                 tag("li", f"☐ {e.wall} above -40 °C for 10 min at the coldest place one can reach"),
-                tag("li", f"☐ {e.isolator} open, {e.vent} shut for 10 min: {e.low_gauge} rises less than 0.1 bar"),
+                tag("li", f"☐ {joined}{e.vent} shut for 10 min: {e.low_gauge} rises less than 0.1 bar"),
                 tag("li", f"☐ {e.vent} open again, left open and tagged"),
                 class_="acts",
             )

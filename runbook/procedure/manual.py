@@ -16,7 +16,8 @@ _ORDER: Final = {
     "procedure": (
         "Procedure", "Issue", "Charge", "Room", "Part", "Parked", "DoStep", "StepWarning", "ReadStep", "See",
         "HoldStep", "Hold", "WitnessStep", "Witness", "QuickStep", "QuickItem", "EmptyStep", "Empty",
-        "Load", "Seal", "WarmTo", "CoolTo", "KeepAt", "LetDownTo", "Purge", "OpenContainment", "Move", "Park", "Also",
+        "Load", "Seal", "WarmTo", "CoolTo", "KeepAt", "LetDownTo", "LetRiseTo", "Purge", "OpenContainment",
+        "Move", "Park", "Also",
     ),
     "apparatus": (
         "Apparatus", "Approved", "Volume", "Body", "Mawp", "ProofTest", "Cycles", "Valve", "Opening", "Component",

@@ -125,6 +125,19 @@ class LetDownTo(FileModel):
     """What ends it besides the pressure. Example: no liquid seen"""
 
 
+class LetRiseTo(FileModel):
+    """A vent that springs open is held shut by hand while the closed charge warms by itself; then it is let go."""
+
+    let_rise_to: f.LevelField
+    """A vent that springs open is held shut by hand until the gauge shows this, at the most. Example: 4.6 bar(g)"""
+    read_on: Name
+    """Tag of the gauge, on the vessel itself. Example: PG1"""
+    let_go_within: f.TimeField
+    """How long after that the hand lets go, at the most. Example: 3 s"""
+    until: Literal["liquid seen", "solid gone"] | None = None
+    """What ends it before: a sight. Example: solid gone"""
+
+
 class Purge(FileModel):
     """Filled with gas and let down again, to drive the air out."""
 
@@ -138,15 +151,15 @@ class Purge(FileModel):
     """Tag of the valve. Example: V2"""
 
 
-VERBS: Final = ("load", "seal", "warm_to", "cool_to", "keep_at", "let_down_to", "purge", "open_containment",
-                "move", "park")  # fmt: skip
+VERBS: Final = ("load", "seal", "warm_to", "cool_to", "keep_at", "let_down_to", "let_rise_to", "purge",
+                "open_containment", "move", "park")  # fmt: skip
 """Every verb."""
 WORDS: Final = ("seal", "open_containment", "move", "park")
 """Verbs that may stand as a bare word."""
 _CLASSES: Final = {
     "Load": "load", "Seal": "seal", "WarmTo": "warm_to", "CoolTo": "cool_to", "KeepAt": "keep_at",
-    "LetDownTo": "let_down_to", "Purge": "purge", "OpenContainment": "open_containment", "Move": "move",
-    "Park": "park",
+    "LetDownTo": "let_down_to", "LetRiseTo": "let_rise_to", "Purge": "purge",
+    "OpenContainment": "open_containment", "Move": "move", "Park": "park",
 }  # fmt: skip
 
 
@@ -172,6 +185,7 @@ Path = Annotated[
     | Annotated[CoolTo, Tag("(cool_to)")]
     | Annotated[KeepAt, Tag("(keep_at)")]
     | Annotated[LetDownTo, Tag("(let_down_to)")]
+    | Annotated[LetRiseTo, Tag("(let_rise_to)")]
     | Annotated[Purge, Tag("(purge)")]
     | Annotated[OpenContainment, Tag("(open_containment)")]
     | Annotated[Move, Tag("(move)")]

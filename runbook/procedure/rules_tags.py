@@ -106,12 +106,14 @@ def _empty(route: Route, step: EmptyStep, apparatus: Apparatus) -> Iterable[Foun
     yield from _instrument((*route, "wall"), empty.wall, "temperature", apparatus)
     valves = {v.tag: v for v in apparatus.valves}
     for key, tag in (("isolator", empty.isolator), ("vent", empty.vent)):
-        if tag not in valves:
+        if tag is not None and tag not in valves:
             yield _unknown((*route, key), tag, valves, "valve")
-    vent, isolator = valves.get(empty.vent), valves.get(empty.isolator)
+    vent, isolator = valves.get(empty.vent), valves.get(empty.isolator or "")
     if vent is not None and set(vent.joins) != {apparatus.spaces[0], OUTSIDE}:
         yield Found("unknown tag", (*route, "vent"), f"{vent.tag} does not lead from the charge's space outside")
     gauge = next((i for i in apparatus.instruments if i.tag == empty.low_gauge), None)
+    if empty.isolator is None and gauge is not None and gauge.of != apparatus.spaces[0]:
+        yield Found("unknown tag", route, f"{gauge.tag} is not on the vessel itself: name the isolator before it")
     if isolator is not None and gauge is not None and set(isolator.joins) != {apparatus.spaces[0], gauge.of}:
         yield Found("unknown tag", (*route, "isolator"), f"{isolator.tag} does not join the charge to {gauge.tag}")
 

@@ -160,8 +160,8 @@ class Empty(FileModel):
 
     low_gauge: Name
     """Tag of the gauge that shows a rise of 0.1 bar. Example: PG2"""
-    isolator: Name
-    """The valve between that gauge and the vessel. Example: V3"""
+    isolator: Name | None = None
+    """The valve between that gauge and the vessel; left out: the gauge is on the vessel itself. Example: V3"""
     wall: Name
     """Tag of the thermometer on the wall. Example: TT1"""
     vent: Name

@@ -16,6 +16,7 @@ from runbook.procedure.lines import Found
 from runbook.procedure.model import Procedure
 from runbook.procedure.reader import Loaded
 from runbook.procedure.rules_guard import guards
+from runbook.procedure.rules_held import held_by_hand
 from runbook.procedure.rules_order import order
 from runbook.procedure.rules_people import holds, roles
 from runbook.procedure.rules_readings import readings
@@ -31,6 +32,7 @@ RULES: Final[tuple[Rule, ...]] = (
     holds,
     order,
     guards,
+    held_by_hand,
     readings,
     wording,
     messages,

@@ -18,7 +18,7 @@ from runbook.rehearsal.faults import Fault, Trouble, Troubles
 from runbook.rehearsal.operator import Operator
 from runbook.rehearsal.story import Story
 from runbook.rehearsal.world import World
-from runbook.run.acts import Act, GoOn, MakeSafe
+from runbook.run.acts import Act, GoOn, MakeSafe, QuickDone
 from runbook.run.clock import FakeClock
 from runbook.run.conductor import Conductor
 from runbook.run.events import Answered
@@ -166,8 +166,8 @@ class _Run:
             await self._wait(wait_s or 20.0)
             return
         self.refusals = 0
-        # A person needs a moment for everything.
-        await self._wait(3.0)
+        # A person needs a moment for everything; with a hand on a valve and the eyes on a gauge a shorter one.
+        await self._wait(1.0 if isinstance(act, QuickDone) else 3.0)
 
     async def _wait(self, seconds: float) -> None:
         left = max(1.0, seconds)

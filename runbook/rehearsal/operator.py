@@ -10,7 +10,7 @@ from dataclasses import dataclass
 
 from runbook.answers import LineKind, Need, PlanLine
 from runbook.assess.walk import Walked
-from runbook.procedure.model import CoolTo, LetDownTo, WarmTo
+from runbook.procedure.model import CoolTo, DoStep, LetDownTo, LetRiseTo, QuickStep, WarmTo
 from runbook.rehearsal.world import World
 from runbook.run.acts import (
     Act,
@@ -30,6 +30,8 @@ from runbook.run.conductor import Conductor
 from runbook.run.opening import Participant
 from runbook.run.signing import readings_missing
 
+_WATCHING_S = 1.0
+"""Between two looks of somebody who keeps a vent shut by hand [s]."""
 PROOFS = ("vent", "wall", "low gauge", "left open")
 
 
@@ -94,7 +96,10 @@ class Operator:
 
     def _arrived(self) -> bool:
         """The path of the line has come to its end, by the instruments."""
-        verb = self._lines[self._conductor.ledger.line].verb
+        here = self._lines[self._conductor.ledger.line]
+        verb, step = here.verb, here.step
+        if isinstance(step, DoStep) and step.see is not None and "solid gone" in step.see.show and self._world.ice_seen:
+            return False
         wall = next((i.tag for i in self._conductor.plan.instruments if i.reads == "temperature"), None)
         shown = None if wall is None else self._world.read(wall)
         if isinstance(verb, WarmTo) and shown is not None:
@@ -165,8 +170,24 @@ class Operator:
             shown = None if scale is None else self._world.read(scale)
             if line.quick[done].seals and shown is not None and shown > 0.5 * (low + high):
                 return Wish(None, 5.0)
-            return Wish(QuickDone(done))
+            return Wish(QuickDone(done)) if self._risen(line, done) else Wish(None, _WATCHING_S)
         return self._asked(line.read_after)
+
+    def _risen(self, line: PlanLine, item: int) -> bool:
+        """Where a vent is held shut by hand: the sight has come, the gauge shows the level, or the time is over."""
+        step = self._lines[self._conductor.ledger.line].step
+        path = step.quick[item].path if isinstance(step, QuickStep) else None
+        if not isinstance(path, LetRiseTo):
+            return True
+        shown = self._world.read(path.read_on)
+        if shown is None or shown >= path.let_rise_to.absolute(self._conductor.plan.barometer):
+            return True
+        seen = {"liquid seen": self._world.liquid_seen, "solid gone": not self._world.ice_seen}
+        if path.until is not None and seen[path.until]:
+            return True
+        entry = self._conductor.ledger.entry
+        since = entry.quick[-1].at if entry.quick else entry.at
+        return self._conductor.clock.now().age(since) >= line.quick[item].latest_s - 2.0 * _WATCHING_S
 
     def _hold(self, line: PlanLine) -> Wish | None:
         ledger = self._conductor.ledger
@@ -208,7 +229,7 @@ class Operator:
         if left[0] == "wall":
             return self._watched(empty.wall, Prove("wall"))
         if left[0] == "low gauge":
-            if position(empty.isolator) != "open":
+            if empty.isolator and position(empty.isolator) != "open":
                 return Wish(SetValve(empty.isolator, "open"))
             if position(empty.vent) != "shut":
                 return Wish(SetValve(empty.vent, "shut"))

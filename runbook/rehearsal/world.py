@@ -28,6 +28,8 @@ _WIDE = 5e-3
 """Bore of an opening that states none [m]."""
 _IN_AIR = 420e-6
 """Carbon dioxide in clean air, volume fraction [1]; NOAA 2023."""
+_SEEN = 0.01
+"""Share of the volume that liquid has to fill before anybody sees it [1]."""
 _LONGEST = 5.0
 """Longest step between two looks at the instruments [s]."""
 
@@ -152,6 +154,18 @@ class World:
     def temperature(self) -> float:
         """Of the wetted wall, true [K]."""
         return self._simulation.wall(self.vessel, self.controls)
+
+    @property
+    def ice_seen(self) -> bool:
+        """Solid, or what lies in the open, is in view."""
+        state = self._simulation.state(self.vessel)
+        return self.vessel.mass > 1e-6 and (state is None or (state.solid or 0.0) > 0.0)
+
+    @property
+    def liquid_seen(self) -> bool:
+        """Enough liquid to be told from ice and vapour."""
+        state = self._simulation.state(self.vessel)
+        return state is not None and (state.liquid or 0.0) > _SEEN
 
     def read(self, tag: str) -> float | None:
         """What an instrument shows now [SI; pressures absolute]; None where it shows nothing."""

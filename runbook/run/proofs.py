@@ -83,7 +83,8 @@ def _low(ledger: Ledger, now: Moment, empty: Empty) -> Iterator[Reason]:
     isolator = ledger.stated.get(empty.isolator)
     # Shut at the first reading, it could have hidden the rise.
     behind = after[0].seq if after else ledger.seq + 1
-    if isolator is None or isolator.position != "open" or isolator.run_seq > behind:
+    shut_off = isolator is None or isolator.position != "open" or isolator.run_seq > behind
+    if empty.isolator and shut_off:
         yield Reason(NOT_YET, Code.ISOLATOR_NOT_OPEN, tag=empty.isolator)
     if not after or not after[0].at.age(at) <= FRESH_S or not after[0].event.in_range:
         yield Reason(NOT_YET, Code.FIRST_WANTED, tag=empty.low_gauge, allowed_s=FRESH_S)

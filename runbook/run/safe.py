@@ -86,6 +86,8 @@ class _At:
     """None: there is none, or nothing may be let out."""
     source: str | None
     away: bool
+    springs_open: bool
+    """The vent opens when a hand lets go of it."""
     rest_shut: bool
     """With the vent shut the vessel is at rest."""
     carbon_dioxide: bool
@@ -93,6 +95,10 @@ class _At:
     @property
     def heat_off(self) -> tuple[str, ...]:
         return () if self.source is None else (f"HEAT OFF: switch {self.source} off.",)
+
+    @property
+    def let_out(self) -> str:
+        return f"LET GO of {self.vent}" if self.springs_open else f"OPEN {self.vent}"
 
     @property
     def heat_gone(self) -> tuple[str, ...]:
@@ -129,11 +135,13 @@ def _planned(plan: Plan, ledger: Ledger) -> tuple[Phase, ...]:
 
 def make_safe(plan: Plan, phase: Phase, rest_shut: bool = False) -> SafePhase:
     """What to do in a phase. rest_shut: shown to be at rest with the vent shut; unknown counts as not."""
+    springs = (plan.let_down_valve, "opens") in plan.valve_lets_go
     at = _At(
         vent=None if plan.release_forbidden else plan.let_down_valve,
         source=plan.source_tag,
         away=plan.source_away,
-        rest_shut=rest_shut,
+        springs_open=springs,
+        rest_shut=rest_shut and not springs,
         carbon_dioxide=any(one.reads == "carbon dioxide" for one in plan.instruments),
     )
     may_wait, acts, never = _TABLE[phase](at)
@@ -171,7 +179,7 @@ def _a(at: _At) -> _Row:
 def _b(at: _At) -> _Row:
     if at.vent is None:
         return "no", (_OUT, *at.heat_off), "Never look for the error first."
-    acts = (f"OPEN {at.vent} now.", _BACK, *at.heat_off, f"LEAVE {at.vent} open.")
+    acts = (f"{at.let_out} now.", _BACK, *at.heat_off, f"LEAVE {at.vent} open.")
     return "no", acts, "Never look for the error first."
 
 
@@ -186,7 +194,7 @@ def _c(at: _At) -> _Row:
 
 def _d(at: _At) -> _Row:
     cool = "COLD WATER on the body from behind the shield; only on metal and sapphire."
-    vent = () if at.vent is None else (f"OPEN {at.vent} from behind the shield if you cannot cool it.",)
+    vent = () if at.vent is None else (f"{at.let_out} from behind the shield if you cannot cool it.",)
     first = at.heat_gone if at.source is not None or at.vent is not None else (_OUT,)
     acts = (*first, cool, *vent, *(() if first == (_OUT,) else (_OUT,)))
     return "no", acts, "Never stand before the window; never put ice on glass."
@@ -215,7 +223,8 @@ def _g(at: _At) -> _Row:
         return "no", (_OUT, *at.heat_off), never
     if at.rest_shut:
         return "yes, with the vent shut", (f"SHUT {at.vent} and let it warm.", *at.heat_off, _SHIELD), never
-    return "no", (f"LEAVE {at.vent} cracked open.", _BACK, *at.heat_off), never
+    cracked = "open" if at.springs_open else "cracked open"
+    return "no", (f"LEAVE {at.vent} {cracked}.", _BACK, *at.heat_off), never
 
 
 def _h(at: _At) -> _Row:

@@ -13,6 +13,7 @@ from dataclasses import dataclass
 from runbook.answers import Finding
 from runbook.assess.boxes import viewed_shape
 from runbook.assess.scene import Scene
+from runbook.assess.sights import not_to_come
 from runbook.assess.sights.marks import window_of
 from runbook.assess.walk import Walked
 from runbook.charge.meniscus import Ending, ending
@@ -41,10 +42,11 @@ class _Ends:
 def truth_findings(scene: Scene, lines: Sequence[Walked], places: Sequence[Place]) -> tuple[Finding, ...]:
     """Rules 'words and sight' and 'landmark unannounced'; places: line and column of each line of the procedure."""
     ends = _ends(scene)
-    if ends is None:
-        return ()
     found: list[Finding] = []
     for line, at in zip(lines, places, strict=True):
+        found += _asked(scene, line, at)
+        if ends is None:
+            continue
         if isinstance(line.verb, WarmTo) and line.during.closed:
             found += _said(ends, line, at)
             found += _crossed(ends, line, at)
@@ -86,6 +88,16 @@ def _said(ends: _Ends, line: Walked, at: Place) -> Iterator[Finding]:
                 "words and sight", "warning", *at,
                 f"step {line.number}: it says {number} degC; that falls at {ends.least.temperature - 273.15:.1f} degC",
             )  # fmt: skip
+
+
+def _asked(scene: Scene, line: Walked, at: Place) -> Iterator[Finding]:
+    """What the author asks the program to show, against what it computes along the step's path."""
+    missing, come = not_to_come(scene, line)
+    for name in missing:
+        yield Finding(
+            "words and sight", "warning", *at,
+            f"step {line.number}: '{name}' is not what will be seen; on this path there will be: {', '.join(come)}",
+        )  # fmt: skip
 
 
 def _crossed(ends: _Ends, line: Walked, at: Place) -> Iterator[Finding]:

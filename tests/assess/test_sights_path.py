@@ -6,14 +6,15 @@ from pathlib import Path
 
 import pytest
 
-from runbook.answers import LineKind, PlanLine
+from runbook.answers import ChargeBox, LineKind, PlanLine
 from runbook.assess.plan_line import plan_line
-from runbook.assess.sights import path_sights
+from runbook.assess.sights import live_sights, path_sights
 from runbook.assess.sights.frozen import letting_down, melting_sight, solid_sight
 from runbook.assess.sights.marks import marks
 from runbook.assess.walk import walk
 from runbook.charge.isochore import Isochore
 from tests.assess.looking import KELVIN, filled, kinds, number, of, seen, there
+from tests.assess.scenes import scene
 
 # -- cold ----------------------------------------------------------------------------------------------------
 
@@ -160,3 +161,16 @@ def test_warm_and_cool_lines_carry_their_path(tmp_path: Path) -> None:
     temperatures = [s.at_K for s in lesson if s.at_K is not None]
     assert temperatures == sorted(temperatures)
     assert any("fades and is gone" in s.words for s in lesson[1:])
+
+
+def test_what_the_author_asks_for_stands_first(tmp_path: Path) -> None:
+    """Of what is seen as the vessel stands, the sight asked for leads; the others stay, in their order."""
+    orders = {}
+    for name in ("meniscus", "haze"):
+        place = scene(tmp_path, {"show: [meniscus, haze]": f"show: [{name}]"})
+        line = next(one for one in walk(place) if one.number == "3.4")
+        box = ChargeBox(0.1165, 0.1175, True, ("weighing",))
+        orders[name] = [s.of for s in live_sights(place, line, line.during, box, 303.6)]
+    assert {"meniscus", "haze"} <= set(orders["haze"])
+    assert (orders["meniscus"][0], orders["haze"][0]) == ("meniscus", "haze")
+    assert sorted(orders["haze"]) == sorted(orders["meniscus"])

@@ -61,3 +61,11 @@ def test_a_landmark_that_nobody_is_told_of(tmp_path: Path) -> None:
     }
     (finding,) = found(tmp_path, text, "landmark unannounced")
     assert "31.0 degC" in finding.message
+
+
+def test_a_sight_asked_for_that_does_not_come(tmp_path: Path) -> None:
+    """Rain is seen on cooling: asked for on the way up it is told, with what there will be instead."""
+    (finding,) = found(tmp_path, {"show: [meniscus, haze]": "show: [rain, haze]"}, "words and sight")
+    assert "'rain' is not what will be seen" in finding.message
+    assert "meniscus" in finding.message
+    assert found(tmp_path, {"show: [meniscus, haze]": "show: [liquid height, haze]"}, "words and sight") == []

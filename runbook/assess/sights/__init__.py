@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from runbook.assess.sights.lines import line_sights, live_sights
+from runbook.assess.sights.lines import line_sights, live_sights, not_to_come
 from runbook.assess.sights.looking import Look, computed, liquid_height, written
 from runbook.assess.sights.path import path_sights
 
-__all__ = ["Look", "computed", "line_sights", "liquid_height", "live_sights", "path_sights", "written"]
+__all__ = ["Look", "computed", "line_sights", "liquid_height", "live_sights", "not_to_come", "path_sights", "written"]

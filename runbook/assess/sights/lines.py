@@ -8,7 +8,10 @@ from runbook.assess.sights.frozen import letting_down
 from runbook.assess.sights.looking import Look, computed, written
 from runbook.assess.sights.path import path_sights
 from runbook.assess.walk import VesselState, Walked
-from runbook.procedure.model import CoolTo, WarmTo
+from runbook.procedure.model import CoolTo, DoStep, WarmTo
+
+_KINDS = {"liquid height": "meniscus"}
+"""A name that an author may use -> the kind of the computed sight, where they differ."""
 
 
 def line_sights(scene: Scene, line: Walked) -> tuple[tuple[Sight, ...], str]:
@@ -36,7 +39,24 @@ def live_sights(
     heated = state.source == "on"
     warming = True if isinstance(verb, WarmTo) or heated else False if isinstance(verb, CoolTo) else None
     toward = _aim(scene, verb) if isinstance(verb, WarmTo) else None
-    return computed(scene, Look(box.low_kg, box.high_kg, temperature, warming, heated, lets_down, toward))
+    found = computed(scene, Look(box.low_kg, box.high_kg, temperature, warming, heated, lets_down, toward))
+    # What the author wants the class to look at stands first; the rest is there all the same.
+    wanted = {kind for name in asked_for(line) for kind in (_KINDS.get(name, name),)}
+    return tuple(sorted(found, key=lambda sight: sight.of not in wanted))
+
+
+def asked_for(line: Walked | None) -> tuple[str, ...]:
+    """Sights that the author of a line asks the program to show, by name."""
+    step = line.step if line is not None else None
+    return step.see.show if isinstance(step, DoStep) and step.see is not None else ()
+
+
+def not_to_come(scene: Scene, line: Walked) -> tuple[tuple[str, ...], tuple[str, ...]]:
+    """(names asked for that do not come on the line's path, kinds that come); nothing computed: neither."""
+    come = tuple(dict.fromkeys(sight.of for sight in line_sights(scene, line)[0] if sight.computed))
+    if not come:
+        return (), ()
+    return tuple(name for name in asked_for(line) if _KINDS.get(name, name) not in come), come
 
 
 def _aim(scene: Scene, verb: WarmTo | CoolTo) -> float:

@@ -23,6 +23,8 @@ class Observation:
     """Who read it."""
     closed: bool
     """The vessel was closed when it was read."""
+    beside: bool = False
+    """A temperature kept only because a height was read beside it: it says nothing of how warm the wall is now."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -77,7 +77,9 @@ def closed(ledger: Ledger) -> str:
 
 
 def observations(seen: Seen) -> tuple[Observation, ...]:
-    """Those that count, in the order of the record, each once."""
+    """Those that count, in the order of the record, each once; a temperature beside a height that is also the last of
+    its instrument counts as that.
+    """
     found = {o.sequence: o for o in seen.since}
     found.update((o.sequence, o) for o in seen.before.values())
     for kept in seen.moving.values():
@@ -99,6 +101,7 @@ def to_fields(one: Observation) -> dict[str, object]:
         "sequence": one.sequence,
         "by": one.by,
         "closed": one.closed,
+        "beside": one.beside,
     }
 
 
@@ -139,7 +142,7 @@ def with_reading(ledger: Ledger, event: ReadingTaken, at: Moment, seq: int) -> S
     kept = _kept(ledger, seen.moving.get(event.tag, ()), Carried(one, event.U), at)
     seen = replace(seen, moving=seen.moving | {event.tag: kept})
     if event.what == "temperature" and seen.wants_beside:
-        seen = replace(seen, since=(*seen.since, one), wants_beside=False)
+        seen = replace(seen, since=(*seen.since, replace(one, beside=True)), wants_beside=False)
     return seen
 
 
@@ -158,7 +161,7 @@ def _after_closing(ledger: Ledger, one: Observation, at: Moment) -> Seen:
         return replace(seen, since=(*seen.since, one), wants_beside=True)
     beside = max(near, key=lambda o: o.sequence)
     known = any(o.sequence == beside.sequence for o in seen.since)
-    return replace(seen, since=(*seen.since, one) if known else (*seen.since, beside, one))
+    return replace(seen, since=(*seen.since, one) if known else (*seen.since, replace(beside, beside=True), one))
 
 
 def _beside(ledger: Ledger, tag: str, kept: Carried, at: Moment) -> bool:

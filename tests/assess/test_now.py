@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
@@ -131,3 +132,14 @@ def test_a_gauge_read_over_the_open_vessel_is_not_compared_with_the_closed_charg
     """Zero before closing is no disagreement with 58 bar after it: there is no reading to compare yet."""
     found = ask(scene(tmp_path), observed("pressure", 1.0 * BAR, 2, closed=False))
     assert found.agreement.verdict == "no reading"
+
+
+def test_a_temperature_kept_beside_a_height_is_not_the_walls(tmp_path: Path) -> None:
+    """Read at 30 degC with a height, at 21 degC since: margins are those of 21 degC; alone it is no reading."""
+    there = scene(tmp_path)
+    kept = replace(observed("temperature", 303.15, 8), beside=True)
+    with_it, without = ask(there, kept), ask(there)
+    assert with_it.pressure == without.pressure
+    lines, index = warming(there)
+    alone = answer(there, lines, question(index - 1, index, (LOADED[0], kept)))
+    assert alone.pressure is None

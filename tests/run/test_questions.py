@@ -25,6 +25,13 @@ def carried(run: Run, tag: str) -> list[float]:
     return [o.value for o in asked.observations if o.tag == tag]
 
 
+def beside(run: Run) -> list[float]:
+    """Temperatures [K] that stand beside a height and say nothing of the wall now."""
+    asked = question(run.plan, run.ledger)
+    assert asked is not None
+    return [o.value for o in asked.observations if o.beside]
+
+
 def test_the_key_is_the_digest_of_everything_else() -> None:
     """Anybody can work the key out from the question and the plan; the history follows from the observations."""
     charged = plan(line(1), charge=ChargeBox(0.115, 0.119, True, ("charge record",)))
@@ -232,9 +239,13 @@ def test_a_height_keeps_the_temperature_beside_it() -> None:
     run = sealed()
     run.read("TT1", 294.0)
     run.read("HS1", 0.030)
+    assert beside(run) == []  # it is also the last of its instrument
     run.clock.advance(900.0)
     run.read("TT1", 300.0)
     assert carried(run, "TT1") == [294.0, 300.0]
+    assert beside(run) == [294.0]
+    run.put(GapOpened("resumed"))
+    assert carried(run, "TT1") == beside(run) == [294.0]
 
 
 def test_a_height_without_a_temperature_takes_the_next() -> None:

@@ -53,11 +53,11 @@ def held_reach(scene: Scene, held: Held, state: VesselState, hottest: float | No
 
     The level, the gauge's error, and what the charge climbs by until the hand is gone, whatever there is of it.
     """
-    gauge = scene.instrument(held.rise.read_on)
-    level = held.rise.let_rise_to.absolute(scene.barometer.high_Pa)
+    gauge = scene.instrument(held.gauge)
+    level = held.level.absolute(scene.barometer.high_Pa)
     level += permissible_error(gauge, level) + gauge.division.value / 2.0
     return Extremes(
-        _risen(scene, state.high_kg, level, hottest, held.rise.let_go_within.high),
+        _risen(scene, state.high_kg, level, hottest, held.seconds),
         scene.barometer.low_Pa,
         state.hot if hottest is None else max(state.hot, hottest),
         scene.coldest_in_the_open,

@@ -70,7 +70,7 @@ class Walked:
     rate: float
     """Fastest warming the line states [K/s]; 0 where it states none."""
     held: Held | None = None
-    """A quick sequence that closes the vessel only by a hand on a vent that springs open, and lets go of it."""
+    """In the line the vessel is closed only by a hand on a vent that springs open, which lets go of it again."""
 
 
 def start_state(scene: Scene) -> VesselState:
@@ -180,7 +180,7 @@ def _one(
         warms=isinstance(verb, WarmTo) and by_source(scene, verb) and before.loaded,
         lets_down=lets_down,
         rate=_rate(verb),
-        held=course.held if seals else None,
+        held=course.held if seals or (before.loaded and not course.closes) else None,
     )
 
 

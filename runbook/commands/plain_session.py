@@ -14,7 +14,7 @@ from runbook.errors import ExitCode, InputUnusable
 from runbook.run.acts import GapAnswers, LeaveTool, Read
 from runbook.run.conductor import Conductor
 from runbook.run.reasons import Refused
-from runbook.run.sentences import GAP_QUESTIONS, reasons_words
+from runbook.run.sentences import gap_questions, reasons_words
 from runbook.run.state import Ledger
 
 _TICK_S = 0.5
@@ -182,7 +182,7 @@ class Session:
         """The four questions; False where the input ended."""
         print("Before anything else, after the gap ('?' = do not know):")
         answers: dict[str, str] = {}
-        for name, words in GAP_QUESTIONS:
+        for name, words in gap_questions(self.desk.plan):
             text = await self.given.line(f"  {words} ")
             if text is None:
                 return False
@@ -191,7 +191,9 @@ class Session:
                 return True
             answers[name] = "do not know" if text.strip() in ("?", "") else text.strip().casefold()
         here = tuple(p.name for p in self.desk.ledger.people if p.name.casefold() in answers["here"])
-        found = await self.desk.act(GapAnswers(answers["source"], answers["vent"], answers["touched"], here))
+        found = await self.desk.act(
+            GapAnswers(answers.get("source", "none"), answers["vent"], answers["touched"], here)
+        )
         if isinstance(found, Refused):
             for wrong, _ in reasons_words(self.desk.plan, self.desk.ledger, found.reasons):
                 print(f"  ! {wrong}")

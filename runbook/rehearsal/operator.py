@@ -32,6 +32,8 @@ from runbook.run.signing import readings_missing
 
 _WATCHING_S = 1.0
 """Between two looks of somebody who keeps a vent shut by hand [s]."""
+_AGAIN_S = 60.0
+"""After which a reading that has not changed is taken again where the next line is blocked [s]."""
 PROOFS = ("vent", "wall", "low gauge", "left open")
 
 
@@ -154,7 +156,9 @@ class Operator:
         for need in plan.lines[ledger.line + 1].entry_needs:
             shown = self._world.read(need.tag)
             last = ledger.reading(need.tag)
-            if again and shown is not None and (last is None or shown != last.event.value):
+            # The same value again is a new reading too: what was lost meanwhile is asked anew.
+            changed = last is None or shown != last.event.value or now.age(last.at) > _AGAIN_S
+            if again and shown is not None and changed:
                 return self._read(need.tag, None)
             taken = ledger.reading(need.tag)
             longest = need.fresh_s if good is None else min(need.fresh_s, good)

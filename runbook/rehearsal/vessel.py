@@ -153,10 +153,13 @@ class Simulation:
             vessel = self._relieved(vessel, controls)
             if vessel.mass <= _GONE:
                 return self._empty(vessel, controls, left)
-            if vessel.in_the_open and self._holes(vessel, controls):
+            if vessel.in_the_open and controls.vent_open and controls.bore > 0.0:
                 return self._open(vessel, controls, left)
             vessel = replace(vessel, in_the_open=False)
             holes = self._holes(vessel, controls)
+            if holes and not controls.vent_open and self.pressure(vessel, controls) <= controls.barometer * 1.001:
+                # Nothing leaves through a leak that nothing drives, and it makes no open vessel.
+                holes = ()
             if not holes:
                 step = min(left, _LEAK_STEP) if self.relief is not None else left
                 vessel = self._closed(vessel, controls, step)

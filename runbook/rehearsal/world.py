@@ -11,6 +11,7 @@ from dataclasses import replace
 
 from runbook.answers import Plan
 from runbook.apparatus.relief import lowest_opening
+from runbook.apparatus.spaces import springs_open
 from runbook.assess.boxes import viewed_shape
 from runbook.assess.futures import hottest_source
 from runbook.assess.heat_time import heat_path
@@ -58,6 +59,10 @@ class World:
         self._simulation = Simulation(
             scene.substance, volume, heat_path(scene, limit), _relieving(scene, self.troubles)
         )
+        sprung = springs_open(scene.apparatus)
+        self._springs = max(
+            (_WIDE if v.bore is None else v.bore.value for v in scene.apparatus.valves if v.tag in sprung), default=0.0
+        )
         self._set: Controls | None = None
         self._connected = False
         self._full_of_air = plan.barometer * volume / (GAS_CONSTANT * room)
@@ -97,7 +102,11 @@ class World:
         """Faults whose situation stands begin, and what the hands have set becomes what it really is."""
         self.troubles.look(self._situations(), self._at)
         if self._set is not None:
-            self.controls = self.troubles.controls(replace(self._set, leak=0.0, loss=1.0), self._at, self._connected)
+            real = replace(self._set, leak=0.0, loss=1.0)
+            if self._springs > 0.0 and not real.vent_open and self.troubles.away(self._at):
+                # No hand is on it any more.
+                real = replace(real, vent_open=True, bore=self._springs)
+            self.controls = self.troubles.controls(real, self._at, self._connected)
         if self._simulation.relief is not None:
             self._simulation.relief = _relieving(self._scene, self.troubles)
         fills = self.troubles.air_fills
@@ -110,7 +119,8 @@ class World:
         closed = self.vessel.mass > 0.0 and self._set is not None and not self._set.vent_open
         if closed:
             found.add(CLOSED)
-            if self._set is not None and self._set.heating is not False:
+            # Of a vessel that nothing heats but the room, closing it is what makes it warm.
+            if self._set is not None and (self._set.heating is not False or not self._plan.source_tag):
                 found.add(HEATING)
         elif self.vessel.mass > 0.0 and self.pressure() > 5.0e5:
             found.add(LETTING_DOWN)

@@ -92,7 +92,7 @@ def _asked(plan: Plan, ledger: Ledger, now: Moment, act: Act) -> Event | Refused
                 return refused(Code.NO_ACT)
             return ev.SafeActConfirmed(act.item)
         case acts.GapAnswers():
-            return _gap(ledger, act)
+            return _gap(plan, ledger, act)
         case acts.LeaveTool():
             return ev.LeftTool()
         case acts.Finish():
@@ -159,16 +159,18 @@ def _valves(plan: Plan, ledger: Ledger) -> set[str]:
     return known if plan.let_down_valve is None else known | {plan.let_down_valve}
 
 
-def _gap(ledger: Ledger, act: acts.GapAnswers) -> Event | Refused:
+def _gap(plan: Plan, ledger: Ledger, act: acts.GapAnswers) -> Event | Refused:
     if not ledger.gap_open:
         return refused(Code.NO_GAP)
-    if act.source not in SOURCES:
+    # Where nothing heats the vessel nobody is asked, and nothing that is said of it counts.
+    source = act.source if plan.source_tag is not None else "none"
+    if plan.source_tag is not None and source not in SOURCES:
         return refused(Code.UNKNOWN_WORD, said=act.source)
     if act.vent not in POSITIONS:
         return refused(Code.UNKNOWN_WORD, said=act.vent)
     if act.touched not in ("no", "yes", "do not know"):
         return refused(Code.UNKNOWN_WORD, said=act.touched)
-    return ev.GapAnswered(act.source, act.vent, act.touched, act.here)
+    return ev.GapAnswered(source, act.vent, act.touched, act.here)
 
 
 def _finish(plan: Plan, ledger: Ledger, now: Moment) -> Event | Refused:

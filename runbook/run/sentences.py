@@ -40,6 +40,7 @@ __all__ = [
     "clears_words",
     "distance_words",
     "duration",
+    "gap_questions",
     "hold_words",
     "left_alone_verdict",
     "left_alone_words",
@@ -90,6 +91,11 @@ _PHASES: Final = {
     "K": "evacuated glass",
     "L": "sealed tube in a bath",
 }
+
+
+def gap_questions(plan: Plan) -> tuple[tuple[str, str], ...]:
+    """Those of the four that this vessel can answer: where it has no heat source, nobody is asked for it."""
+    return tuple(one for one in GAP_QUESTIONS if one[0] != "source" or plan.source_tag is not None)
 
 
 def permission_words(standing: Standing) -> str:

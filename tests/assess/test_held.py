@@ -35,11 +35,11 @@ def blocked(found: Plan) -> set[tuple[str, str, str]]:
 
 
 def test_the_shipped_tube_is_within_limits(tmp_path: Path) -> None:
-    """Four closings, each below the ceiling of 0.9 x 0.97 x 7 bar(g) and each let go again."""
+    """Four closings and the proof of empty, each below the ceiling of 0.9 x 0.97 x 7 bar(g) and each let go again."""
     found = plan(tmp_path)
     assert (found.verdict, blocked(found)) == ("within limits", set())
     assert found.ceiling == pytest.approx(101325.0 + 0.9 * 0.97 * 7e5)
-    assert len(held_lines(walk(scene(tmp_path)))) == 4
+    assert len(held_lines(walk(scene(tmp_path)))) == 5
 
 
 def test_a_sequence_that_ends_open_was_closed_all_the_same(tmp_path: Path) -> None:

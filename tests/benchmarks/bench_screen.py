@@ -186,7 +186,7 @@ def main() -> None:
             "rehearsal: first screen": (MAIN, b"F9 MAKE SAFE", ("rehearse", PROCEDURE)),
             "rehearsal: briefing": (MAIN, b"agreed, go on", ("rehearse", PROCEDURE)),
             "run taken up: first screen": (MAIN, b"F9 MAKE SAFE", ("bench", "--resume", run)),
-            "run taken up: its questions": (MAIN, b"FOUR QUESTIONS", ("bench", "--resume", run)),
+            "run taken up: its questions": (MAIN, b"AFTER A GAP", ("bench", "--resume", run)),
         }
         times: dict[str, list[float]] = {name: [] for name in cases}
         for _ in range(ROUNDS):

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from typing import Any
 
 import pytest
@@ -211,6 +212,16 @@ def test_gap_answers_are_of_known_words() -> None:
     assert run.must(acts.GapAnswers(*known, ("Ada",))) == GapAnswered(*known, ("Ada",))
     assert run.ledger.position("V2") == "do not know"
     assert run.ledger.source == "do not know"
+
+
+def test_where_nothing_heats_the_vessel_nobody_says_how_the_heat_stands() -> None:
+    """It has none, whatever is answered: else a gap could never be closed there."""
+    run = begun(replace(plan(line(1)), source_tag=None, source="none"))
+    run.put(GapOpened("resumed"))
+    said = GapAnswered("none", "open", "no", ("Ada",))
+    assert run.must(acts.GapAnswers("none", "open", "no", ("Ada",))) == said
+    run.put(GapOpened("again"))
+    assert run.must(acts.GapAnswers("on", "open", "no", ("Ada",))) == said
 
 
 def test_before_the_first_event_nothing_but_make_safe() -> None:

@@ -13,7 +13,7 @@ from runbook.bench.place import Keys, Place
 from runbook.bench.rows import EMPTY, Row, row, wrapped
 from runbook.bench.widgets.lines import Lines
 from runbook.run.acts import GapAnswers
-from runbook.run.sentences import GAP_QUESTIONS
+from runbook.run.sentences import gap_questions
 
 if TYPE_CHECKING:
     from runbook.run.conductor import Conductor
@@ -26,7 +26,7 @@ _FEWEST: Final = 1
 class GapScreen(Place[None]):
     """One question after the other, a digit chooses, Enter goes on."""
 
-    HEADING = "AFTER A GAP: FOUR QUESTIONS"
+    HEADING = "AFTER A GAP: QUESTIONS"
     KEYS: ClassVar[Keys] = (("1-9", "choose"), ("Enter", "next"), ("Backspace", "the one before"))
 
     def __init__(self, desk: Conductor, why: str = "") -> None:
@@ -36,14 +36,20 @@ class GapScreen(Place[None]):
         self._why = why
         plan = desk.plan
         named = {"source": plan.source_tag or "", "vent": plan.let_down_valve or ""}
-        words = [f"{text} {f'({tag})' if (tag := named.get(key)) else ''}".strip() for key, text in GAP_QUESTIONS]
-        self._questions: tuple[tuple[str, tuple[str, ...]], ...] = (
-            (words[0], ("off", "unplugged", "on", _UNKNOWN)),
-            (words[1], ("open", "shut", _UNKNOWN)),
-            (words[2], ("no", "yes", _UNKNOWN)),
-            (words[3], tuple(person.name for person in desk.ledger.people)),
+        options = {
+            "source": ("off", "unplugged", "on", _UNKNOWN),
+            "vent": ("open", "shut", _UNKNOWN),
+            "touched": ("no", "yes", _UNKNOWN),
+            "here": tuple(person.name for person in desk.ledger.people),
+        }
+        asked = gap_questions(plan)
+        self._keys = tuple(key for key, _ in asked)
+        self._questions = tuple(
+            (f"{text} {f'({tag})' if (tag := named.get(key)) else ''}".strip(), options[key]) for key, text in asked
         )
-        self._chosen: list[str] = [_UNKNOWN, _UNKNOWN, _UNKNOWN]
+        self._last = len(asked) - 1
+        """Who is here: several may be chosen."""
+        self._chosen = [_UNKNOWN] * self._last
         self._here: list[str] = []
         self._at = 0
         self._said = ""
@@ -57,12 +63,12 @@ class GapScreen(Place[None]):
         rows = [EMPTY, *wrapped(f" {why}Every reading is stale. What is not known counts as the worst.", width - 1)]
         for i, (question, options) in enumerate(self._questions):
             rows.append(EMPTY)
-            answer = ", ".join(self._here) or "nobody yet" if i == 3 else self._chosen[i]
+            answer = ", ".join(self._here) or "nobody yet" if i == self._last else self._chosen[i]
             style = "strong" if i == self._at else "plain"
             rows.append(row((f" {i + 1}. {question} ".ljust(46), style), (answer, style if i <= self._at else "dim")))
             if i == self._at:
                 for k, option in enumerate(options):
-                    mark = "x" if option in ([*self._here] if i == 3 else [self._chosen[i]]) else " "
+                    mark = "x" if option in ([*self._here] if i == self._last else [self._chosen[i]]) else " "
                     rows.append(row("    ", (f"{k + 1}", "key"), f" [{mark}] {option}"))
         return rows + wrapped(f" {self._said}" if self._said else "", width - 1, "blocked")
 
@@ -84,7 +90,7 @@ class GapScreen(Place[None]):
 
     def _choose(self, option: str) -> None:
         self._said = ""
-        if self._at < 3:
+        if self._at < self._last:
             self._chosen[self._at] = option
         elif option in self._here:
             self._here.remove(option)
@@ -92,13 +98,14 @@ class GapScreen(Place[None]):
             self._here.append(option)
 
     async def _next(self) -> None:
-        if self._at < 3:
+        if self._at < self._last:
             self._at += 1
             return
         if len(self._here) < _FEWEST:
             self._said = "Choose who is here."
             return
-        source, vent, touched = self._chosen
-        self._said = await do(self._desk, GapAnswers(source, vent, touched, tuple(self._here)))
+        said = dict(zip(self._keys, self._chosen, strict=False))
+        answers = GapAnswers(said.get("source", "none"), said["vent"], said["touched"], tuple(self._here))
+        self._said = await do(self._desk, answers)
         if not self._said:
             self.dismiss(None)

@@ -42,3 +42,5 @@ class GaugeCard:
     """Where the most charge, left alone, comes to the ceiling [K]; None: never within the models, or not known."""
     relief: tuple[tuple[str, str, float], ...]
     """Tag, kind and lowest opening pressure [Pa, absolute] of each relief device on the charge's space."""
+    left_closed: bool = True
+    """False: it is only ever closed by a hand that lets go again, and never stands loaded and shut."""

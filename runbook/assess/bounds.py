@@ -6,7 +6,7 @@ from runbook.answers import ChargeBounds, Margin
 from runbook.assess.ahead import look
 from runbook.assess.boxes import viewed_shape
 from runbook.assess.scene import Scene
-from runbook.assess.walk import Walked, walk
+from runbook.assess.walk import Walked, left_closed, walk
 from runbook.errors import RunbookError
 
 _BELOW_CRITICAL = 0.1
@@ -18,6 +18,9 @@ _STEP = 1e-5
 def charge_bounds(scene: Scene) -> ChargeBounds:
     """Bounds on the stated mass; the tolerance of the procedure is taken off each."""
     half = 0.5 * (scene.planned[1] - scene.planned[0])
+    lines = walk(scene)
+    if any(line.held is not None for line in lines) and not left_closed(lines):
+        return _melted(scene, half)
     least, least_reason = _least(scene, half)
     most, most_reason = _most(scene, half)
     best = scene.substance.critical_density * scene.apparatus.volume.free.value
@@ -30,6 +33,20 @@ def charge_bounds(scene: Scene) -> ChargeBounds:
     if best > most:
         best, reason = most, "critical density would be more than the most"
     return ChargeBounds(least, best, most, least_reason, reason, most_reason)
+
+
+def _melted(scene: Scene, half: float) -> ChargeBounds:
+    """Of a charge that is closed in by hand alone, to be seen melting: its liquid has to reach the window."""
+    most, most_reason = _most(scene, half)
+    what = "every charge between least and most shows solid, liquid and vapour together"
+    try:
+        both = scene.substance.saturation(scene.substance.triple_temperature)
+        share = viewed_shape(scene).volume_below(scene.apparatus.window.low or 0.0)
+    except RunbookError as error:
+        return ChargeBounds(None, None, most, str(error), what, most_reason)
+    density = both.vapour_density + share * (both.liquid_density - both.vapour_density)
+    least = density * scene.volume[1] + half
+    return ChargeBounds(least, None, most, "with less the liquid stays below the window", what, most_reason)
 
 
 def sealing_line(lines: tuple[Walked, ...]) -> int | None:
@@ -67,6 +84,8 @@ def _most(scene: Scene, half: float) -> tuple[float | None, str]:
     refused = first_blocked(scene, high)
     if refused is None:
         return low - half, ""
+    if refused.why:
+        return low - half, refused.why
     at = "" if refused.at is None else f" at {refused.at.temperature_K - 273.15:.1f} degC"
     return low - half, f"{refused.limit} by {refused.cause}{at}"
 

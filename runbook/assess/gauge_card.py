@@ -15,7 +15,7 @@ from runbook.apparatus.relief import lowest_opening
 from runbook.apparatus.spaces import joined_spaces
 from runbook.assess.corners import highest_pressure, temperature_at_pressure
 from runbook.assess.scene import Scene
-from runbook.assess.walk import Walked, hottest_of
+from runbook.assess.walk import Walked, hottest_of, left_closed
 from runbook.errors import OutsideValidity
 from runbook.procedure.model import WarmTo
 from runbook.quantities import Level
@@ -51,6 +51,7 @@ def gauge_card(scene: Scene, lines: tuple[Walked, ...]) -> GaugeCard | None:
             for r in apparatus.relief
             if r.space == space
         ),
+        left_closed=left_closed(lines) or not any(line.held for line in lines),
     )
 
 

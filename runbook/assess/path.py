@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+from runbook.assess.futures import hottest_body
+from runbook.assess.held import held_reach
 from runbook.assess.scene import Scene
-from runbook.assess.walk import Walked
+from runbook.assess.walk import Walked, left_closed
 from runbook.errors import OutsideValidity
 
 _POINTS = 48
@@ -22,6 +24,14 @@ def planned_path(scene: Scene, lines: tuple[Walked, ...]) -> tuple[tuple[float, 
     if not closed or not low_kg > 0.0:
         return ()
     cold, hot = min(s.cold for s in closed), max(s.hot for s in closed)
+    if not left_closed(lines):
+        # A hand lets go long before it has come to the room.
+        reach = [held_reach(scene, x.held, x.during, hottest_body(scene, x.during)) for x in lines if x.held]
+        tops = [r.pressure.value for r in reach if r.pressure.value is not None]
+        try:
+            hot = min(hot, scene.substance.boiling_temperature(max(tops)))
+        except (ValueError, OutsideValidity):
+            return ()
     found = []
     for k in range(_POINTS + 1):
         temperature = cold + (hot - cold) * k / _POINTS

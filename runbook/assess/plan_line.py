@@ -27,6 +27,7 @@ from runbook.procedure.model import (
     EmptyStep,
     HoldStep,
     LetDownTo,
+    LetRiseTo,
     OpenContainment,
     Parked,
     QuickStep,
@@ -34,6 +35,8 @@ from runbook.procedure.model import (
     WarmTo,
     WitnessStep,
 )
+from runbook.procedure.model import QuickItem as QuickAct
+from runbook.quantities import say_level
 
 
 def plan_line(scene: Scene, walked: Sequence[Walked], index: int) -> PlanLine:
@@ -187,9 +190,18 @@ def _quick(scene: Scene, line: Walked) -> tuple[QuickItem, ...]:
         return ()
     sealing = seal_items(scene, line)
     return tuple(
-        QuickItem(i.do, i.latest.value, i.if_not, tuple(sorted(i.valves.items())), n in sealing)
+        QuickItem(_quick_text(scene, i), i.latest.value, i.if_not, tuple(sorted(i.valves.items())), n in sealing)
         for n, i in enumerate(step.quick)
     )
+
+
+def _quick_text(scene: Scene, item: QuickAct) -> str:
+    """The author's words; where a hand holds a vent shut also how far it may come."""
+    if not isinstance(item.path, LetRiseTo):
+        return item.do
+    unit = scene.instrument(item.path.read_on).dial.unit
+    level = say_level(item.path.let_rise_to, unit, scene.barometer.middle_Pa)
+    return f"{item.do}; let go at {level} on {item.path.read_on} at the latest"
 
 
 def _empty(step: Step | Parked) -> Empty | None:

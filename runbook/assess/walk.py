@@ -6,7 +6,7 @@ knows no limits and no margins; it only says what can be reached.
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 
 from runbook.apparatus.instruments import permissible_error
@@ -131,6 +131,11 @@ def walk(scene: Scene, box: tuple[float, float] | None = None) -> tuple[Walked, 
             lines.append(line)
             state = line.after
     return tuple(lines)
+
+
+def left_closed(lines: Sequence[Walked]) -> bool:
+    """Whether the charge is anywhere closed in without a hand that lets go of it."""
+    return any(line.during.closed and line.held is None for line in lines)
 
 
 def _one(

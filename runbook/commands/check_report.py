@@ -149,11 +149,14 @@ def _strip(plan: Plan) -> tuple[str, ...]:
     )
     glyphs = UNICODE if (sys.stdout.encoding or "").lower().startswith("utf") else ASCII
     rows = (f"  {row}".rstrip() for row in chart_picture(chart, _WIDE, _STRIP_ROWS, glyphs))
-    return (*rows, "  the planned charge as it warms; c and h: coldest and hottest room; shaded: beyond the ceiling")
+    rooms = " c and h: coldest and hottest room;" if chart.marks else " never left to come to the room;"
+    return (*rows, f"  the planned charge as it warms;{rooms} shaded: beyond the ceiling")
 
 
 def _marks(plan: Plan, up: Callable[[float], float]) -> tuple[Mark, ...]:
-    """The room's two ends on the path."""
+    """The room's two ends on the path; none where it ends far below them."""
+    if plan.path[-1][0] < plan.room_coldest:
+        return ()
     found = []
     for kelvin, sign in ((plan.room_coldest, "c"), (plan.room_hottest, "h")):
         nearest = min(plan.path, key=lambda point: abs(point[0] - kelvin))

@@ -26,7 +26,7 @@ def booklet(plan: Plan, issue: Issue, card: GaugeCard | None, on: date) -> str:
         )
     sheets: list[Element | None] = [_cover(plan, issue, on), cards.phases(plan)]
     sheets += [lines.part(plan, index) for index in range(len(plan.parts))]
-    sheets += [lines.proving_ranges(plan), cards.gauge(plan, card) if card is not None else None]
+    sheets += [lines.proving_ranges(plan), cards.gauge(plan, card) if card is not None and card.left_closed else None]
     sheets.append(
         tag(
             "section",

@@ -76,6 +76,17 @@ def vessel_tag(plan: Plan, card: GaugeCard | None) -> Element:
     relief = "none" if card is None or not card.relief else ", ".join(
         f"{name} ({kind}) from {pressure(plan, opens)}" for name, kind, opens in card.relief
     )  # fmt: skip
+    if card is not None and not card.left_closed:
+        return tag(
+            "div",
+            tag("p", f"{plan.vessel}: NOT EMPTY", class_="huge"),
+            tag("p", f"{plan.fluid}, at most {grams(plan.planned_kg[1])}, {plan.let_down_valve} open", class_="big"),
+            tag("p", f"Keep your hands off {plan.let_down_valve}. Never plug its outlet.", class_="big"),
+            tag("p", f"Relief: {relief}. Keep clear of both outlets."),
+            tag("p", "Do not carry, undo, tighten or warm. It is empty when the record says so."),
+            _blanks(("date", "blank"), ("name", "blank wide")),
+            class_="card",
+        )
     return tag(
         "div",
         tag("p", f"{plan.vessel}: LOADED", class_="huge"),

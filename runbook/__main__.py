@@ -17,7 +17,7 @@ COMMANDS = {
     "check": "prove procedures within their vessels' limits",
     "state": "the state of a charge at a temperature",
     "charge": "how much to load into a vessel, and how to prove it",
-    "new": "write a commented start of a file",
+    "new": "write a file from your answers, or a commented start",
     "schema": "what an editor needs to help while a file is written",
     "print": "write a procedure on paper, with the cards for the bench",
     "logbook": "list, show and verify what was recorded",

@@ -123,10 +123,17 @@ def amount(value: float, unit: str) -> str:
     return f"{value:.4g} {unit}"
 
 
+def _falls(line: PlanLine) -> bool:
+    """A limit falls, or what is in the vessel cannot be computed: a rating nobody knows is told by itself."""
+    unknown = any(m.margin is None for m in line.ahead)
+    return not line.left_alone.known or not unknown or any(m.margin is not None and m.margin <= 0.0 for m in line.ahead)
+
+
 def _gates(lines: Sequence[PlanLine], index: int, at: tuple[int, int]) -> list[Finding]:
     """A hold, witness, reading or wait only where the vessel, left alone, is at rest."""
     line = lines[index]
-    if index == 0 or lines[index - 1].left_alone.at_rest:
+    before = lines[index - 1]
+    if index == 0 or before.left_alone.at_rest or not _falls(before):
         return []
     gate = line.kind in (LineKind.HOLD, LineKind.WITNESS) or bool(line.reads)
     raising = any(e in (Effect.RAISES, Effect.UNKNOWN) for _, e in line.effects)

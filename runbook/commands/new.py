@@ -1,4 +1,7 @@
-"""`runbook new apparatus|procedure [FILE]`: a commented start of a file. Never writes over anything."""
+"""`runbook new apparatus|procedure [FILE]`: a file from your answers, or a commented start of one.
+
+On a terminal it asks; with --start, or without a terminal, it asks nothing. Never writes over anything.
+"""
 
 from __future__ import annotations
 
@@ -14,12 +17,14 @@ _NAMES = {"apparatus": "apparatus/my-vessel.yaml", "procedure": "my-demonstratio
 
 
 _OR = " or ".join(_NAMES.values())
+_LEFT = "Not everything was answered: what stands there instead is nobody's figure."
 
 
 def main(argv: list[str]) -> int:
-    """Write the start and say what to do next; returns the exit code."""
+    """Write the file and say what to do next; returns the exit code."""
     parser = Arguments(prog="runbook new", description=__doc__)
     parser.add_argument("--manual", action="store_true", help="print the manual for authors instead")
+    parser.add_argument("--start", action="store_true", help="ask nothing: write the commented start")
     parser.add_argument("kind", nargs="?", choices=sorted(_NAMES), help="what to write")
     parser.add_argument("file", nargs="?", metavar="FILE", help=f"where (default: {_OR})")
     asked = parser.parse_args(argv)
@@ -28,10 +33,33 @@ def main(argv: list[str]) -> int:
     if asked.kind is None:
         raise InputUnusable(f"say what to write: {' or '.join(sorted(_NAMES))}")
     path = Path(asked.file or _NAMES[asked.kind])
-    _write(path, _text(asked.kind, path))
+    if path.exists():
+        # Before anything is asked.
+        raise InputUnusable(f"{path} exists already and is left as it is: name another file")
+    text, answered = _text(asked.kind, path, asked.start)
+    try:
+        _write(path, text)
+    except InputUnusable:
+        if answered is not None:
+            # Nothing that was typed is lost.
+            print(text, end="")
+        raise
     print(path)
-    then = "then run: runbook check" if asked.kind == "procedure" else "then write: runbook new procedure"
-    print(f"Replace every figure in {path} by yours, {then}", file=sys.stderr)
+    return _afterwards(asked.kind, path, answered)
+
+
+def _afterwards(kind: str, path: Path, answered: bool | None) -> int:
+    """What to do next; of a procedure that was asked for, what `check` says of it."""
+    if answered and kind == "procedure":
+        from runbook.commands import check
+
+        return check.main([str(path)])
+    then = "then run: runbook check" if kind == "procedure" else "then write: runbook new procedure"
+    if answered:
+        print(then.capitalize(), file=sys.stderr)
+    else:
+        left = "" if answered is None else f"{_LEFT} "
+        print(f"{left}Replace every figure in {path} by yours, {then}", file=sys.stderr)
     return int(ExitCode.GOOD)
 
 
@@ -45,15 +73,20 @@ def _manual() -> int:
     return int(ExitCode.GOOD)
 
 
-def _text(kind: str, path: Path) -> str:
-    from runbook.procedure.start import APPARATUS, PROCEDURE
+def _text(kind: str, path: Path, start: bool) -> tuple[str, bool | None]:
+    """(the file, whether all was answered); None: nothing was asked."""
+    from runbook.commands import dialogue
+    from runbook.procedure.dialogue.demonstration import commented_start
+    from runbook.procedure.dialogue.vessel import vessel_form
 
+    if dialogue.can_ask() and not start:
+        return dialogue.vessel() if kind == "apparatus" else dialogue.demonstration(path)
     if kind == "apparatus":
-        return APPARATUS
+        return vessel_form().text(), None
     beside = sorted((path.parent / "apparatus").glob("*.yaml"))
     # With one vessel beside it there is nothing to choose.
     name = beside[0].name if len(beside) == 1 else Path(_NAMES["apparatus"]).name
-    return PROCEDURE.format(apparatus=f"apparatus/{name}")
+    return commented_start(f"apparatus/{name}"), None
 
 
 def _write(path: Path, text: str) -> None:

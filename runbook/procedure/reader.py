@@ -90,6 +90,16 @@ def read_apparatus(path: Path) -> Apparatus:
     return apparatus
 
 
+def apparatus_problems(text: str, file: str) -> tuple[Problem, ...]:
+    """What is wrong with the text of an apparatus file, in the order of its lines; file: what it is called there."""
+    return _sorted(_apparatus(read_document(text.encode(), file))[1])
+
+
+def procedure_problems(text: str, file: str) -> tuple[Problem, ...]:
+    """The same of a procedure file, read without the apparatus that it names."""
+    return _sorted(_model(read_document(text.encode(), file), Procedure)[1])
+
+
 class _NotThere(Exception):
     """The apparatus file that a procedure names cannot be had; the text says why."""
 

@@ -63,13 +63,9 @@ MassOrUnknown = Annotated[Bounded | NotKnown, _amount(D.MASS, "117 g ± 2 g", un
 VolumeField = Annotated[Bounded, _amount(D.VOLUME, "250 mL ± 2 mL")]
 VolumeOrUnknown = Annotated[Bounded | NotKnown, _amount(D.VOLUME, "250 mL ± 2 mL", unknown=True)]
 TemperatureDifferenceField = Annotated[Bounded, _amount(D.TEMPERATURE_DIFFERENCE, "2 K")]
-TemperatureDifferenceOrUnknown = Annotated[
-    Bounded | NotKnown, _amount(D.TEMPERATURE_DIFFERENCE, "2 K", unknown=True)
-]
+TemperatureDifferenceOrUnknown = Annotated[Bounded | NotKnown, _amount(D.TEMPERATURE_DIFFERENCE, "2 K", unknown=True)]
 PressureDifferenceField = Annotated[Bounded, _amount(D.PRESSURE_DIFFERENCE, "1 bar")]
-PressureDifferenceOrUnknown = Annotated[
-    Bounded | NotKnown, _amount(D.PRESSURE_DIFFERENCE, "1 bar", unknown=True)
-]
+PressureDifferenceOrUnknown = Annotated[Bounded | NotKnown, _amount(D.PRESSURE_DIFFERENCE, "1 bar", unknown=True)]
 LengthField = Annotated[Bounded, _amount(D.LENGTH, "60 mm")]
 LengthOrUnknown = Annotated[Bounded | NotKnown, _amount(D.LENGTH, "60 mm", unknown=True)]
 TimeField = Annotated[Bounded, _amount(D.TIME, "10 min")]
@@ -114,9 +110,7 @@ LengthRangeOrUnknown = Annotated[Range | NotKnown, _range(D.LENGTH, "6 mm to 54 
 TimeRangeField = Annotated[Range, _range(D.TIME, "5 min to 20 min")]
 TimeRangeOrUnknown = Annotated[Range | NotKnown, _range(D.TIME, "5 min to 20 min", unknown=True)]
 TemperatureRangeField = Annotated[Range, _range(D.TEMPERATURE, "-80 degC to 80 degC")]
-TemperatureRangeOrUnknown = Annotated[
-    Range | NotKnown, _range(D.TEMPERATURE, "-80 degC to 80 degC", unknown=True)
-]
+TemperatureRangeOrUnknown = Annotated[Range | NotKnown, _range(D.TEMPERATURE, "-80 degC to 80 degC", unknown=True)]
 TemperatureDifferenceRangeField = Annotated[Range, _range(D.TEMPERATURE_DIFFERENCE, "up to 110 K")]
 TemperatureDifferenceRangeOrUnknown = Annotated[
     Range | NotKnown, _range(D.TEMPERATURE_DIFFERENCE, "up to 110 K", unknown=True)
@@ -126,13 +120,9 @@ PressureDifferenceRangeOrUnknown = Annotated[
     Range | NotKnown, _range(D.PRESSURE_DIFFERENCE, "up to 5 bar", unknown=True)
 ]
 TemperatureRateRangeField = Annotated[Range, _range(D.TEMPERATURE_RATE, "up to 1 K/min")]
-TemperatureRateRangeOrUnknown = Annotated[
-    Range | NotKnown, _range(D.TEMPERATURE_RATE, "up to 1 K/min", unknown=True)
-]
+TemperatureRateRangeOrUnknown = Annotated[Range | NotKnown, _range(D.TEMPERATURE_RATE, "up to 1 K/min", unknown=True)]
 PressureRateRangeField = Annotated[Range, _range(D.PRESSURE_RATE, "up to 1 bar/min")]
-PressureRateRangeOrUnknown = Annotated[
-    Range | NotKnown, _range(D.PRESSURE_RATE, "up to 1 bar/min", unknown=True)
-]
+PressureRateRangeOrUnknown = Annotated[Range | NotKnown, _range(D.PRESSURE_RATE, "up to 1 bar/min", unknown=True)]
 FractionRangeField = Annotated[Range, _range(D.FRACTION, "-4 % to 0 %")]
 FractionRangeOrUnknown = Annotated[Range | NotKnown, _range(D.FRACTION, "-4 % to 0 %", unknown=True)]
 ConcentrationRangeField = Annotated[Range, _range(D.CONCENTRATION, "0 % to 5 %")]
@@ -151,8 +141,6 @@ BarometerField = Annotated[float, Written(parse_barometer, "1013 hPa", ())]
 FractionField = Annotated[float, Written(_fraction, "5 %", ())]
 FractionOrUnknown = Annotated[float | NotKnown, Written(_fraction, "5 %", (), unknown=True)]
 DateField = Annotated[datetime.date, Written(read_date, "2031-02-14", (datetime.date,))]
-DateOrUnknown = Annotated[
-    datetime.date | NotKnown, Written(read_date, "2031-02-14", (datetime.date,), unknown=True)
-]
+DateOrUnknown = Annotated[datetime.date | NotKnown, Written(read_date, "2031-02-14", (datetime.date,), unknown=True)]
 BareCount = Annotated[int, Bare(read_count, "500", whole=True)]
 BareNumber = Annotated[float, Bare(read_number, "0.6", whole=False)]

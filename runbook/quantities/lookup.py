@@ -104,9 +104,7 @@ def _levels(bare: Unit) -> str:
 def _unknown(spelling: str, text: str, dimension: Dimension | None) -> NoReturn:
     """Refuse an unknown spelling with the nearest good one."""
     if re.search(r"(^|\s|[-–—+])[0-9]", spelling):
-        refuse(
-            text, "holds more than one number", "write one number and its unit; a range is written 'A to B'"
-        )
+        refuse(text, "holds more than one number", "write one number and its unit; a range is written 'A to B'")
     wrong = f"has an unknown unit, '{spelling[:_LONGEST]}'"
     near = _nearest(spelling, dimension)
     if near is not None:

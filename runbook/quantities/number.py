@@ -22,9 +22,7 @@ _LONGEST: Final = 80
 def refuse(text: str, wrong: str, mend: str) -> NoReturn:
     """Raise QuantityError for a text, clipped and with nothing in it that would move a terminal's cursor."""
     shown = text if len(text) <= _LONGEST else text[:_LONGEST] + "…"
-    raise QuantityError(
-        *("".join(c if c.isprintable() else "\ufffd" for c in t) for t in (shown, wrong, mend))
-    )
+    raise QuantityError(*("".join(c if c.isprintable() else "\ufffd" for c in t) for t in (shown, wrong, mend)))
 
 
 def short(text: str) -> None:

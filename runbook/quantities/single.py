@@ -45,9 +45,7 @@ def parse_barometer(text: str) -> float:
     one_value(text)
     number, spelling = split(text)
     found = UNITS.get(spelling)
-    if found is None or not (
-        found.dimension is Dimension.PRESSURE_DIFFERENCE or found.reference == "absolute"
-    ):
+    if found is None or not (found.dimension is Dimension.PRESSURE_DIFFERENCE or found.reference == "absolute"):
         if found is not None and found.dimension is Dimension.PRESSURE:
             refuse(text, "is not an absolute pressure", "a barometer reads absolute, for example 1013 hPa")
         if not spelling:

@@ -61,9 +61,7 @@ class Written:
             refuse("", "is empty", f"write for example {self.example}")
         refuse(str(type(given).__name__), "is no quantity", f"write for example {self.example}")
 
-    def __get_pydantic_core_schema__(
-        self, source: Any, handler: GetCoreSchemaHandler
-    ) -> core_schema.CoreSchema:
+    def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> core_schema.CoreSchema:
         return core_schema.no_info_plain_validator_function(self)
 
     def __get_pydantic_json_schema__(
@@ -93,9 +91,7 @@ class Bare:
         except QuantityError as problem:
             raise PydanticCustomError("quantity", "{message}", {"message": str(problem)}) from None
 
-    def __get_pydantic_core_schema__(
-        self, source: Any, handler: GetCoreSchemaHandler
-    ) -> core_schema.CoreSchema:
+    def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> core_schema.CoreSchema:
         return core_schema.no_info_plain_validator_function(self)
 
     def __get_pydantic_json_schema__(

@@ -9,6 +9,7 @@ from textual.binding import Binding, BindingType
 
 from runbook.answers import LineKind
 from runbook.bench.acting import do
+from runbook.bench.pacing import PACE_KEYS, turn_clock
 from runbook.bench.people import holder
 from runbook.bench.place import Place
 from runbook.bench.rows import Row, wrapped
@@ -20,7 +21,7 @@ from runbook.bench.screens.read import ReadPanel
 from runbook.bench.screens.sights import SightsScreen
 from runbook.bench.screens.state import StatePanel
 from runbook.bench.screens.why import WhyScreen
-from runbook.bench.viewing import next_moment, picture_view, tags
+from runbook.bench.viewing import picture_view, tags
 from runbook.run.acts import Attend
 
 if TYPE_CHECKING:
@@ -40,11 +41,8 @@ class RunPlace(Place[None]):
         Binding("s", "sights", show=False),
         Binding("f8", "state", show=False),
         Binding("escape", "app.quit", show=False),
-        Binding("left_square_bracket", "pace('slower')", show=False),
-        Binding("right_square_bracket", "pace('faster')", show=False),
-        Binding("p", "pace('pause')", show=False),
-        Binding("j", "pace('jump')", show=False),
         Binding("space", "quiet", show=False),
+        *PACE_KEYS,
     ]
 
     def __init__(self, desk: Conductor) -> None:
@@ -115,14 +113,8 @@ class RunPlace(Place[None]):
 
     def action_pace(self, what: str) -> None:
         """The clock of a rehearsal."""
-        pace = self.bench.pace
-        if pace is None:
-            return
-        if what == "jump":
-            pace.jump(next_moment(self.desk.standing()))
-        else:
-            {"slower": pace.slower, "faster": pace.faster, "pause": pace.pause}[what]()
-        self.bench.changed()
+        if said := turn_clock(self.bench, self.desk, what):
+            self.bench.say(said)
 
     def action_quiet(self) -> None:
         """The bell has been heard."""

@@ -69,10 +69,13 @@ def may_finish(desk: Conductor) -> bool:
 
 
 def next_moment(standing: Standing) -> float:
-    """How long until something is asked for [s]; for the jump of a rehearsal."""
+    """How long until something is asked for [s]; for the jump of a rehearsal. 0: an item of a quick sequence is due."""
     waits = [w.due_s - _EARLY_S for w in standing.wanted if w.due_s > 0.0]
     waits += [standing.witness[1] + 1.0] if standing.witness is not None else []
-    waits += [item.left_s - _EARLY_S for item in standing.quick if item.left_s is not None]
+    due = [item.left_s - _EARLY_S for item in standing.quick if item.left_s is not None]
+    if due:
+        # Never past its latest time, whatever else is waited for.
+        return max(0.0, min((*due, *waits)))
     return max(1.0, min(waits, default=_JUMP_S))
 
 

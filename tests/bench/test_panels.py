@@ -200,6 +200,36 @@ async def test_a_quick_sequence_of_a_rehearsal_shows_the_simulated_scale() -> No
         assert "BS1 shows 0.11705 kg" in bench.text
 
 
+async def test_the_clock_of_a_rehearsal_is_turned_in_a_quick_sequence_too(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Speed and pause as on the run screen; a jump ends before the latest time of the item that is due, never after."""
+    arm_at_once(monkeypatch)
+    pace = FakePace()
+    async with running(scenes.plan(scenes.LINES[3:]), pace=pace) as bench:
+        await bench.press("enter")
+        assert isinstance(bench.screen, QuickScreen)
+        await bench.press("right_square_bracket", "right_square_bracket", "left_square_bracket", "p", "j")
+
+        assert (pace.speed, pace.stopped) == (2.0, True)
+        assert pace.jumped == [55.0]  # of the 60 s that the first item has
+        await bench.passes(59.5)
+        await bench.press("j")
+        assert "No jump" in bench.text
+        await bench.passes(10.0)
+        await bench.press("j")
+        assert pace.jumped == [55.0]
+        await bench.press("enter", "j")
+        assert pace.jumped == [55.0, 25.0]
+
+
+async def test_at_the_vessel_no_key_turns_the_clock_of_a_quick_sequence() -> None:
+    """Time is nobody's to turn there: the keys do nothing."""
+    async with running(scenes.plan(scenes.LINES[3:])) as bench:
+        await bench.press("enter", "j", "right_square_bracket", "p")
+
+        assert isinstance(bench.screen, QuickScreen)
+        assert "60 s left" in bench.text or "1 min left" in bench.text
+
+
 async def test_one_press_confirms_one_item() -> None:
     """A key that bounces, or is held, does not confirm the item after."""
     async with running(scenes.plan(scenes.LINES[3:])) as bench:

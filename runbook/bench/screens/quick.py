@@ -7,10 +7,12 @@ from collections.abc import Iterable
 from typing import TYPE_CHECKING, ClassVar
 
 from textual import events
+from textual.binding import BindingType
 from textual.containers import VerticalScroll
 from textual.widget import Widget
 
 from runbook.bench.acting import do
+from runbook.bench.pacing import PACE_KEYS, turn_clock
 from runbook.bench.place import Keys, Place
 from runbook.bench.rows import EMPTY, Row, padded, wrapped
 from runbook.bench.style import ARM_S
@@ -30,6 +32,7 @@ class QuickScreen(Place[None]):
 
     HEADING = "QUICK SEQUENCE: nothing between these may be missed out or waited for"
     KEYS: ClassVar[Keys] = (("Enter", "done, next"), ("Esc", "leave the tool"))
+    BINDINGS: ClassVar[list[BindingType]] = [*PACE_KEYS]
 
     def __init__(self, desk: Conductor) -> None:
         """The line in which the run of `desk` stands."""
@@ -88,6 +91,11 @@ class QuickScreen(Place[None]):
                 return
             self._since = time.monotonic()
             await self._confirm()
+
+    def action_pace(self, what: str) -> None:
+        """The clock of a rehearsal."""
+        self._said = turn_clock(self.bench, self._desk, what)
+        self.bench.paint_screen(self)
 
     async def _confirm(self) -> None:
         self._said = await do(self._desk, QuickDone(len(self._desk.ledger.entry.quick)))

@@ -167,6 +167,10 @@ class Component(FileModel):
     """Coldest and hottest it may become, or `not known`. Example: -80 degC to 80 degC"""
     difference: f.TemperatureDifferenceRangeOrUnknown | None = None
     """Between its faces; left out: it has no such limit. Example: up to 110 K"""
+    temperature_rate: f.TemperatureRateRangeOrUnknown | None = None
+    """Fastest it may become warmer or colder; left out: it has no such limit. Example: up to 3 K/min"""
+    pressure_rate: f.PressureRateRangeOrUnknown | None = None
+    """Fastest the pressure on it may fall; left out: it has no such limit. Example: up to 20 bar/min"""
     material: (
         Literal["sapphire", "steel", "stainless steel", "aluminium", "glass", "acrylic", "polycarbonate"] | None
     ) = None

@@ -14,6 +14,7 @@ from runbook.answers import LeftAlone, Margin
 from runbook.assess.futures import hottest_body, left_alone
 from runbook.assess.held import held_reach, stuck_margins
 from runbook.assess.limits import closed_extremes, margins, open_extremes, worst_of
+from runbook.assess.rates import rate_margins
 from runbook.assess.scene import Scene
 from runbook.assess.walk import VesselState, Walked, by_source
 from runbook.procedure.model import OpenContainment, WarmTo
@@ -39,7 +40,7 @@ def commits(scene: Scene, line: Walked) -> bool:
 def look(scene: Scene, lines: Sequence[Walked], index: int, with_times: bool, high_kg: float | None = None) -> Look:
     """All margins of entering line `index`. high_kg: most charge [kg], replacing the walk's once closed."""
     line = _with_charge(lines[index], high_kg)
-    found = list(path_margins(scene, line, "this step"))
+    found = [*path_margins(scene, line, "this step"), *rate_margins(scene, line)]
     alone, alone_margins = left_alone(scene, line.after, with_times)
     found += alone_margins
     if line.seals:
@@ -60,7 +61,9 @@ def path_margins(scene: Scene, line: Walked, cause: str) -> list[Margin]:
     if line.lets_down and line.before.closed:
         # Gas goes to the room, the wall may reach dry ice; the pressure starts where it stood.
         start = closed_extremes(scene, line.before.high_kg, line.before.hot, line.before.cold)
-        reach = replace(start, cold=during.cold, lowest_pressure=0.0, released=line.before.high_kg)
+        # The room is at the other end of the valve.
+        lowest = scene.barometer.low_Pa
+        reach = replace(start, cold=during.cold, lowest_pressure=lowest, released=line.before.high_kg)
         return margins(scene, reach, line.before.valves, cause)
     if during.loaded and during.closed:
         reach = closed_extremes(scene, during.high_kg, during.hot, during.cold)

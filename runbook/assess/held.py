@@ -17,7 +17,8 @@ from runbook.apparatus.relief import highest_opening
 from runbook.apparatus.spaces import springs_open
 from runbook.assess.corners import Worst, highest_pressure
 from runbook.assess.course import Held
-from runbook.assess.limits import Extremes, judge
+from runbook.assess.judging import judge
+from runbook.assess.limits import Extremes
 from runbook.assess.scene import Scene
 from runbook.assess.walk import VesselState, is_closed
 from runbook.charge.rising import Warming, highest_rise

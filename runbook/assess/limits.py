@@ -12,14 +12,11 @@ from runbook.answers import Corner, Judgement, Margin
 from runbook.apparatus.ceiling import pressure_limits
 from runbook.apparatus.spaces import joined_spaces
 from runbook.assess.corners import Worst, highest_between
+from runbook.assess.judging import NARROW_SECONDS, NARROW_SHARE, judge
+from runbook.assess.room import gas_margins, outside_margins
 from runbook.assess.scene import Scene
 from runbook.errors import OutsideValidity
 from runbook.quantities import Level, NotKnown, Range
-
-NARROW_SHARE = 0.05
-"""Of the limit (of full scale for a dial, of the span for a temperature rating) under which it is narrow [1]."""
-NARROW_SECONDS = 180.0
-"""A margin that lasts no longer than this at the worst credible rate is narrow [s]."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,15 +33,6 @@ class Extremes:
     """Coldest wetted wall [K]."""
     released: float = 0.0
     """Gas that may get into the room [kg]."""
-
-
-def judge(margin: float | None, threshold: float, lasts_s: float | None = None) -> Judgement:
-    """Clear, narrow or blocked; threshold in the margin's unit, lasts_s [s] or None for ever."""
-    if margin is None or not margin > 0.0:
-        return Judgement.BLOCKED
-    if margin < threshold or (lasts_s is not None and lasts_s < NARROW_SECONDS):
-        return Judgement.NARROW
-    return Judgement.CLEAR
 
 
 def closed_extremes(scene: Scene, high_kg: float, hot: float, cold: float) -> Extremes:
@@ -74,8 +62,8 @@ def margins(scene: Scene, reach: Extremes, positions: Mapping[str, str], cause: 
     """Every margin of these extremes with valves standing so ('do not know' counts as open)."""
     found = list(_pressures(scene, reach, positions, cause))
     found += _temperatures(scene, reach, cause)
-    if reach.released > 0.0 and scene.substance.data.hazards.breathing != "harmless":
-        found.append(_gas(scene, reach, cause))
+    found += outside_margins(scene, reach, cause)
+    found += gas_margins(scene, reach, cause)
     return found
 
 
@@ -187,17 +175,3 @@ def _unknown(tag: str, kind: str, cause: str, worst: float, at: Corner) -> Margi
         tag, kind, cause, worst, None, None, "K", Judgement.BLOCKED, at,
         why=f"the {kind} rating of {tag} is not known",
     )  # fmt: skip
-
-
-def _gas(scene: Scene, reach: Extremes, cause: str) -> Margin:
-    """All of it in the room's air at once, no ventilation counted, against the long-term exposure limit."""
-    hazards, volume = scene.substance.data.hazards, scene.gas_volume
-    limit = hazards.exposure_limit
-    worst = None if volume is None else hazards.background + reach.released * volume / scene.procedure.room.volume.low
-    if limit is None or worst is None:
-        why = f"no exposure limit of {scene.substance.name} is known"
-        return Margin("room", "gas in the room", cause, worst, limit, None, "m3/m3", Judgement.BLOCKED, None, why=why)
-    margin = limit - worst
-    return Margin(
-        "room", "gas in the room", cause, worst, limit, margin, "m3/m3", judge(margin, NARROW_SHARE * limit), None
-    )

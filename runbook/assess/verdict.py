@@ -120,6 +120,10 @@ def amount(value: float, unit: str) -> str:
     if unit == "K":
         # Above 150 K it is a temperature, below a difference: ratings of differences never reach so far.
         return say(value, "degC", 1) if value > 150.0 else f"{value:.1f} K"
+    if unit == "K/s":
+        return say(value, "K/min", 2)
+    if unit == "Pa/s":
+        return say(value, "bar/min", 1)
     return f"{value:.4g} {unit}"
 
 

@@ -116,6 +116,8 @@ class Room(FileModel):
     """Of the ventilation. Example: 2 per h"""
     height: f.HeightField | None = None
     """Above sea level: gives the barometer where nobody has read it. Example: 120 m"""
+    dry_ice: Annotated[f.MassField, Positive] | None = None
+    """Dry ice brought for cooling, besides the charge: all of it ends in the room's air. Example: 300 g"""
 
 
 class Parked(FileModel):

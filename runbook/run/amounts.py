@@ -131,6 +131,10 @@ def level(plan: Plan, margin: Margin, value: float | None) -> str:
             return grams(value)
         case "m3/m3":
             return say(value, "%", 2)
+        case "K/s":
+            return say(value, "K/min", 2)
+        case "Pa/s":
+            return say(value, "bar/min", 1)
         case _:
             return f"{value:g} {margin.unit}"
 

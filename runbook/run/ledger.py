@@ -25,6 +25,7 @@ from runbook.run.questions import (
     key_of,
     observations_json,
     plan_digest,
+    read_closed,
     with_reading,
 )
 from runbook.run.state import Entry, Ledger, QuickMark, Stated, Taken, Trail
@@ -127,7 +128,7 @@ def _enter(ledger: Ledger, at: Moment) -> Ledger:
 def _reading(ledger: Ledger, event: ev.ReadingTaken, at: Moment) -> Ledger:
     taken = Taken(event, at, ledger.seq)
     seen = with_reading(ledger, event, at, ledger.seq)
-    past = ledger.past if closed(ledger) == "open" else with_past(ledger.past, event, at)
+    past = with_past(ledger.past, event, at) if read_closed(ledger) else ledger.past
     return replace(
         ledger,
         past=past,

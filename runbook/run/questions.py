@@ -76,6 +76,20 @@ def closed(ledger: Ledger) -> str:
     return "closed" if all(p == "shut" for p in outside) else UNKNOWN
 
 
+def read_closed(ledger: Ledger) -> bool:
+    """Whether a reading taken now is one of the closed vessel.
+
+    The instruction of a quick sequence counts as done at once, a scale read meanwhile does not: until the item that
+    closes the last vent is confirmed there is still a way in and out, and such a weighing proves nothing.
+    """
+    line = ledger.present
+    if line is not None and line.seals and line.quick:
+        closing = max((n for n, item in enumerate(line.quick) if item.seals), default=len(line.quick) - 1)
+        if len(ledger.entry.quick) <= closing:
+            return False
+    return closed(ledger) != "open"
+
+
 def observations(seen: Seen) -> tuple[Observation, ...]:
     """Those that count, in the order of the record, each once; a temperature beside a height that is also the last of
     its instrument counts as that.
@@ -130,7 +144,7 @@ def key_of(ledger: Ledger) -> str:
 
 def with_reading(ledger: Ledger, event: ReadingTaken, at: Moment, seq: int) -> Seen:
     """What counts once this reading has come as event `seq`."""
-    one = Observation(event.tag, event.what, event.value, seq, event.by, closed(ledger) != "open")
+    one = Observation(event.tag, event.what, event.value, seq, event.by, read_closed(ledger))
     seen = ledger.seen
     if event.what in ("mass", "liquid height"):
         if one.closed:

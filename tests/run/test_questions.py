@@ -8,10 +8,11 @@ from dataclasses import replace
 
 import pytest
 
-from runbook.answers import ChargeBox, LineKind
+from runbook.answers import ChargeBox, LineKind, QuickItem
 from runbook.codec import to_plain
 from runbook.run.acts import GapAnswers, GoOn, Note, QuickDone, SetSource, SetValve
 from runbook.run.events import GapOpened, TurnedBack
+from runbook.run.ledger import fold_all
 from runbook.run.questions import closed, plan_digest, question
 from tests.run.plans import ROOM, Run, begun, line, plan, quick
 
@@ -124,6 +125,30 @@ def test_a_valve_a_line_moves_is_not_known_until_somebody_says() -> None:
     asked = question(said.plan, said.ledger)
     assert asked is not None
     assert dict(asked.valves)["V3"] == "shut"
+
+
+def test_a_scale_read_before_the_last_vent_is_shut_weighs_no_closed_vessel() -> None:
+    """In a sequence that seals, a reading is one of the closed vessel once the item that closes it is confirmed."""
+    items = (
+        QuickItem("Lift the cell", 60.0, "Begin again."),
+        QuickItem("Shut V2", 60.0, "Begin again.", (("V2", "shut"),), True),
+        QuickItem("Step back", 60.0, "Open V2."),
+    )
+    run = begun(plan(replace(quick(seals=True), quick=items), line(8)))
+    run.must(GoOn())
+    assert closed(run.ledger) == "closed"
+    run.read("BS1", 0.119)
+    run.read("PG1", 60e5)
+    run.must(QuickDone(0))
+    run.read("BS1", 0.118)
+    run.must(QuickDone(1))
+    run.read("BS1", 0.117, by="Bo")
+    asked = question(run.plan, run.ledger)
+    assert asked is not None
+    found = [(o.tag, o.value, o.closed) for o in asked.observations]
+    assert found == [("PG1", 60e5, False), ("BS1", 0.118, False), ("BS1", 0.117, True)]
+    assert [past.value for past in run.ledger.past.readings] == [0.117]
+    assert fold_all(run.pairs) == run.ledger
 
 
 def test_a_line_that_seals_counts_as_closed_from_its_entry_on() -> None:

@@ -15,6 +15,7 @@ from runbook.assess.futures import hottest_body, left_alone
 from runbook.assess.held import held_reach, stuck_margins
 from runbook.assess.limits import closed_extremes, margins, open_extremes, worst_of
 from runbook.assess.rates import rate_margins
+from runbook.assess.release import open_air_margins
 from runbook.assess.scene import Scene
 from runbook.assess.walk import VesselState, Walked, by_source
 from runbook.procedure.model import OpenContainment, WarmTo
@@ -49,7 +50,11 @@ def look(scene: Scene, lines: Sequence[Walked], index: int, with_times: bool, hi
 
 
 def path_margins(scene: Scene, line: Walked, cause: str) -> list[Margin]:
-    """Margins of what the line itself reaches."""
+    """Margins of what the line itself reaches, and of what its fluid may not do in the open."""
+    return [*_reached(scene, line, cause), *open_air_margins(scene, line, cause)]
+
+
+def _reached(scene: Scene, line: Walked, cause: str) -> list[Margin]:
     during = line.during
     if line.held is not None:
         hottest = hottest_body(scene, during)

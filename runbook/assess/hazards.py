@@ -7,6 +7,7 @@ down lowers one hazard and raises two.
 from __future__ import annotations
 
 from runbook.answers import Effect, Hazard
+from runbook.assess.release import lets_out
 from runbook.assess.scene import Scene
 from runbook.assess.walk import Walked, by_source
 from runbook.procedure.model import CoolTo, DoStep, LetDownTo, Load, OpenContainment, Purge, WarmTo
@@ -23,8 +24,11 @@ def effects(scene: Scene, line: Walked) -> tuple[tuple[Hazard, Effect], ...]:
     hazards = scene.substance.data.hazards
     if hazards.breathing == "harmless":
         found[Hazard.GAS] = Effect.KEEPS
-    if line.lets_down and hazards.release_forbidden:
+    if hazards.release_forbidden and lets_out(scene, line):
         found[Hazard.RELEASE] = Effect.RAISES
+        if found[Hazard.OVER_PRESSURE] is Effect.LOWERS:
+            # What is forbidden is no way of lowering a pressure: the step has to bear every proof of one that raises.
+            found[Hazard.OVER_PRESSURE] = Effect.KEEPS
     if isinstance(line.step, DoStep):
         for name in line.step.raises:
             found[Hazard(name)] = Effect.RAISES

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 
 from runbook.answers import Certificate, Effect, Finding, LineKind, Margin, PlanLine
 from runbook.assess.mend import Mend
+from runbook.assess.release import FORBIDDEN, IGNITION
 from runbook.assess.scene import Scene
 from runbook.assess.walk import Walked
 from runbook.procedure.document import Place, Route
@@ -42,7 +43,7 @@ def line_findings(
         found += [
             Finding("margin", "error", *at, f"step {line.number}: {margin_sentence(m)}")
             for m in line.ahead
-            if m.margin is None or m.margin <= 0.0
+            if (m.margin is None or m.margin <= 0.0) and m.kind != IGNITION
         ]
         found += _gates(lines, index, at)
     return tuple(found)
@@ -98,6 +99,8 @@ def verdict_of(lines: Sequence[PlanLine], findings: Sequence[Finding]) -> str:
 
 def margin_sentence(margin: Margin) -> str:
     """One margin for a report: limit, number, corner."""
+    if margin.kind == FORBIDDEN:
+        return margin.why
     what = f"{margin.limit} {margin.kind}, {margin.cause}"
     if margin.margin is None:
         return f"{what}: not proved, {margin.why or 'not known'}"

@@ -62,6 +62,9 @@ def margin_words(plan: Plan, margin: Margin) -> str:
     if margin.margin is None or margin.worst is None or margin.allowed is None:
         why = margin.why or "it could not be computed"
         return f"{cause_words(margin.cause)}: the {margin.kind} margin of {margin.limit} is not known, because {why}."
+    if margin.why:
+        # A limit that a law sets says itself what it forbids.
+        return f"{cause_words(margin.cause)}: {margin.why}."
     low = margin.kind.startswith("lowest")
     reaches = f"{margin.kind} {'falls to' if low else 'reaches'} {level(plan, margin, margin.worst)}{_corner(margin)}"
     allows = f"{margin.limit} allows {level(plan, margin, margin.allowed)}"
@@ -80,6 +83,9 @@ def _corner(margin: Margin) -> str:
 
 def _lighter(plan: Plan, ledger: Ledger, reason: Reason) -> str:
     """While the vessel is open, too much can still sublime."""
+    if reason.margin is not None and reason.margin.limit == "room":
+        # What the room must not get does not depend on a reading.
+        return OTHERWISE
     at = reason.margin.at if reason.margin is not None else None
     most, charge = plan.bounds.most_kg, at.charge_kg if at is not None else None
     if closed(ledger) == "open" and most is not None and charge is not None and charge > most:

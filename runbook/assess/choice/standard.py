@@ -15,6 +15,7 @@ from runbook.apparatus.instruments import permissible_error
 from runbook.apparatus.model import Apparatus
 from runbook.apparatus.spaces import ways_out
 from runbook.assess.scene import Scene, open_scene
+from runbook.fluids.catalogue import find
 from runbook.procedure.model import Procedure
 from runbook.procedure.reader import Loaded
 from runbook.quantities import Bounded, NotKnown
@@ -70,7 +71,7 @@ def standard_scene(
     procedure = Procedure.model_validate(_plain(apparatus, wanted, mass, half))
     loaded = Loaded(procedure, apparatus, {}, {}, {}, file, file, "", "", "", "")
     charge = None
-    if not ways_out(apparatus, apparatus.spaces[0]):
+    if not _ways_in(apparatus, wanted):
         charge = ChargeBox(mass - half, mass + half, False, ("plan",))
     return open_scene(loaded, barometer_Pa, charge)
 
@@ -78,7 +79,7 @@ def standard_scene(
 def _plain(apparatus: Apparatus, wanted: Wanted, mass: float, half: float) -> dict[str, Any]:
     """As the reader would hand it over."""
     source = apparatus.heat_source
-    ways = list(ways_out(apparatus, apparatus.spaces[0]))
+    ways = _ways_in(apparatus, wanted)
     positions: dict[str, str] = {v.tag: "shut" for v in apparatus.valves} | {tag: "open" for tag in ways}
     if source is not None:
         positions[source.tag] = "unplugged"
@@ -99,6 +100,11 @@ def _plain(apparatus: Apparatus, wanted: Wanted, mass: float, half: float) -> di
         "at_start": positions,
         "parts": (*parts, {"name": "lesson", "steps": warming}),
     }  # fmt: skip
+
+
+def _ways_in(apparatus: Apparatus, wanted: Wanted) -> list[str]:
+    """What it is loaded through with the room beside it; what may not get out there is as if loaded already."""
+    return [] if find(wanted.fluid).hazards.release_forbidden else list(ways_out(apparatus, apparatus.spaces[0]))
 
 
 def _loading(ways: list[str], box: Bounded) -> tuple[dict[str, Any], ...]:

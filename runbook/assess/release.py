@@ -1,0 +1,81 @@
+"""What forbids a fluid in the open, whatever the pressures are: a law against letting it out, and that it burns.
+
+A release that is forbidden is no way of lowering a pressure, and what burns has no rules for ignition and ventilation
+here. Both are margins that are gone, so that check, paper and the gate of a run refuse them alike. What is put out
+of the vessel by a relief device is not judged here: nobody does it.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping
+
+from runbook.answers import Judgement, Margin
+from runbook.apparatus.model import OUTSIDE
+from runbook.apparatus.spaces import joined_spaces
+from runbook.assess.scene import Scene
+from runbook.assess.walk import Walked
+from runbook.procedure.model import DoStep, LetDownTo, Purge, QuickItem, QuickStep
+from runbook.quantities import say
+
+FORBIDDEN = "forbidden release"
+"""Kind of the margin of a release that the law forbids."""
+IGNITION = "ignition"
+"""Kind of the margin of what burns."""
+
+
+def lets_out(scene: Scene, line: Walked) -> bool:
+    """Whether the line gives the fluid a way to the room that it did not have, at any moment in it.
+
+    A valve that nobody knows counts as open, and a purge is filled from outside and let out each time.
+    """
+    verb = line.verb
+    if isinstance(verb, Purge):
+        return _open(scene, dict(line.before.valves) | dict(line.during.valves) | {verb.through: "open"})
+    if not (line.before.loaded or line.during.loaded):
+        return False
+    was_open = line.before.loaded and _open(scene, line.before.valves)
+    for valves, letting_down in _moments(line):
+        now_open = _open(scene, valves)
+        if now_open and (letting_down or not was_open):
+            return True
+        was_open = now_open
+    return False
+
+
+def open_air_margins(scene: Scene, line: Walked, cause: str) -> Iterator[Margin]:
+    """Margins that are gone because of the fluid itself; none for most fluids."""
+    fluid = scene.substance
+    hazards = fluid.data.hazards
+    if hazards.flammable and (line.before.loaded or line.during.loaded):
+        why = f"{fluid.name} burns, and ignition and ventilation have no rules here"
+        yield Margin("room", IGNITION, cause, None, None, None, "m3/m3", Judgement.BLOCKED, None, why=why)
+    if hazards.release_forbidden and lets_out(scene, line):
+        kg = max(line.before.high_kg if line.before.loaded else 0.0, line.during.high_kg, _purged(scene, line))
+        why = f"up to {say(kg, 'g', 1)} of {fluid.name} could get out to the room, which is forbidden"
+        why += f" ({hazards.release_law}): recover it into a closed space of the apparatus"
+        yield Margin("room", FORBIDDEN, cause, kg, 0.0, -kg, "kg", Judgement.BLOCKED, None, why=why)
+
+
+def _open(scene: Scene, valves: Mapping[str, str]) -> bool:
+    return OUTSIDE in joined_spaces(scene.apparatus, valves, scene.charge_space)
+
+
+def _moments(line: Walked) -> Iterator[tuple[Mapping[str, str], bool]]:
+    """Positions of the valves, one after the other, and whether gas is let down with them so."""
+    valves = dict(line.before.valves)
+    items = line.step.quick if isinstance(line.step, QuickStep) else (line.step,)
+    for item in items:
+        if isinstance(item, DoStep | QuickItem):
+            valves |= item.valves
+            if isinstance(item.path, LetDownTo):
+                yield valves | {item.path.through: "open"}, True
+        yield dict(valves), False
+
+
+def _purged(scene: Scene, line: Walked) -> float:
+    """What a purge lets out, as of an ideal gas [kg]."""
+    verb, volume = line.verb, scene.gas_volume
+    if not isinstance(verb, Purge) or volume is None:
+        return 0.0
+    filled = verb.up_to.absolute(scene.barometer.high_Pa) / 101325.0
+    return float(verb.purge) * filled * scene.volume[1] / volume

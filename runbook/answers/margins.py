@@ -80,7 +80,7 @@ class Margin:
     limit: str
     """Tag of the part, relief device or instrument whose rating this is."""
     kind: str
-    """What is limited, in words: 'pressure', 'temperature', 'lowest temperature', 'difference', ..."""
+    """What is limited, in words: 'pressure', 'relieved pressure', 'temperature', 'lowest temperature', 'difference', ..."""
     cause: str
     """What brings it about: 'now', 'this step', 'left alone', 'heat stuck on', or a later line's number."""
     worst: float | None
@@ -98,7 +98,7 @@ class Margin:
     lasts_s: float | None = None
     """How long it lasts at the worst credible rate [s]; None: for ever, or not worked out."""
     why: str = ""
-    """Where unknown: what is missing, as a clause."""
+    """Where unknown what is missing, where a law sets the limit what it forbids, as a clause; else empty."""
 
 
 @dataclass(frozen=True, slots=True)

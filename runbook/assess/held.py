@@ -29,6 +29,10 @@ ACCUMULATION = 1.1
 by then: ASME BPVC VIII-1 UG-125 [1]."""
 
 
+RELIEVED = "relieved pressure"
+"""Kind of a margin that a relief device is counted on for: it is not the ceiling that it stands against."""
+
+
 def held_vent(scene: Scene, state: VesselState) -> str | None:
     """Tag of a valve whose letting go opens this closed vessel; None where no hand keeps it shut.
 
@@ -112,13 +116,13 @@ def stuck_margins(scene: Scene, state: VesselState, vent: str, hottest: float | 
         if limit.level is None:
             why = f"the rating of {limit.tag} is not known"
             yield Margin(
-                limit.tag, "pressure", cause, worst.value, None, None, "Pa", Judgement.BLOCKED, worst.at, why=why
+                limit.tag, RELIEVED, cause, worst.value, None, None, "Pa", Judgement.BLOCKED, worst.at, why=why
             )
             continue
         share = ACCUMULATION if limit.kind == "mawp" else 1.0
         allowed = share * limit.level.gauge(scene.barometer.low_Pa) + scene.barometer.low_Pa
         margin = None if worst.value is None else allowed - worst.value
         yield Margin(
-            limit.tag, "pressure", cause, worst.value, allowed, margin, "Pa", judge(margin, worst.uncertainty),
+            limit.tag, RELIEVED, cause, worst.value, allowed, margin, "Pa", judge(margin, worst.uncertainty),
             worst.at, why=worst.why,
         )  # fmt: skip

@@ -37,6 +37,7 @@ from runbook.assess.phases import phases
 from runbook.assess.scene import Scene
 from runbook.assess.sights import liquid_height, live_sights
 from runbook.assess.walk import VesselState, Walked, hottest_of, start_state
+from runbook.errors import OutsideValidity
 from runbook.procedure.model import WarmTo
 
 
@@ -67,7 +68,7 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     held = line.held if line is not None else None
     reach = _reach(scene, state, readings, held)
     computed = None
-    if box is not None and state.closed and readings.temperature is not None:
+    if box is not None and state.closed and readings.temperature is not None and held is None:
         computed = computed_pressure(scene, box, readings.temperature, rate)
     standing = worst_of(margins(scene, reach, state.valves, "now"))
     distance = _distance(scene, state, reach, rate, standing, held is not None)
@@ -252,7 +253,10 @@ def _distance(
     if worst is None or not limits:
         return Distance(None, None, None, rate)
     ceiling = min(limits, key=lambda m: m.allowed or 0.0).allowed
-    if ceiling is None or not state.closed or held:
+    if ceiling is not None and held:
+        # The hand is gone before; kelvins are those that would be left if it were not.
+        return Distance(ceiling - worst, _kelvins_between(scene, worst, ceiling), None, rate)
+    if ceiling is None or not state.closed:
         return Distance(None if ceiling is None else ceiling - worst, None, None, rate)
     reached = temperature_at_pressure(scene, state.high_kg, ceiling, state.hot)
     if worst >= ceiling:
@@ -264,6 +268,14 @@ def _distance(
     if state.source not in ("on", "do not know") and reached > scene.room_hottest:
         return Distance(ceiling - worst, kelvin, None, rate)
     return Distance(ceiling - worst, kelvin, kelvin / rate if rate > 0.0 else None, rate)
+
+
+def _kelvins_between(scene: Scene, low: float, high: float) -> float | None:
+    """Of liquid beside its vapour, from one pressure [Pa] to another [K]; None beyond its curve."""
+    try:
+        return scene.substance.boiling_temperature(high) - scene.substance.boiling_temperature(low)
+    except OutsideValidity:
+        return None
 
 
 def _ahead(scene: Scene, lines: Sequence[Walked], question: Question, box: ChargeBox | None) -> tuple[Margin, ...]:

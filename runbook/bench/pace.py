@@ -36,6 +36,11 @@ class Pace(Protocol):
         """Bring the simulated vessel to the present moment and to what has been done."""
         ...
 
+    @property
+    def seen(self) -> str:
+        """What stands in the simulated vessel, for whoever looks into it; empty: nothing."""
+        ...
+
     def dial(self, tag: str) -> str | None:
         """What the simulated dial shows, as one would type it; None: it cannot be read now."""
         ...

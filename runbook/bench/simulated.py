@@ -46,6 +46,8 @@ class Simulated:
         self._played = {one.name: one.number for one in played}
         self._plan: Plan | None = None
         self._shown: dict[str, float] = {}
+        self.seen = ""
+        """What stands in the simulated vessel, for whoever looks into it; empty: nothing, or nobody can say."""
         self._process: asyncio.subprocess.Process | None = None
         self._looking: asyncio.Task[None] | None = None
 
@@ -94,8 +96,9 @@ class Simulated:
             await process.stdin.drain()
             reply = json.loads(await asyncio.wait_for(process.stdout.readline(), deadline))
             self._shown = dict(reply.get("shown", {}))
+            self.seen = str(reply.get("seen", ""))
         except (OSError, ValueError, TimeoutError):
-            self._shown = {}
+            self._shown, self.seen = {}, ""
             self._process = None
             with contextlib.suppress(ProcessLookupError):
                 process.kill()

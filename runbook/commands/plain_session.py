@@ -45,6 +45,11 @@ class Bench(Protocol):
         """Wait until the dials show it."""
         ...
 
+    @property
+    def seen(self) -> str:
+        """What stands in the simulated vessel; empty: nothing."""
+        ...
+
     def dial(self, tag: str) -> str | None:
         """What a dial shows, as one would type it; None: nothing that can be read."""
         ...
@@ -116,7 +121,7 @@ class Session:
                 print("\n".join(sight_lines(self.desk.plan, self.desk.standing())))
             elif words and words[0] == "by" and len(words) > 1:
                 self._set_by(" ".join(words[1:]))
-            elif self.pace is not None and words and words[0] in ("read", "speed", "wait", "jump"):
+            elif self.pace is not None and words and words[0] in ("read", "look", "speed", "wait", "jump"):
                 await self._rehearsed(words)
             else:
                 await self._act(text)
@@ -156,6 +161,11 @@ class Session:
                 raise InputUnusable(f"'{tag}' shows nothing that can be read now")
             print(f"  {tag} shows {shown}")
             await self._act(f"{tag} {shown}")
+        elif words[0] == "look":
+            await self._looked()
+            dials = [(i, self.pace.dial(i.tag)) for i in self.desk.plan.instruments]
+            print("  simulated: " + ", ".join(f"{i.tag} shows {d} {i.unit}" for i, d in dials if d is not None))
+            print(f"  in the vessel: {self.pace.seen or 'nothing'}")
         elif words[0] == "speed":
             self.pace.set_speed(_number(words, 1.0, 600.0))
         elif words[0] == "wait":

@@ -106,7 +106,7 @@ HELP = (
 )
 """What can be typed."""
 HELP_REHEARSAL = (
-    "read [TAG]   take what the simulated dial shows",
+    "read [TAG]   take what the simulated dial shows      look   see every dial and the vessel, and take nothing",
     "speed N      1 to 600 times      wait MIN   let minutes pass      jump   to the next thing asked for",
 )
 """What can be typed in a rehearsal besides."""

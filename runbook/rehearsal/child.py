@@ -34,8 +34,8 @@ def open_world(asked: dict[str, Any]) -> World:
     return World(scene, lines, plan, seed, Moment(float(asked["boot"]), 0.0), request.part, troubles)
 
 
-def look(world: World, asked: dict[str, Any]) -> dict[str, float]:
-    """Let the time since the last look pass, do what has been done, and read every dial [SI]."""
+def look(world: World, asked: dict[str, Any]) -> dict[str, Any]:
+    """Let the time since the last look pass, do what has been done: what every dial shows [SI], and what is seen."""
     world.move_to(Moment(float(asked["boot"]), 0.0))
     world.follow(
         replace(
@@ -47,7 +47,7 @@ def look(world: World, asked: dict[str, Any]) -> dict[str, float]:
     )
     world.move_to(Moment(float(asked["boot"]), 0.0))
     shown = {str(tag): world.read(str(tag)) for tag in asked["tags"]}
-    return {tag: value for tag, value in shown.items() if value is not None}
+    return {"shown": {tag: value for tag, value in shown.items() if value is not None}, "seen": world.seen}
 
 
 def serve(lines_in: Callable[[], str], line_out: Callable[[str], None]) -> None:
@@ -62,7 +62,7 @@ def serve(lines_in: Callable[[], str], line_out: Callable[[str], None]) -> None:
             elif world is None:
                 line_out(json.dumps({"why": "no vessel is there yet"}))
             else:
-                line_out(json.dumps({"shown": look(world, asked)}, allow_nan=False))
+                line_out(json.dumps(look(world, asked), allow_nan=False))
         except RunbookError as error:
             # Where the models end the dials cannot be said; the rehearsal goes on without them.
             line_out(json.dumps({"why": str(error)}))

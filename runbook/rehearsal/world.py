@@ -177,6 +177,20 @@ class World:
         state = self._simulation.state(self.vessel)
         return state is not None and (state.liquid or 0.0) > _SEEN
 
+    @property
+    def seen(self) -> str:
+        """What stands in the simulated vessel: 'solid 8.2 %, liquid 1.1 % of it'; empty: nothing."""
+        if self.vessel.mass <= 1e-6:
+            return ""
+        state = self._simulation.state(self.vessel)
+        if state is None:
+            fluid = self._scene.substance
+            cold = self._simulation.in_the_open_at(self.controls.barometer) < fluid.triple_temperature
+            return "solid in the open" if cold else "liquid in the open"
+        shares = (("solid", state.solid or 0.0), ("liquid", state.liquid or 0.0))
+        there = [f"{name} {100.0 * share:.{0 if share > 0.1 else 1}f} %" for name, share in shares if share > 0.0]
+        return f"{', '.join(there)} of it" if there else "nothing but gas"
+
     def read(self, tag: str) -> float | None:
         """What an instrument shows now [SI; pressures absolute]; None where it shows nothing."""
         return self._dials.read(self._shown, tag)

@@ -74,6 +74,7 @@ class FakePace:
         self.speed = 1.0
         self.stopped = False
         self.jumped: list[float] = []
+        self.seen = "solid 8 % of it"
         self.dials = {"TT1": "24.1", "PG1": "62.6", "HS1": "30"}
 
     @property

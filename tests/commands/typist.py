@@ -44,6 +44,11 @@ class Table:
     async def looked(self) -> None:
         """At once."""
 
+    @property
+    def seen(self) -> str:
+        """As the world has it."""
+        return self._world.seen
+
     def dial(self, tag: str) -> str | None:
         """As typed."""
         value = self._world.read(tag)

@@ -72,12 +72,16 @@ class QuickScreen(Place[None]):
         return rows + (wrapped(f" {self._said}", width - 1, "blocked") if self._said else [])
 
     def _simulated(self, width: int) -> list[Row]:
-        """What the simulated scales show: at the vessel a person looks at them with hands on the valve."""
+        """What a person looks at with hands on the valve: the scale until the vessel is closed, then gauge and sight."""
         pace = self.bench.pace
-        if pace is None:
+        if pace is None or self._line is None:
             return []
-        scales = [one for one in self._desk.plan.instruments if one.reads == "mass"]
-        shown = [f"{one.tag} shows {dial} {one.unit}" for one in scales if (dial := pace.dial(one.tag)) is not None]
+        done = len(self._desk.ledger.entry.quick)
+        closing = done < len(self._line.quick) and self._line.quick[done].seals
+        wanted = "mass" if closing else "pressure"
+        dials = [one for one in self._desk.plan.instruments if one.reads == wanted]
+        shown = [f"{one.tag} shows {dial} {one.unit}" for one in dials if (dial := pace.dial(one.tag)) is not None]
+        shown += [f"in the vessel: {pace.seen}"] if pace.seen and not closing else []
         return [EMPTY, *wrapped(" simulated: " + ", ".join(shown), width - 1, "rehearsal")] if shown else []
 
     async def on_key(self, event: events.Key) -> None:

@@ -80,7 +80,7 @@ class Margin:
     limit: str
     """Tag of the part, relief device or instrument whose rating this is."""
     kind: str
-    """What is limited, in words: 'pressure', 'relieved pressure', 'temperature', 'lowest temperature', 'difference', ..."""
+    """What is limited, in words: 'pressure', 'relieved pressure', 'temperature', 'difference', ..."""
     cause: str
     """What brings it about: 'now', 'this step', 'left alone', 'heat stuck on', or a later line's number."""
     worst: float | None

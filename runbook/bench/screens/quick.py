@@ -72,7 +72,7 @@ class QuickScreen(Place[None]):
         return rows + (wrapped(f" {self._said}", width - 1, "blocked") if self._said else [])
 
     def _simulated(self, width: int) -> list[Row]:
-        """What a person looks at with hands on the valve: the scale until the vessel is closed, then gauge and sight."""
+        """What one looks at with hands on the valve: the scale until the vessel is closed, then gauge and sight."""
         pace = self.bench.pace
         if pace is None or self._line is None:
             return []

@@ -23,6 +23,7 @@ from runbook.assess.mend import mends
 from runbook.assess.path import planned_path
 from runbook.assess.plan_line import plan_line
 from runbook.assess.scene import Scene, open_scene
+from runbook.assess.single_faults import single_fault_findings
 from runbook.assess.truth import truth_findings
 from runbook.assess.verdict import fluid_findings, line_findings, mend_findings, position, verdict_of
 from runbook.assess.walk import VesselState, Walked, outside_tags, start_state, walk
@@ -64,6 +65,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
         + fluid_findings(scene)
         + line_findings(loaded, walked, plan_lines, dated)
         + truth_findings(scene, walked, places)
+        + single_fault_findings(scene, walked, places)
         + making_safe_findings(scene, walked, plan_lines, None if forbidden else vent, places)
     )
     verdict = verdict_of(plan_lines, found)

@@ -21,7 +21,9 @@ ON = date(2031, 3, 2)
 WINDOWS = "difference: up to 110 K,"
 
 
-def margins(folder: Path, kind: str, apparatus: dict[str, str], procedure: dict[str, str] | None = None) -> dict[str, Margin]:
+def margins(
+    folder: Path, kind: str, apparatus: dict[str, str], procedure: dict[str, str] | None = None
+) -> dict[str, Margin]:
     """Margins of one kind by line and limit."""
     plan = bind(loaded(folder, procedure, apparatus), ON)
     return {f"{line.number} {m.limit}": m for line in plan.lines for m in line.ahead if m.kind == kind}
@@ -39,12 +41,20 @@ def test_a_warming_is_as_fast_as_it_is_stated_or_as_the_source_can(tmp_path: Pat
     assert (free["3.4 W1"].margin or 0.0) > 0.0
 
 
-@pytest.mark.parametrize(("allowed", "verdict"), [("up to 5 K/min", "within limits"), ("up to 0.9 K/min", "outside limits"),
-                                                  ("not known", "not proved")])  # fmt: skip
+@pytest.mark.parametrize(
+    ("allowed", "verdict"),
+    [("up to 5 K/min", "within limits"), ("up to 0.9 K/min", "outside limits"), ("not known", "not proved")],
+)
 def test_the_verdict_follows_the_rate_that_a_part_bears(tmp_path: Path, allowed: str, verdict: str) -> None:
     """Also letting down counts, so the rate allowed for the good case is above that one's bound."""
-    plan = bind(loaded(tmp_path, None, {WINDOWS: f"{WINDOWS} temperature_rate: {allowed},",
-                                        "from_fluid: 5 W/K": "from_fluid: 0.5 W/K"}), ON)  # fmt: skip
+    plan = bind(
+        loaded(
+            tmp_path,
+            None,
+            {WINDOWS: f"{WINDOWS} temperature_rate: {allowed},", "from_fluid: 5 W/K": "from_fluid: 0.5 W/K"},
+        ),
+        ON,
+    )
     assert plan.verdict == verdict
     told = [f.message for f in plan.findings if "temperature rate" in f.message]
     assert bool(told) is (verdict != "within limits")
@@ -88,7 +98,9 @@ def test_a_seal_that_bears_no_fast_fall(tmp_path: Path, allowed: str, good: bool
 
 def test_a_bore_that_nobody_stated_gives_no_rate(tmp_path: Path) -> None:
     """Unknown is never within limits."""
-    found = margins(tmp_path, "pressure rate", {WINDOWS: f"{WINDOWS} pressure_rate: up to 200 bar/min,", " bore: 0.15 mm,": ""})
+    found = margins(
+        tmp_path, "pressure rate", {WINDOWS: f"{WINDOWS} pressure_rate: up to 200 bar/min,", " bore: 0.15 mm,": ""}
+    )
     assert found["4.4 W1"].margin is None
 
 
@@ -100,9 +112,14 @@ def test_what_is_not_stated_is_not_judged(tmp_path: Path) -> None:
 
 @pytest.mark.parametrize(
     ("says", "left"),
-    [("material: glass,", None), ("material: sapphire,", "nothing"), ("outside_pressure: not known,", None),
-     ("material: glass, outside_pressure: up to 1.1 bar(a),", 0.287e5), ("outside_pressure: up to 0.5 bar(a),", -0.313e5)],
-)  # fmt: skip
+    [
+        ("material: glass,", None),
+        ("material: sapphire,", "nothing"),
+        ("outside_pressure: not known,", None),
+        ("material: glass, outside_pressure: up to 1.1 bar(a),", 0.287e5),
+        ("outside_pressure: up to 0.5 bar(a),", -0.313e5),
+    ],
+)
 def test_a_vessel_that_holds_less_than_the_room(tmp_path: Path, says: str, left: float | str | None) -> None:
     """At 0.2 bar inside: glass has to say what it bears from outside; 0.2 - (1.013 - 1.1) bar is left, by hand."""
     there = scene(tmp_path, apparatus={WINDOWS: f"{WINDOWS} {says}"})

@@ -11,11 +11,11 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 
 from runbook.answers import LeftAlone, Margin
+from runbook.assess.barred import barred_margins
 from runbook.assess.futures import hottest_body, left_alone
 from runbook.assess.held import held_reach, stuck_margins
 from runbook.assess.limits import closed_extremes, margins, open_extremes, worst_of
 from runbook.assess.rates import rate_margins
-from runbook.assess.release import open_air_margins
 from runbook.assess.scene import Scene
 from runbook.assess.walk import VesselState, Walked, by_source
 from runbook.procedure.model import OpenContainment, WarmTo
@@ -50,8 +50,8 @@ def look(scene: Scene, lines: Sequence[Walked], index: int, with_times: bool, hi
 
 
 def path_margins(scene: Scene, line: Walked, cause: str) -> list[Margin]:
-    """Margins of what the line itself reaches, and of what its fluid may not do in the open."""
-    return [*_reached(scene, line, cause), *open_air_margins(scene, line, cause)]
+    """Margins of what the line itself reaches, and of what its fluid itself bars."""
+    return [*_reached(scene, line, cause), *barred_margins(scene, line, cause)]
 
 
 def _reached(scene: Scene, line: Walked, cause: str) -> list[Margin]:

@@ -16,6 +16,7 @@ from runbook.apparatus.ceiling import ceiling
 from runbook.apparatus.certificates import certificates
 from runbook.apparatus.instruments import permissible_error
 from runbook.apparatus.spaces import joined_spaces
+from runbook.assess.barred import barred_findings
 from runbook.assess.bounds import charge_bounds
 from runbook.assess.evidence.desk import what_instruments_tell
 from runbook.assess.making_safe import making_safe_findings
@@ -25,7 +26,7 @@ from runbook.assess.plan_line import plan_line
 from runbook.assess.scene import Scene, open_scene
 from runbook.assess.single_faults import single_fault_findings
 from runbook.assess.truth import truth_findings
-from runbook.assess.verdict import fluid_findings, line_findings, mend_findings, position, verdict_of
+from runbook.assess.verdict import line_findings, mend_findings, position, verdict_of
 from runbook.assess.walk import VesselState, Walked, outside_tags, start_state, walk
 from runbook.procedure.model import (
     LetDownTo,
@@ -62,7 +63,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
     forbidden = scene.substance.data.hazards.release_forbidden
     found = (
         tuple(Finding(p.rule, p.severity, p.line, p.column, p.message) for p in writing_findings(loaded))
-        + fluid_findings(scene)
+        + barred_findings(scene)
         + line_findings(loaded, walked, plan_lines, dated)
         + truth_findings(scene, walked, places)
         + single_fault_findings(scene, walked, places)

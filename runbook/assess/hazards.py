@@ -7,7 +7,7 @@ down lowers one hazard and raises two.
 from __future__ import annotations
 
 from runbook.answers import Effect, Hazard
-from runbook.assess.release import lets_out
+from runbook.assess.barred import lets_out
 from runbook.assess.scene import Scene
 from runbook.assess.walk import Walked, by_source
 from runbook.procedure.model import CoolTo, DoStep, LetDownTo, Load, OpenContainment, Purge, WarmTo

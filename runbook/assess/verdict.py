@@ -5,9 +5,8 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from runbook.answers import Certificate, Effect, Finding, LineKind, Margin, PlanLine
+from runbook.assess.barred import FORBIDDEN, TOLD_ONCE
 from runbook.assess.mend import Mend
-from runbook.assess.release import FORBIDDEN, IGNITION
-from runbook.assess.scene import Scene
 from runbook.assess.walk import Walked
 from runbook.procedure.document import Place, Route
 from runbook.procedure.reader import Loaded
@@ -43,20 +42,10 @@ def line_findings(
         found += [
             Finding("margin", "error", *at, f"step {line.number}: {margin_sentence(m)}")
             for m in line.ahead
-            if (m.margin is None or m.margin <= 0.0) and m.kind != IGNITION
+            if (m.margin is None or m.margin <= 0.0) and m.kind not in TOLD_ONCE
         ]
         found += _gates(lines, index, at)
     return tuple(found)
-
-
-def fluid_findings(scene: Scene) -> tuple[Finding, ...]:
-    """What forbids the fluid itself, whatever the margins are."""
-    if not scene.substance.data.hazards.flammable:
-        return ()
-    at = scene.loaded.positions.get(("fluid",), (1, 1))
-    name = scene.substance.name
-    said = f"{name} burns: no procedure with it is proved, since ignition and ventilation have no rules here"
-    return (Finding("flammable", "error", *at, said),)
 
 
 def _dated_at(loaded: Loaded, one: Certificate) -> Place:

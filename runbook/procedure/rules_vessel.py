@@ -3,20 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from typing import Final
 
-from runbook.apparatus.ceiling import ceiling
 from runbook.apparatus.model import Apparatus
 from runbook.apparatus.relief import code_tolerance
 from runbook.procedure.lines import Found, acts_of, lines_of, readings_of, texts_of
 from runbook.procedure.model import KeepAt, Procedure, WarmTo
 from runbook.quantities import NotKnown
-
-_PLASTIC_LIMIT: Final = 10e5
-"""Above it carbon dioxide softens acrylic and polycarbonate so far that nothing can be said [Pa, gauge]."""
-_ATMOSPHERE: Final = 101325.0
-"""[Pa]"""
-_CARBON_DIOXIDE: Final = ("carbon dioxide", "co2")
 
 
 def protection(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
@@ -44,23 +36,6 @@ def protection(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
                 f"{device.tag} is said to open within {device.tolerance:.1%}, closer than ASME VIII-1 asks of such "
                 f"a device ({code_tolerance(device):.1%}): use that, or have the source confirm it",
                 "warning",
-            )
-
-
-def plastics(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
-    """Rule 'plastic in carbon dioxide': it softens and foams there, so nothing can be judged."""
-    if procedure.fluid.strip().casefold() not in _CARBON_DIOXIDE:
-        return
-    for part in apparatus.components:
-        if part.material not in ("acrylic", "polycarbonate"):
-            continue
-        top = ceiling(apparatus, [part.space])
-        if top is None or top.level is None or top.level.gauge(_ATMOSPHERE) > _PLASTIC_LIMIT:
-            yield Found(
-                "plastic in carbon dioxide",
-                ("apparatus",),
-                f"cannot be judged: {part.tag} is {part.material}, and nothing keeps carbon dioxide in its space "
-                "below 10 bar(g)",
             )
 
 

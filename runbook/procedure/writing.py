@@ -22,7 +22,7 @@ from runbook.procedure.rules_people import holds, roles
 from runbook.procedure.rules_readings import readings
 from runbook.procedure.rules_tags import unknown_tags
 from runbook.procedure.rules_text import messages, wording
-from runbook.procedure.rules_vessel import heating, plastics, protection
+from runbook.procedure.rules_vessel import heating, protection
 
 Rule = Callable[[Procedure, Apparatus], Iterator[Found]]
 
@@ -37,7 +37,6 @@ RULES: Final[tuple[Rule, ...]] = (
     wording,
     messages,
     protection,
-    plastics,
     heating,
 )
 """Every rule; each may find things under several names."""

@@ -189,19 +189,6 @@ def test_the_shipped_procedure_is_a_real_one(tmp_path: Path) -> None:
     assert any("gas out" in text for text in warned)
 
 
-def test_plastic_that_carries_carbon_dioxide_cannot_be_judged(tmp_path: Path) -> None:
-    """Acrylic and polycarbonate soften in carbon dioxide above 10 bar; below, and in other fluids, they may stay."""
-    for material, wanted in (("acrylic", 1), ("polycarbonate", 1), ("sapphire", 0)):
-        vessel = {"what: two sapphire windows": f"what: two windows, material: {material}"}
-        problems = found(tmp_path, "plastic in carbon dioxide", None, vessel)
-        assert len(problems) == wanted
-        assert all("cannot be judged" in p.message and p.severity == "error" for p in problems)
-    low = {"what: two sapphire windows": "what: two windows, material: acrylic", "bursts_at: 130": "bursts_at: 10"}
-    assert found(tmp_path, "plastic in carbon dioxide", None, low) == []
-    other = {"fluid: carbon dioxide": "fluid: sulfur hexafluoride"}
-    assert found(tmp_path, "plastic in carbon dioxide", other, {"what: body": "what: body, material: acrylic"}) == []
-
-
 def test_relief_that_can_be_shut_off_is_an_error(tmp_path: Path) -> None:
     """Relief behind a valve protects nothing of what is before it."""
     vessel = {"kind: bursting disc, space: cell": "kind: bursting disc, space: low gauge line"}

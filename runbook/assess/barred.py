@@ -1,15 +1,16 @@
-"""What forbids a fluid in the open, whatever the pressures are: a law against letting it out, and that it burns.
+"""What a fluid itself bars, whatever the pressures are: a law against letting it out, fire, and what it softens.
 
-A release that is forbidden is no way of lowering a pressure, and what burns has no rules for ignition and ventilation
-here. Both are margins that are gone, so that check, paper and the gate of a run refuse them alike. What is put out
-of the vessel by a relief device is not judged here: nobody does it.
+A release that is forbidden is no way of lowering a pressure; what burns has no rules for ignition and ventilation
+here; of a part that the fluid softens nothing can be said. All are margins that are gone, so that check, paper and the
+gate of a run refuse them alike. What a relief device lets out is not judged here: nobody does it.
 """
 
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 
-from runbook.answers import Judgement, Margin
+from runbook.answers import Finding, Judgement, Margin
+from runbook.apparatus.ceiling import ceiling
 from runbook.apparatus.model import OUTSIDE
 from runbook.apparatus.spaces import joined_spaces
 from runbook.assess.scene import Scene
@@ -19,8 +20,12 @@ from runbook.quantities import say
 
 FORBIDDEN = "forbidden release"
 """Kind of the margin of a release that the law forbids."""
-IGNITION = "ignition"
-"""Kind of the margin of what burns."""
+IGNITION, SOFTENED = "ignition", "softened material"
+"""Kinds of the margins of what burns, and of parts of which nothing can be said."""
+TOLD_ONCE = (IGNITION, SOFTENED)
+"""Kinds that are the same on every line: check tells them by a finding of their own."""
+_ATMOSPHERE = 101325.0
+"""Only to compare levels with each other [Pa]."""
 
 
 def lets_out(scene: Scene, line: Walked) -> bool:
@@ -42,18 +47,48 @@ def lets_out(scene: Scene, line: Walked) -> bool:
     return False
 
 
-def open_air_margins(scene: Scene, line: Walked, cause: str) -> Iterator[Margin]:
+def barred_margins(scene: Scene, line: Walked, cause: str) -> Iterator[Margin]:
     """Margins that are gone because of the fluid itself; none for most fluids."""
     fluid = scene.substance
     hazards = fluid.data.hazards
-    if hazards.flammable and (line.before.loaded or line.during.loaded):
-        why = f"{fluid.name} burns, and ignition and ventilation have no rules here"
-        yield Margin("room", IGNITION, cause, None, None, None, "m3/m3", Judgement.BLOCKED, None, why=why)
+    if line.before.loaded or line.during.loaded:
+        if hazards.flammable:
+            why = f"{fluid.name} burns, and ignition and ventilation have no rules here"
+            yield Margin("room", IGNITION, cause, None, None, None, "m3/m3", Judgement.BLOCKED, None, why=why)
+        for tag, why in softened(scene):
+            yield Margin(tag, SOFTENED, cause, None, None, None, "Pa", Judgement.BLOCKED, None, why=why)
     if hazards.release_forbidden and lets_out(scene, line):
         kg = max(line.before.high_kg if line.before.loaded else 0.0, line.during.high_kg, _purged(scene, line))
         why = f"up to {say(kg, 'g', 1)} of {fluid.name} could get out to the room, which is forbidden"
         why += f" ({hazards.release_law}): recover it into a closed space of the apparatus"
         yield Margin("room", FORBIDDEN, cause, kg, 0.0, -kg, "kg", Judgement.BLOCKED, None, why=why)
+
+
+def barred_findings(scene: Scene) -> tuple[Finding, ...]:
+    """What is the same on every line, once: at the fluid of the procedure, and at its apparatus."""
+    found = []
+    if scene.substance.data.hazards.flammable:
+        at = scene.loaded.positions.get(("fluid",), (1, 1))
+        said = f"{scene.substance.name} burns: no procedure with it is proved, since ignition and ventilation have no "
+        found.append(Finding("flammable", "error", *at, said + "rules here"))
+    for tag, why in softened(scene):
+        at = scene.loaded.positions.get(("apparatus",), (1, 1))
+        found.append(Finding("softened material", "error", *at, f"{tag} cannot be judged: {why}"))
+    return tuple(found)
+
+
+def softened(scene: Scene) -> Iterator[tuple[str, str]]:
+    """Parts of which nothing can be said, and why: softened above a pressure from which nothing keeps them."""
+    hazards, name = scene.substance.data.hazards, scene.substance.name
+    if hazards.softens_above is None:
+        return
+    for part in scene.apparatus.components:
+        if part.material not in hazards.softens:
+            continue
+        top = ceiling(scene.apparatus, [part.space])
+        if top is None or top.level is None or top.level.gauge(_ATMOSPHERE) > hazards.softens_above:
+            most = say(hazards.softens_above, "bar", 0)
+            yield part.tag, f"it is {part.material}, and nothing keeps {name} in its space below {most}(g)"
 
 
 def _open(scene: Scene, valves: Mapping[str, str]) -> bool:

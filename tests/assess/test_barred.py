@@ -1,4 +1,4 @@
-"""What forbids a fluid in the open: a law against letting it out, fire, and a limit for breathing nobody stated."""
+"""What a fluid itself bars: letting it out, fire, what it softens, and air that nobody stated a limit for."""
 
 from __future__ import annotations
 
@@ -117,6 +117,34 @@ def test_a_refusal_says_the_law(tmp_path: Path) -> None:
     said = margin_words(found, forbidden(found)["4.4"])
     assert "sulfur hexafluoride could get out to the room, which is forbidden (Regulation (EU) 2024/573)" in said
     assert "recover it" in said
+
+
+# -- what it softens --------------------------------------------------------------------------------------
+
+
+@pytest.mark.parametrize("name", ["carbon dioxide", "CO2", "R744"])
+@pytest.mark.parametrize(("material", "wanted"), [("acrylic", 1), ("polycarbonate", 1), ("sapphire", 0)])
+def test_plastic_that_carries_carbon_dioxide_cannot_be_judged(
+    tmp_path: Path, name: str, material: str, wanted: int
+) -> None:
+    """By whatever name it is called; told once, and no step with it in the vessel is entered."""
+    vessel = {"what: two sapphire windows": f"what: two windows, material: {material}"}
+    found = plan(tmp_path, name, None, vessel)
+    said = [f for f in found.findings if f.rule == "softened material"]
+    assert len(said) == wanted
+    assert all("W1 cannot be judged" in f.message and f.severity == "error" for f in said)
+    unknown = {line.number for line in found.lines for m in line.ahead if m.kind == "softened material"}
+    assert bool(unknown) is bool(wanted)
+    if wanted:
+        assert found.verdict == "not proved"
+
+
+def test_plastic_below_its_pressure_and_in_other_fluids(tmp_path: Path) -> None:
+    """A disc that bursts below 10 bar keeps it there; nothing is known against other fluids."""
+    low = {"what: two sapphire windows": "what: two windows, material: acrylic", "bursts_at: 130": "bursts_at: 10"}
+    for fluid, vessel in (("carbon dioxide", low), ("SF6", {"what: body": "what: body, material: acrylic"})):
+        found = plan(tmp_path, fluid, None, vessel)
+        assert not any(f.rule == "softened material" for f in found.findings)
 
 
 # -- fire -------------------------------------------------------------------------------------------------

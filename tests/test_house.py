@@ -43,13 +43,15 @@ def test_a_file_that_cannot_be_read_is_told_without_the_property_library() -> No
 
 
 def test_the_wheel_holds_the_procedures_and_no_tests(tmp_path: Path) -> None:
-    """Every shipped YAML file is package data; nothing of tests/ is."""
+    """Every shipped YAML file is package data, and so is every data file of the packages; nothing of tests/ is."""
     command = [sys.executable, "-m", "pip", "wheel", "--quiet", "--no-deps", "--no-build-isolation"]
     subprocess.run([*command, "--wheel-dir", str(tmp_path), str(ROOT)], check=True, capture_output=True)
     (wheel,) = tmp_path.glob("*.whl")
     names = zipfile.ZipFile(wheel).namelist()
     for file in sorted((ROOT / "procedures").rglob("*.yaml")):
         assert f"runbook/procedures/{file.relative_to(ROOT / 'procedures').as_posix()}" in names
+    for file in sorted((ROOT / "runbook").rglob("*.toml")):
+        assert file.relative_to(ROOT).as_posix() in names
     assert not [n for n in names if n.startswith("tests/")]
 
 

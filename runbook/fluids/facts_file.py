@@ -97,7 +97,7 @@ def _figure(name: str, plain: Any) -> Figure:
     low, high = _FIGURES[name]
     if not low < value <= high:
         raise ValueError(f"{name}: {value:g} does not lie between {low:g} and {high:g}")
-    return Figure(float(value), _text(name, plain["source"]), _one_of(plain["sure"], SURE))
+    return Figure(float(value), _text(f"source of {name}", plain["source"]), _one_of(plain["sure"], SURE))
 
 
 def _fluid(plain: dict[str, Any], figures: dict[str, Figure]) -> FluidData:

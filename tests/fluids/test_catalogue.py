@@ -92,7 +92,7 @@ def test_the_stated_range_lies_within_the_librarys(data: FluidData) -> None:
 
 
 BROKEN = [
-    (XENON, '"J. Phys. B 1 (1968) 449, at the critical point, within 0.1e-6"', '" "', "source of optics.molar_refractivity has to be a text"),
+    (XENON, '"J. Phys. B 1 (1968) 449, at the critical point, within 0.1e-6"', '" "', "source of optics.molar_refr"),
     (XENON, 'sure = "handbook"', 'sure = "quite"', "'quite' is none of published"),
     (XENON, ', sure = "handbook"', "", "heat_of_fusion has to be a table of value, source and sure"),
     (XENON, "value = 1.05e-05", "value = 10.5", "molar_refractivity: 10.5 does not lie between"),

@@ -31,6 +31,8 @@ _SEEPS = 2e-5
 """Share of the charge a second under which it only seeps [1/s]."""
 RELIEF_BORE = 4.0e-3
 """Bore of a relief device, which no apparatus file states: wide enough for what this vessel holds [m]."""
+_PASSED = 1.01
+"""Share of its opening pressure that a step may pass before the device is looked at [1]."""
 _RESEATS = 0.9
 """Share of its opening pressure at which a relief valve shuts again, common practice [1]."""
 
@@ -161,8 +163,7 @@ class Simulation:
                 # Nothing leaves through a leak that nothing drives, and it makes no open vessel.
                 holes = ()
             if not holes:
-                step = min(left, _LEAK_STEP) if self.relief is not None else left
-                vessel = self._closed(vessel, controls, step)
+                vessel, step = self._shut(vessel, controls, left)
             else:
                 vessel, step = self._flowing(vessel, controls, holes, left)
             left -= step
@@ -211,6 +212,17 @@ class Simulation:
         lumps = Lumps(energy, vessel.body_K, vessel.source_K)
         after = advance_lumps(lumps, vessel.mass, isochore, path, controls.room_K, controls.heating, dt)
         return replace(vessel, energy=after.fluid_energy, body_K=after.body_K, source_K=after.source_K)
+
+    def _shut(self, vessel: Vessel, controls: Controls, longest: float) -> tuple[Vessel, float]:
+        """One step [s] of the closed charge; none that passes the opening of a relief device by more than a little."""
+        if self.relief is None:
+            return self._closed(vessel, controls, longest), longest
+        step = min(longest, _LEAK_STEP)
+        after = self._closed(vessel, controls, step)
+        while step > _STEP and self.pressure(after, controls) > _PASSED * self.relief.opens_at:
+            step = max(_STEP, 0.25 * step)
+            after = self._closed(vessel, controls, step)
+        return after, step
 
     def _flowing(
         self, vessel: Vessel, controls: Controls, holes: tuple[Hole, ...], longest: float

@@ -45,6 +45,24 @@ def test_a_whole_run_can_be_typed(tmp_path: Path, capsys: pytest.CaptureFixture[
     assert "Traceback" not in out
 
 
+def test_a_run_with_a_vent_held_by_hand_can_be_typed(tmp_path: Path) -> None:
+    """The triple point from the first line to the record: four closings, each let go again, and proved empty."""
+    path = Path(__file__).parents[2] / "procedures" / "co2-triple-point.yaml"
+
+    async def go() -> int:
+        session, _ = await opened(path, tmp_path / "run.jsonl")
+        try:
+            return await session.go()
+        finally:
+            await session.desk.close()
+
+    assert asyncio.run(go()) == 0
+    account = " ".join(" ".join(record_lines(read(tmp_path / "run.jsonl").records)).split())
+    assert "closed: completed" in account
+    assert account.count("done: Let go of V1") == 4
+    assert "let go at 4.6 bar(g) on PG1 at the latest" in account
+
+
 def test_markup_of_an_author_is_shown_verbatim(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     """Square brackets are text."""
     evil = "Set the laptop [V-3] [/b] [@click=app.quit]x[/] to stay awake"

@@ -6,8 +6,8 @@ while there is liquid. The flow is homogeneous equilibrium. An outlet plugged by
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-from math import pi
+from dataclasses import dataclass, replace
+from math import floor, pi, sqrt
 
 from runbook.charge.nozzle import throat
 from runbook.errors import OutsideValidity
@@ -21,6 +21,12 @@ DISCHARGE = 0.84
 _LIQUID_DRAWN = 0.02
 """Share of the volume under which a low port draws the mixture [1]; without it the flow chatters between the two."""
 _SEVERAL = (Region.LIQUID_VAPOUR, Region.SOLID_VAPOUR, Region.THREE_PHASE)
+_NODE = 0.5
+"""Temperatures between which the flux of two phases is interpolated [K]: within three parts in ten thousand."""
+_TOO_NEAR = 3.0
+"""Nearer to critical than this nothing is interpolated [K]."""
+_LOOK_ANEW = 25
+"""After so many fluxes found beside the last throat the whole range is searched again: it may have jumped."""
 _MOST_A_STEP = 0.01
 """Share of the mass, and of the melting plateau, that one step may move [1]."""
 
@@ -71,6 +77,7 @@ class LetDown:
         self._flash = Flash(substance)
         self._near: float | None = None
         self._fluxes: dict[tuple[Region, bool, float, float], float] = {}
+        self._throats: dict[Region, tuple[float | None, int]] = {}
 
     def state(self, contents: Contents) -> State:
         """Everything at a mass and an energy; on the melting plateau with its fractions. Raises OutsideValidity."""
@@ -89,16 +96,60 @@ class LetDown:
 
     def leaving(self, state: State, hole: Hole, behind: float) -> Leaving:
         """What passes a hole from a state to a pressure behind it [Pa]. Raises OutsideValidity."""
-        enthalpy, entropy = self._drawn(state, hole.port)
-        # Of two phases together the flux hangs on temperature alone, and 5 mK move it by a ten-thousandth.
-        low = hole.port != "top" and (state.liquid or 0.0) > _LIQUID_DRAWN
-        key = (state.region, low, round(state.temperature, 2), behind) if state.region in _SEVERAL else None
-        flux = None if key is None else self._fluxes.get(key)
+        flux = self._between(state, hole.port, behind)
         if flux is None:
-            flux = throat(self._flash, enthalpy, entropy, state.pressure, behind).flux
-            if key is not None:
-                self._fluxes[key] = flux
-        return Leaving(flux * hole.area, enthalpy)
+            flux = self._flux(state, hole.port, behind)
+        return Leaving(flux * hole.area, self._drawn(state, hole.port)[0])
+
+    def _flux(self, state: State, port: str, behind: float) -> float:
+        """[kg/m2/s]"""
+        # Of two phases together the flux hangs on temperature alone, and 5 mK move it by a ten-thousandth.
+        key = None
+        if state.region in _SEVERAL:
+            key = (state.region, self._draws_liquid(state, port), round(state.temperature, 2), behind)
+            if key in self._fluxes:
+                return self._fluxes[key]
+        # The throat's share of the pressure moves little from one moment to the next.
+        share, used = self._throats.get(state.region, (None, 0))
+        near = None if share is None or used >= _LOOK_ANEW else share * state.pressure
+        found = throat(self._flash, *self._drawn(state, port), state.pressure, behind, near)
+        self._throats[state.region] = (found.pressure / state.pressure, 0 if near is None else used + 1)
+        if key is not None:
+            self._fluxes[key] = found.flux
+        return found.flux
+
+    def _between(self, state: State, port: str, behind: float) -> float | None:
+        """The flux [kg/m2/s] from those at two temperatures around; None where that would not be near enough."""
+        fluid, t = self.substance, state.temperature
+        if state.region not in (Region.LIQUID_VAPOUR, Region.SOLID_VAPOUR):
+            return None
+        solid = state.region is Region.SOLID_VAPOUR
+        low = _NODE * floor(t / _NODE)
+        ends = low, low + _NODE
+        inside = fluid.min_temperature, fluid.triple_temperature
+        if not solid:
+            inside = fluid.triple_temperature, fluid.critical_temperature - _TOO_NEAR
+        mixed = not solid and port != "top" and not self._draws_liquid(state, port)
+        if mixed or ends[0] < inside[0] or ends[1] > inside[1]:
+            return None
+        squares = []
+        for end in ends:
+            there = replace(state, temperature=end, pressure=self._over(end, solid))
+            if there.pressure <= behind:
+                return None
+            squares.append(self._flux(there, port, behind) ** 2)
+        # The square: near no pressure difference the flux begins like a root.
+        return sqrt(squares[0] + (t - low) / _NODE * (squares[1] - squares[0]))
+
+    def _over(self, temperature: float, solid: bool) -> float:
+        """Pressure [Pa] over the solid, or the liquid, at a temperature [K]."""
+        frozen = self.substance.solid
+        if solid and frozen is not None:
+            return frozen.sublimation_pressure(temperature)
+        return self.substance.saturation(temperature).pressure
+
+    def _draws_liquid(self, state: State, port: str) -> bool:
+        return port != "top" and (state.liquid or 0.0) > _LIQUID_DRAWN
 
     def advance(self, contents: Contents, hole: Hole, behind: float, heat: float, dt: float) -> Contents:
         """What is left after dt [s] with heat [W] from the wall; until the pressure stands at that behind [Pa].

@@ -6,6 +6,7 @@ constant entropy. For liquid through a short hole it is a lower bound: bubbles c
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from math import sqrt
 
@@ -17,6 +18,10 @@ _CLOSE = 1e-4
 """Relative width of the bracket around the throat's pressure [1]: the flux is flat there."""
 _SCAN = 12
 """Pressures tried first: the flux may have a kink where boiling or freezing begins."""
+_AROUND = 0.03
+"""Relative distance of the two pressures tried beside one that was the throat's a moment ago [1]."""
+_SMOOTH = 1e-5
+"""How far the flux may stand off the parabola through three of its points, relative [1]; else it is looked for anew."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -31,10 +36,13 @@ class Throat:
     """The fluid there."""
 
 
-def throat(flash: Flash, enthalpy: float, entropy: float, pressure: float, behind: float) -> Throat:
+def throat(
+    flash: Flash, enthalpy: float, entropy: float, pressure: float, behind: float, near: float | None = None
+) -> Throat:
     """From rest at an enthalpy [J/kg], entropy [J/kg/K] and pressure [Pa] to a pressure behind the hole [Pa].
 
-    Raises OutsideValidity.
+    near: where the throat of nearly the same flow was [Pa]; spares the search where the flux is smooth there. Raises
+    OutsideValidity.
     """
     if not behind < pressure:
         at = flash.by_enthalpy(pressure, enthalpy)
@@ -48,6 +56,27 @@ def throat(flash: Flash, enthalpy: float, entropy: float, pressure: float, behin
             return Throat(0.0, p, flash.by_enthalpy(pressure, enthalpy))
         return Throat(at.density * sqrt(max(0.0, 2.0 * (enthalpy - at.enthalpy))), p, at)
 
+    found = None if near is None else _around(passing, near, pressure, behind)
+    return found if found is not None else _searched(passing, pressure, behind)
+
+
+def _around(passing: Callable[[float], Throat], near: float, pressure: float, behind: float) -> Throat | None:
+    """The throat beside a pressure [Pa]; None where it has moved away, or the flux is not smooth there."""
+    low, middle, high = (1.0 - _AROUND) * near, near, (1.0 + _AROUND) * near
+    if not behind < low or not high < pressure:
+        return None
+    a, b, c = passing(low), passing(middle), passing(high)
+    if not (a.flux < b.flux and c.flux < b.flux):
+        return None
+    bend = a.flux - 2.0 * b.flux + c.flux
+    slope = 0.5 * (c.flux - a.flux)
+    best = passing(middle - slope / bend * _AROUND * near)
+    foretold = b.flux - 0.5 * slope * slope / bend
+    return best if abs(best.flux - foretold) <= _SMOOTH * foretold else None
+
+
+def _searched(passing: Callable[[float], Throat], pressure: float, behind: float) -> Throat:
+    """The throat anywhere between the two pressures [Pa]."""
     places = [behind + (pressure - behind) * k / _SCAN for k in range(_SCAN)]
     tried = [passing(p) for p in places]
     best = max(range(_SCAN), key=lambda k: tried[k].flux)

@@ -5,6 +5,8 @@ from __future__ import annotations
 import pytest
 
 from runbook.charge.letdown import Contents, Hole, LetDown
+from runbook.charge.nozzle import throat
+from runbook.fluids.flash import Flash
 from runbook.fluids.state import Region, State
 from runbook.fluids.substance import substance
 
@@ -100,3 +102,19 @@ def test_heat_from_dry_ice_to_one_phase() -> None:
     steps = [0.120 * (b - a) for a, b in ((cold, plateau[0]), plateau, (plateau[1], warm))]
     assert steps == [pytest.approx(x, rel=0.01) for x in (4320.0, 23600.0, 27690.0)]
     assert sum(steps) == pytest.approx(55610.0, rel=0.005)
+
+
+@pytest.mark.parametrize("temperature", [291.37, 250.11, 218.9, 205.3])
+def test_a_flux_between_two_temperatures_is_that_of_the_throat(temperature: float) -> None:
+    """What is interpolated between temperatures half a kelvin apart is the throat's own flux within 5e-4."""
+    vessel = LetDown(CO2, VOLUME)
+    state = CO2.state(temperature, 200.0)
+    if state.region is Region.SOLID_VAPOUR:
+        vapour = CO2.vapour_beside_solid(temperature)
+        enthalpy, entropy = vapour.gibbs + temperature * vapour.entropy, vapour.entropy
+    else:
+        both = CO2.saturation(temperature)
+        enthalpy, entropy = both.vapour_energy + both.pressure / both.vapour_density, both.vapour_entropy
+    exact = throat(Flash(CO2), enthalpy, entropy, state.pressure, ATMOSPHERE).flux
+    hole = Hole(1e-3, "top")
+    assert vessel.leaving(state, hole, ATMOSPHERE).flow / hole.area == pytest.approx(exact, rel=5e-4)

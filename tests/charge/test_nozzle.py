@@ -100,3 +100,12 @@ def test_where_an_expansion_ends(temperature: float, vapour: bool, throttled: fl
     assert end.solid == pytest.approx(throttled, abs=0.005)
     assert FLASH.by_entropy(ATMOSPHERE, entropy).solid == pytest.approx(worked, abs=0.005)
     assert end.enthalpy == pytest.approx(enthalpy, abs=1.0)
+
+
+def test_a_throat_looked_for_beside_the_last_one_is_the_same() -> None:
+    """Beside one that was found a moment ago, or beside a wrong guess: the flux of the whole search within 1e-5."""
+    for temperature in (292.0, 260.0, 225.0):
+        before = saturated(temperature, vapour=True)
+        searched = throat(FLASH, *before, ATMOSPHERE)
+        for near in (0.995 * searched.pressure, 1.3 * searched.pressure):
+            assert throat(FLASH, *before, ATMOSPHERE, near).flux == pytest.approx(searched.flux, rel=1e-5)

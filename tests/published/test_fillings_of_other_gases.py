@@ -8,6 +8,7 @@ from __future__ import annotations
 import pytest
 
 from runbook.fluids.substance import substance
+from tests.published.referee import Referee, terms
 
 ATMOSPHERE = 101325.0
 
@@ -57,8 +58,18 @@ def test_triple_points(name: str, kelvin: float) -> None:
     assert substance(name).triple_temperature == pytest.approx(kelvin, abs=allowed)
 
 
-@pytest.mark.independent
+@pytest.mark.wiring
 def test_half_full_at_critical_filling() -> None:
-    """A cell at critical density looks 47.2 % full of liquid at 20 degC: common practice of the lecture bench."""
+    """A cell at critical density looks 47.2 % full of liquid at 20 degC, by the densities of Span and Wagner 1996."""
     fluid = substance("carbon dioxide")
     assert fluid.state(293.15, fluid.critical_density).liquid == pytest.approx(0.472, abs=0.0005)
+
+
+@pytest.mark.independent
+def test_half_full_by_other_authors() -> None:
+    """The same share by the saturated densities of Ely, Magee and Haynes 1987: within 0.001."""
+    fluid = substance("carbon dioxide")
+    both, filling = fluid.saturation(293.15), fluid.critical_density
+    ely = Referee(terms("ely_1987_co2.csv"), 8.31434, 304.13, 10630.0, 0.0440098)
+    _, liquid, vapour = ely.saturation(293.15, both.liquid_density, both.vapour_density)
+    assert fluid.state(293.15, filling).liquid == pytest.approx((filling - vapour) / (liquid - vapour), abs=0.001)

@@ -12,7 +12,7 @@ from runbook.charge.geometry import Shape, ShapeKind
 from runbook.charge.isochore import Isochore
 from runbook.errors import OutsideValidity, RunbookError
 from runbook.fluids.catalogue import fluids
-from runbook.fluids.state import State
+from runbook.fluids.state import Region, State
 from runbook.fluids.substance import substance
 
 NAMES = [data.name for data in fluids()]
@@ -123,3 +123,20 @@ def test_only_our_own_errors(name: str, temperature: float, density: float) -> N
             assert math.isfinite(ask(temperature, density))
         except RunbookError:
             continue
+
+
+@pytest.mark.parametrize("name", NAMES)
+@pytest.mark.parametrize("share", [0.001, 0.05, 0.3, 0.7, 0.95, 0.999])
+def test_regions_change_on_the_saturation_curve(name: str, share: float) -> None:
+    """A charge as dense as one saturated phase has two of them a millikelvin below and one a millikelvin above."""
+    fluid = substance(name)
+    kelvin = fluid.triple_temperature + share * (fluid.critical_temperature - fluid.triple_temperature)
+    both = fluid.saturation(kelvin)
+    for density, alone in ((both.liquid_density, Region.LIQUID), (both.vapour_density, Region.VAPOUR)):
+        if density < 1e-6:
+            # Thinner than a vacuum nothing is computed: propane at its triple point.
+            continue
+        # Cold water grows on cooling: there it is the other way round.
+        below, above = (fluid.region(kelvin + step, density) for step in (-1e-3, 1e-3))
+        turned = alone is Region.LIQUID and fluid.saturation_slopes(kelvin).liquid_density > 0.0
+        assert (below, above) == ((alone, Region.LIQUID_VAPOUR) if turned else (Region.LIQUID_VAPOUR, alone))

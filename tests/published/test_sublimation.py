@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import csv
+from math import exp
 from pathlib import Path
 
 import pytest
@@ -88,3 +89,25 @@ def test_melting_curve(row: dict[str, str]) -> None:
     if kelvin <= 270.0:
         off = (ICE.melting_pressure(kelvin) - pascal) / ICE.melting_slope(kelvin)
         assert abs(off) < 0.15
+
+
+@pytest.mark.independent
+@pytest.mark.parametrize("kelvin", [160.0, 165.0, 170.0, 180.0, 190.0, 194.6855, 200.0, 205.0, 210.0, 216.0])
+def test_where_dry_ice_begins(kelvin: float) -> None:
+    """Span and Wagner 1996, equation 3.12: at its pressure our curve lies within 0.05 K, from 160 K up."""
+    x = 1.0 - kelvin / 216.592
+    exponent = 216.592 / kelvin * (-14.740846 * x + 2.4327015 * x**1.9 - 5.3061778 * x**2.9)
+    theirs = 517950.0 * exp(exponent)
+    found = bracketed_root(lambda t: CO2.pressure(t, SOLID_CHARGE) - theirs, 155.0, 216.592, 1e-6)
+    assert found == pytest.approx(kelvin, abs=0.05)
+
+
+@pytest.mark.independent
+@pytest.mark.parametrize("kelvin", [216.7, 217.0, 218.0, 220.0, 225.0, 230.0, 240.0, 250.0, 260.0, 270.0])
+def test_where_dry_ice_melts_under_pressure(kelvin: float) -> None:
+    """Span and Wagner 1996, equation 3.10: at its pressure our curve lies within 0.15 K, to 270 K."""
+    assert ICE is not None
+    ratio = kelvin / 216.592 - 1.0
+    theirs = 517950.0 * (1.0 + 1955.5390 * ratio + 2055.4593 * ratio**2)
+    slope = ICE.melting_slope(kelvin)
+    assert (theirs - ICE.melting_pressure(kelvin)) / slope == pytest.approx(0.0, abs=0.15)

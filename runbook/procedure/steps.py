@@ -9,7 +9,7 @@ from typing import Annotated, Any, Final, Literal
 
 from pydantic import BaseModel, Discriminator, Field, Tag
 
-from runbook.apparatus.base import FileModel, Name, Text
+from runbook.apparatus.base import FileModel, Name, Positive, Text
 from runbook.procedure.path import Path
 from runbook.procedure.reading import ReadStep
 from runbook.quantities import fields as f
@@ -67,6 +67,9 @@ class DoStep(FileModel):
     warning: StepWarning | None = None
     """Shown before the step, on the same screen. Example: {word: WARNING, hazard: Dry ice at -79 degC, could: burn the
     skin in seconds., avoid: Wear the cryogenic gloves.}"""
+    takes: Annotated[f.TimeField, Positive] | None = None
+    """How long the act itself takes, in a lesson all that is said over it; what the charge takes is computed.
+    Example: 2 min ± 1 min"""
     path: Path | None = None
     """What the step does to the charge: one verb; left out: nothing. Example: {warm_to: 33 degC, by_means_of: H1}"""
     valves: dict[Name, Position] = Field(default_factory=dict)

@@ -10,7 +10,8 @@ from dataclasses import dataclass
 
 from runbook.answers import LineKind, Need, PlanLine
 from runbook.assess.walk import Walked
-from runbook.procedure.model import CoolTo, DoStep, LetDownTo, LetRiseTo, QuickStep, WarmTo
+from runbook.procedure.model import LetRiseTo, QuickStep
+from runbook.rehearsal.arriving import arrived, risen
 from runbook.rehearsal.world import World
 from runbook.run.acts import (
     Act,
@@ -98,21 +99,7 @@ class Operator:
 
     def _arrived(self) -> bool:
         """The path of the line has come to its end, by the instruments."""
-        here = self._lines[self._conductor.ledger.line]
-        verb, step = here.verb, here.step
-        if isinstance(step, DoStep) and step.see is not None and "solid gone" in step.see.show and self._world.ice_seen:
-            return False
-        wall = next((i.tag for i in self._conductor.plan.instruments if i.reads == "temperature"), None)
-        shown = None if wall is None else self._world.read(wall)
-        if isinstance(verb, WarmTo) and shown is not None:
-            aim = self._world.room_K - 1.5 if isinstance(verb.warm_to, str) else verb.warm_to.value
-            return shown >= aim - 0.15
-        if isinstance(verb, CoolTo) and shown is not None:
-            aim = self._world.room_K + 1.5 if isinstance(verb.cool_to, str) else verb.cool_to.value
-            return shown <= aim + 0.15
-        if isinstance(verb, LetDownTo):
-            return self._world.vessel.mass <= 1e-6
-        return True
+        return arrived(self._world, self._conductor.plan, self._lines[self._conductor.ledger.line])
 
     def _due(self, line: PlanLine) -> Act | None:
         """A reading that is asked again and again while the line lasts, shortly before it is overdue."""
@@ -183,11 +170,7 @@ class Operator:
         path = step.quick[item].path if isinstance(step, QuickStep) else None
         if not isinstance(path, LetRiseTo):
             return True
-        shown = self._world.read(path.read_on)
-        if shown is None or shown >= path.let_rise_to.absolute(self._conductor.plan.barometer):
-            return True
-        seen = {"liquid seen": self._world.liquid_seen, "solid gone": not self._world.ice_seen}
-        if path.until is not None and seen[path.until]:
+        if risen(self._world, path, self._conductor.plan.barometer):
             return True
         entry = self._conductor.ledger.entry
         since = entry.quick[-1].at if entry.quick else entry.at

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import pytest
 
+from runbook.fluids.catalogue import FluidData, fluids
 from runbook.fluids.substance import Region, substance
 
 CO2 = substance("carbon dioxide")
@@ -43,3 +44,22 @@ def test_saturation_agrees_with_teqp(t: float) -> None:
     assert both.liquid_density == pytest.approx(liquid * CO2.molar_mass, rel=1e-8)
     assert both.vapour_density == pytest.approx(vapour * CO2.molar_mass, rel=1e-8)
     assert both.pressure == pytest.approx(p, rel=1e-8)
+
+
+@pytest.mark.wiring
+@pytest.mark.parametrize("data", fluids(), ids=lambda data: data.name)
+def test_every_fluid_agrees_with_teqp(data: FluidData) -> None:
+    """Pressure of one phase within 1e-8: names, molar masses and densities are those of the fluid that is meant."""
+    teqp = pytest.importorskip("teqp", reason="teqp has no wheel for this platform")
+    np = pytest.importorskip("numpy")
+    model, one = teqp.build_multifluid_model([data.library_name], teqp.get_datapath()), np.array([1.0])
+    fluid, compared = substance(data.name), 0
+    for t in (share * fluid.critical_temperature for share in (0.8, 0.95, 1.02, 1.3)):
+        for rho in (share * fluid.critical_density for share in (0.01, 0.3, 1.0, 1.6, 1.9)):
+            if t > fluid.max_temperature or fluid.region(t, rho) is Region.LIQUID_VAPOUR:
+                continue
+            molar = rho / fluid.molar_mass
+            p = molar * model.get_R(one) * t * (1.0 + model.get_Ar01(t, molar, one))
+            assert fluid.pressure(t, rho) == pytest.approx(p, rel=1e-8), (t, rho)
+            compared += 1
+    assert compared >= 10

@@ -52,9 +52,8 @@ def barred_margins(scene: Scene, line: Walked, cause: str) -> Iterator[Margin]:
     fluid = scene.substance
     hazards = fluid.data.hazards
     if line.before.loaded or line.during.loaded:
-        if hazards.flammable:
-            why = f"{fluid.name} burns, and ignition and ventilation have no rules here"
-            yield Margin("room", IGNITION, cause, None, None, None, "m3/m3", Judgement.BLOCKED, None, why=why)
+        if fire := _fire(scene):
+            yield Margin("room", IGNITION, cause, None, None, None, "m3/m3", Judgement.BLOCKED, None, why=fire)
         for tag, why in softened(scene):
             yield Margin(tag, SOFTENED, cause, None, None, None, "Pa", Judgement.BLOCKED, None, why=why)
     if hazards.release_forbidden and lets_out(scene, line):
@@ -67,14 +66,22 @@ def barred_margins(scene: Scene, line: Walked, cause: str) -> Iterator[Margin]:
 def barred_findings(scene: Scene) -> tuple[Finding, ...]:
     """What is the same on every line, once: at the fluid of the procedure, and at its apparatus."""
     found = []
-    if scene.substance.data.hazards.flammable:
+    if fire := _fire(scene):
         at = scene.loaded.positions.get(("fluid",), (1, 1))
-        said = f"{scene.substance.name} burns: no procedure with it is proved, since ignition and ventilation have no "
-        found.append(Finding("flammable", "error", *at, said + "rules here"))
+        found.append(Finding("flammable", "error", *at, f"no procedure with it is proved: {fire}"))
     for tag, why in softened(scene):
         at = scene.loaded.positions.get(("apparatus",), (1, 1))
         found.append(Finding("softened material", "error", *at, f"{tag} cannot be judged: {why}"))
     return tuple(found)
+
+
+def _fire(scene: Scene) -> str:
+    """Why nothing can be proved of what burns or feeds a fire; empty for all else."""
+    hazards = scene.substance.data.hazards
+    if not (hazards.flammable or hazards.oxidiser):
+        return ""
+    does = "burns" if hazards.flammable else "feeds a fire"
+    return f"{scene.substance.name} {does}, and ignition and ventilation have no rules here"
 
 
 def softened(scene: Scene) -> Iterator[tuple[str, str]]:

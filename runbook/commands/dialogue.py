@@ -73,6 +73,7 @@ def _first(beside: tuple[str, ...]) -> Form:
 
 def _place(folder: Path, named: str, fluid: str) -> Place:
     """What the vessel and the fluid say before anything is asked."""
+    from runbook.assess.choice.loading import ice
     from runbook.assess.choice.sight import Choice
     from runbook.assess.choice.standard import Wanted, hottest_target
 
@@ -87,7 +88,7 @@ def _place(folder: Path, named: str, fluid: str) -> Place:
         today=iso_date(None),
         charge=f"{best * 1e3:.1f} g ± {choice.half * 1e3:.1f} g",
         released=not choice.fluid.data.hazards.release_forbidden,
-        dry_ice=choice.fluid.name == "carbon dioxide",
+        dry_ice=ice(choice, best) is not None,
         fluid=choice.fluid.name,
     )
 

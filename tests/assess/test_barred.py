@@ -163,6 +163,16 @@ def test_no_step_with_what_burns_is_entered(tmp_path: Path, fluid: str) -> None:
     assert not any(m.kind == "ignition" for line in cold.lines for m in line.ahead)
 
 
+def test_what_feeds_a_fire_is_barred_like_what_burns(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    """An oxidiser asks for rules about oil, dust and cloth that are not there."""
+    data = find("nitrogen")
+    feeds = Substance(replace(data, hazards=replace(data.hazards, oxidiser=True)))
+    monkeypatch.setattr(scene_module, "substance", lambda name: feeds)
+    found = plan(tmp_path, "nitrogen")
+    assert any(f.rule == "flammable" and "feeds a fire" in f.message for f in found.findings)
+    assert any(m.kind == "ignition" and m.margin is None for m in line_of(found, "1.13").ahead)
+
+
 @pytest.mark.parametrize(("fluid", "why"), [("SF6", "which is forbidden"), ("propane", "propane burns")])
 def test_a_run_does_not_go_on_past_it(tmp_path: Path, fluid: str, why: str) -> None:
     """The whole way through the gate: an ideal operator gets as far as loading and no further."""

@@ -5,6 +5,7 @@ from __future__ import annotations
 from runbook.answers import ChargeBounds, Margin
 from runbook.assess.ahead import look
 from runbook.assess.boxes import viewed_shape
+from runbook.assess.room import LOWEST
 from runbook.assess.scene import Scene
 from runbook.assess.walk import Walked, left_closed, walk
 from runbook.errors import RunbookError
@@ -63,7 +64,8 @@ def first_blocked(scene: Scene, high_kg: float) -> Margin | None:
     sealing = sealing_line(lines)
     indices = [sealing] if sealing is not None else [i for i, one in enumerate(lines) if not one.lets_down]
     found = [m for i in indices for m in look(scene, lines, i, with_times=False, high_kg=high_kg).margins]
-    blocked = [m for m in found if m.margin is None or m.margin <= 0.0]
+    # A charge that holds less than the room does so for being too small: it says nothing of the most.
+    blocked = [m for m in found if (m.margin is None or m.margin <= 0.0) and m.kind != LOWEST]
     # Temperatures do not change with the charge: a vessel blocked by them has no most, and check says why.
     return next((m for m in blocked if m.kind == "pressure"), blocked[0] if blocked else None)
 

@@ -20,7 +20,9 @@ if TYPE_CHECKING:
 
 BRITTLE: Final = ("glass", "acrylic", "polycarbonate")
 """Break without warning under a pressure they were not made for, common practice."""
-_LOWEST: Final = "lowest pressure"
+LOWEST: Final = "lowest pressure"
+SLACK: Final = 1e3
+"""Below the room's pressure no part notices it [Pa]: what boils in the open stands at the room's own."""
 COOLANT: Final = "carbon dioxide"
 """What dry ice for cooling becomes."""
 
@@ -61,12 +63,12 @@ def outside_margins(scene: Scene, reach: Extremes, cause: str) -> Iterable[Margi
         if part.space != scene.charge_space:
             continue
         bears = part.outside_pressure
-        unsaid = bears is None and part.material in BRITTLE and lowest < scene.barometer.low_Pa
+        unsaid = bears is None and part.material in BRITTLE and lowest < scene.barometer.low_Pa - SLACK
         if unsaid or isinstance(bears, NotKnown):
             why = f"what {part.tag} bears from outside is not known"
-            yield Margin(part.tag, _LOWEST, cause, lowest, None, None, "Pa", Judgement.BLOCKED, None, why=why)
+            yield Margin(part.tag, LOWEST, cause, lowest, None, None, "Pa", Judgement.BLOCKED, None, why=why)
         elif bears is not None and bears.high is not None:
             allowed = room - bears.high.pascal
             margin = lowest - allowed
             found = judge(margin, NARROW_SHARE * room)
-            yield Margin(part.tag, _LOWEST, cause, lowest, allowed, margin, "Pa", found, None)
+            yield Margin(part.tag, LOWEST, cause, lowest, allowed, margin, "Pa", found, None)

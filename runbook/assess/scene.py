@@ -187,6 +187,14 @@ class Scene:
         return next((i for i in self.apparatus.instruments if i.reads == "temperature"), None)
 
 
+def _stated(loaded: Loaded) -> ChargeBox | None:
+    """What the file says is in a vessel that comes loaded: it counts until readings say more, and proves nothing."""
+    charge = loaded.procedure.charge
+    if isinstance(charge, str) or charge.loaded_as != "already loaded":
+        return None
+    return ChargeBox(charge.mass.low, charge.mass.high, False, ("procedure",))
+
+
 def open_scene(
     loaded: Loaded,
     reading_Pa: float | None,
@@ -199,11 +207,14 @@ def open_scene(
     """A scene at the barometer read [Pa], else at the room's height, else anywhere.
 
     height_m: above sea level [m]; hottest_K: hottest room [K]; None: as the procedure says. cell_closed: it is
-    closed already, with what the record says or, without one, with as much as it can hold. Raises
+    closed already, with what the record says or, without one, with as much as it can hold; a vessel that comes loaded
+    without a record holds what the file states. Raises
     OutsideValidity for an impossible barometer, FileProblems for a fluid that is not known and where a step names
     what the apparatus does not have: no margin can be computed for that.
     """
     _refuse_unbound(loaded)
+    if charge is None and not cell_closed:
+        charge = _stated(loaded)
     stated = loaded.procedure.room.height
     height = height_m if height_m is not None else None if stated is None else stated.value
     air = barometer(reading_Pa, height)

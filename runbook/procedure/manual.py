@@ -58,8 +58,16 @@ def _model(schema: dict[str, Any]) -> list[str]:
     rows = [f"**{said}**\n", "| key | what it means | how it is written |", "|---|---|---|"]
     for key, field in keys.items():
         optional = "" if key in must else " *(may be left out)*"
-        rows.append(f"| `{key}` | {_cell(field.get('description', ''))}{optional} | `{_written(field)}` |")
+        said = _cell(field.get("description", "")) + _words(field)
+        rows.append(f"| `{key}` | {said}{optional} | `{_written(field)}` |")
     return [*rows, ""]
+
+
+def _words(field: dict[str, Any]) -> str:
+    """' One of `a`, `b`.' where only some words may be written; empty elsewhere."""
+    places = [field, *field.get("anyOf", ()), field.get("items", {})]
+    words = [word for place in places for word in place.get("enum", ()) if isinstance(word, str)]
+    return f" One of {', '.join(f'`{word}`' for word in words)}." if len(words) > 1 else ""
 
 
 def _written(field: dict[str, Any]) -> str:

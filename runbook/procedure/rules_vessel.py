@@ -7,13 +7,14 @@ from collections.abc import Iterator
 from runbook.apparatus.model import Apparatus
 from runbook.apparatus.relief import code_tolerance
 from runbook.procedure.lines import Found, acts_of, lines_of, readings_of, texts_of
-from runbook.procedure.model import KeepAt, Procedure, WarmTo
+from runbook.procedure.model import DoStep, KeepAt, Procedure, WarmTo
 from runbook.quantities import NotKnown
 
 
 def protection(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
     """Rules 'protective device unused', 'relief behind a valve' and 'relief tolerance'."""
-    said = " ".join(text for _, text in texts_of(procedure))
+    sights = [step.see.words for step in steps_of(procedure) if step.see is not None and step.see.words is not None]
+    said = " ".join([*(text for _, text in texts_of(procedure)), *sights])
     read = {r.with_ for line in lines_of(procedure) for _, r in readings_of(line)}
     moved = {tag for line in lines_of(procedure) for _, valves, _, _ in acts_of(line) for tag in valves}
     moved |= set(procedure.at_start)
@@ -37,6 +38,11 @@ def protection(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
                 f"a device ({code_tolerance(device):.1%}): use that, or have the source confirm it",
                 "warning",
             )
+
+
+def steps_of(procedure: Procedure) -> Iterator[DoStep]:
+    """Every single act."""
+    return (line.step for line in lines_of(procedure) if isinstance(line.step, DoStep))
 
 
 def heating(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:

@@ -123,7 +123,7 @@ LINES = (
         "",
         who=None,
         quick=(
-            QuickItem("Shut V2 on the falling scale", 60.0, "Open V1 and begin again."),
+            QuickItem("Shut V2 on the falling scale", 60.0, "Open V1 and begin again.", (("V2", "shut"),), True),
             QuickItem("Shut the shield and step back", 30.0, "Open V2."),
         ),
         left_alone=RESTLESS,

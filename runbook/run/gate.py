@@ -11,6 +11,7 @@ from collections.abc import Iterator
 
 from runbook.answers import Answer, Effect, Judgement, LineKind, Margin, Need, Plan, PlanLine
 from runbook.run.clock import Moment
+from runbook.run.questions import UNKNOWN
 from runbook.run.reasons import BLOCKED, NOT_YET, Code, Reason
 from runbook.run.state import Ledger, Taken
 
@@ -130,10 +131,13 @@ def _containment(plan: Plan, ledger: Ledger, now: Moment) -> Iterator[Reason]:
 
 
 def _position_after_leaving(plan: Plan, ledger: Ledger, now: Moment, tag: str) -> str:
-    """Of a valve, once going on has confirmed what the present line does to it, if that line is finished."""
+    """Of a valve, once going on has confirmed what the present line does to it, if that line is finished.
+
+    What the line moves and nobody has stated since is not known: taking it up again confirms nothing.
+    """
     line = ledger.present
     moved = dict(line.valves) if line is not None and not unfinished(plan, ledger, now) else {}
-    return moved.get(tag, ledger.position(tag))
+    return moved.get(tag, UNKNOWN if tag in ledger.entry.unconfirmed else ledger.position(tag))
 
 
 def _needs(plan: Plan, ledger: Ledger, now: Moment, line: PlanLine, answer: Answer | None) -> Iterator[Reason]:

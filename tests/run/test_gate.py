@@ -252,6 +252,19 @@ def test_opening_is_refused_where_leaving_the_line_shuts_the_vent() -> None:
     assert run.codes(GoOn()) == ["vent not open since"]
 
 
+def test_taking_up_an_opening_line_that_moves_the_vent_needs_its_word() -> None:
+    """What the line itself moves is not known when it is taken up again, until somebody has looked."""
+    run = proved_empty(line(2, raises=True, opens_containment=True, valves=(("V2", "open"),)))
+    run.answered()
+    run.must(GoOn())
+    run.put(TurnedBack(run.ledger.line, "margins have been unknown for too long"))
+    run.answered()
+    assert run.codes(TakeUp()) == ["vent not open since"]
+    run.must(SetValve("V2", "open"))
+    run.answered()
+    run.must(TakeUp())
+
+
 def test_closing_voids_the_proofs_of_empty() -> None:
     """Proofs are of what is in the vessel now: a charge closed in later has not been shown to be gone."""
     run = proved_empty(line(2, seals=True), line(3, opens_containment=True))

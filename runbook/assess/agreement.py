@@ -6,7 +6,7 @@ and gauge, not the charge. Agreement that is looser than the margin it is leaned
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from math import hypot
 
 from runbook.answers import Agreement, ChargeBox, Observation
@@ -74,9 +74,12 @@ def agreement(
     margin_left: float | None,
 ) -> Agreement:
     """Compare; margin_left: the smallest pressure margin of the step leaned on [Pa], None where unknown."""
-    if pressure is None or computed is None or box is None:
+    if pressure is None:
         return NO_READING
     read_U = reading_U(scene, pressure)
+    if computed is None or box is None:
+        # Nothing to compare it with; it is shown all the same.
+        return replace(NO_READING, tag=pressure.tag, read=pressure.value, read_U=read_U)
     band = hypot(read_U, computed.U)
     off = abs(pressure.value - computed.pressure)
     if off > band:

@@ -121,6 +121,10 @@ def _assemble(
     middle = None if box is None or not state.closed else 0.5 * (box.low_kg + box.high_kg)
     read = readings.temperature.value if readings.temperature else None
     sights = () if read is None else live_sights(scene, line, state, box, read)
+    highest = _highest_read(scene, readings)
+    if state.letting_down and highest is not None and highest < scene.substance.triple_pressure:
+        # No liquid stays at such a pressure, however warm the wall is.
+        sights = tuple(one for one in sights if one.of not in ("boiling", "snow"))
     # Where a sight has the height already it is not worked out twice.
     height = next((value for one in sights for name, value, _ in one.numbers if name == "height"), None)
     if height is None and middle is not None and read is not None:
@@ -134,7 +138,7 @@ def _assemble(
         proved=bool(box and box.proved),
         hot=state.hot,
         cold=state.cold,
-        pressure=_highest_read(scene, readings),
+        pressure=highest,
         by_hand=held_vent(scene, state) is not None,
     )
     return Answer(

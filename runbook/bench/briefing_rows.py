@@ -88,7 +88,8 @@ def _numbers(plan: Plan, width: int) -> list[Row]:
     restless = [line.number for line in plan.lines if not line.left_alone.at_rest]
     ends = [f.ends_Pa for line in plan.lines for f in line.left_alone.futures if f.ends_Pa is not None]
     highest = f"at most {_pressure(max(ends), plan)}" if ends else "not known"
-    rows += _pair("left alone", f"ends {highest}, heat stuck on included", width)
+    stuck = any(f.cause == "heat stuck on" for line in plan.lines for f in line.left_alone.futures)
+    rows += _pair("left alone", f"ends {highest}" + (", heat stuck on included" if stuck else ""), width)
     words = f"steps {', '.join(restless)}: do not leave the vessel there" if restless else "at rest in every step"
     return rows + _pair("", words, width, "not yet" if restless else "yes")
 

@@ -200,6 +200,17 @@ async def test_a_quick_sequence_of_a_rehearsal_shows_the_simulated_scale() -> No
         assert "BS1 shows 0.11705 kg" in bench.text
 
 
+async def test_once_it_is_closed_a_rehearsal_shows_gauge_and_sight(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Whoever keeps a vent shut by hand has to see the gauge rise and the ice melt."""
+    arm_at_once(monkeypatch)
+    async with running(scenes.plan(scenes.LINES[3:]), pace=FakePace()) as bench:
+        await bench.press("enter", "enter")
+
+        assert isinstance(bench.screen, QuickScreen)
+        assert "PG1 shows 62.6 bar(g)" in bench.text
+        assert "in the vessel: solid 8 % of it" in bench.text
+
+
 async def test_the_clock_of_a_rehearsal_is_turned_in_a_quick_sequence_too(monkeypatch: pytest.MonkeyPatch) -> None:
     """Speed and pause as on the run screen; a jump ends before the latest time of the item that is due, never after."""
     arm_at_once(monkeypatch)

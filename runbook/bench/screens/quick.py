@@ -77,7 +77,7 @@ class QuickScreen(Place[None]):
         if pace is None or self._line is None:
             return []
         done = len(self._desk.ledger.entry.quick)
-        closing = done < len(self._line.quick) and self._line.quick[done].seals
+        closing = not any(item.seals for item in self._line.quick[:done])
         wanted = "mass" if closing else "pressure"
         dials = [one for one in self._desk.plan.instruments if one.reads == wanted]
         shown = [f"{one.tag} shows {dial} {one.unit}" for one in dials if (dial := pace.dial(one.tag)) is not None]

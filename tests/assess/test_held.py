@@ -157,6 +157,35 @@ def test_now_while_a_hand_is_on_it(tmp_path: Path) -> None:
     assert found.left_alone.at_rest
 
 
+def test_a_wall_at_the_room_says_nothing_of_ice_behind_it(tmp_path: Path) -> None:
+    """20 degC read on the tube before it was closed would make 56 bar of what melts in it at -56.6 degC."""
+    here = scene(tmp_path)
+    lines = walk(here)
+    at = held_lines(lines)[1]
+    weighed = Observation("BS1", "mass", 8e-3, 1, "A", False)
+    found = answer(here, lines, ask(at, "closed", weighed, Observation("TT1", "temperature", 293.15, 2, "A", False)))
+    assert found.pressure is None
+    assert found.agreement.verdict == "no reading"
+
+
+def test_how_much_may_be_loaded(tmp_path: Path) -> None:
+    """At least what shows liquid in the window, at most what a hand is quick enough for; planned lies between."""
+    bounds = plan(tmp_path).bounds
+    assert bounds.least_kg is not None
+    assert bounds.most_kg is not None
+    assert 2e-3 < bounds.least_kg < 7.5e-3
+    assert 8.5e-3 < bounds.most_kg < 0.9 * 1178.0 * 49e-6
+    assert bounds.best_kg is None
+
+
+def test_the_pictured_path_ends_where_the_hand_lets_go(tmp_path: Path) -> None:
+    """Nothing of it is left to come to the room: the picture ends below the ceiling."""
+    found = plan(tmp_path)
+    assert found.ceiling is not None
+    assert max(pressure for _, pressure in found.path) < found.ceiling
+    assert max(temperature for temperature, _ in found.path) < 230.0
+
+
 def test_before_it_is_closed_again_the_gauge_has_to_stand_at_zero(tmp_path: Path) -> None:
     """A vent plugged by snow looks open: only the gauge says where the pressure is, and one that shows 3 bar blocks."""
     here = scene(tmp_path)

@@ -163,3 +163,19 @@ def test_how_the_acts_leave_the_vessel_is_what_they_say(phase: Phase) -> None:
         assert any(word in acts for word in ("OUT", "BACK", "AIR IN"))
     else:
         assert "OUT:" not in acts
+
+
+@pytest.mark.parametrize("phase", [Phase.B, Phase.D])
+def test_a_vent_that_springs_open_is_let_go_of(phase: Phase) -> None:
+    """Nobody opens it: taking the hand away is the act."""
+    sprung = replace(WHOLE, let_down_valve="V2", valve_lets_go=(("V2", "opens"),))
+    acts = make_safe(sprung, phase).acts
+    assert any(act.startswith("LET GO of V2") for act in acts)
+    assert not any(act.startswith("OPEN V2") for act in acts)
+
+
+def test_a_vent_that_springs_open_is_never_shut_to_come_to_rest() -> None:
+    """Shut it needs a hand for ever: what was at rest with a valve that stays is not with a spring."""
+    sprung = replace(WHOLE, let_down_valve="V2", valve_lets_go=(("V2", "opens"),))
+    assert make_safe(WHOLE, Phase.G, rest_shut=True).acts[0].startswith("SHUT")
+    assert make_safe(sprung, Phase.G, rest_shut=True).acts[0] == "LEAVE V2 open."

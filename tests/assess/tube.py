@@ -11,7 +11,7 @@ from runbook.procedure.reader import Loaded, read_procedure
 
 SHIPPED = Path(__file__).parents[2] / "procedures"
 PROCEDURE, VESSEL = "co2-triple-point.yaml", "triple-point-tube-50.yaml"
-ISSUED = "2031-03-10"
+ISSUED = "2031-03-02"
 
 
 def tube(folder: Path, procedure: Mapping[str, str] | None = None, vessel: Mapping[str, str] | None = None) -> Loaded:

@@ -18,8 +18,8 @@ if TYPE_CHECKING:
     # The list of faults is read where no physics may be loaded.
     from runbook.rehearsal.vessel import Controls
 
-CLOSED, HEATING, LETTING_DOWN, LOADING = "closed", "heating", "letting down", "loading"
-"""Situations in which a fault may begin."""
+CLOSED, HEATING, WARMING, LETTING_DOWN, LOADING = "closed", "heating", "warming", "letting down", "loading"
+"""Situations in which a fault may begin; a closed vessel that nothing heats but the room is warming too."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,19 +38,19 @@ FAULTS: Final = (
     Fault("over-loaded", "the scale shows 25 g less than there is", LOADING),
     Fault("under-loaded", "the scale shows 25 g more than there is", LOADING),
     Fault("slow leak", "a joint leaks through a hundredth of a millimetre, some 5 g an hour", CLOSED),
-    Fault("gauge stuck", "the high gauge stands still", HEATING),
+    Fault("gauge stuck", "the high gauge stands still", WARMING),
     Fault("gauge offset", "the high gauge shows 3 bar too much", CLOSED),
     Fault("gauge in another unit", "the high gauge was changed for one that shows psi divided by ten", CLOSED),
     Fault("gauge isolated", "the line of the high gauge is plugged and keeps its pressure", CLOSED),
     Fault("thermometer off the wall", "the thermometer hangs half in the air", CLOSED),
     Fault("source stuck on", "the heat stays on up to its cut-out", HEATING),
-    Fault("cooling lost", "the body loses a fifth of what it did to the room", HEATING),
-    Fault("relief early", "the relief device opens at three fifths of its lowest pressure", HEATING),
+    Fault("cooling lost", "the body loses a fifth of what it did to the room", WARMING),
+    Fault("relief early", "the relief device opens at three fifths of its lowest pressure", WARMING),
     Fault("relief never", "the relief device does not open", CLOSED),
     Fault("outlet plugged", "the outlet of the vent is plugged for ten minutes", LETTING_DOWN),
     Fault("second person leaves", "nobody but the performer is there any more", CLOSED),
     Fault("gas alarm", "the gas meter shows 2 % more than before", LETTING_DOWN),
-    Fault("operator away", "the operator is away for half an hour", HEATING),
+    Fault("operator away", "the operator is away for half an hour", WARMING),
     Fault("heater left on", "nothing is computed for five minutes while the heat is on", HEATING),
 )
 """In the order of the list on screen."""

@@ -19,7 +19,7 @@ from runbook.assess.scene import GAS_CONSTANT, Scene
 from runbook.assess.walk import Walked, valves_of
 from runbook.errors import OutsideValidity
 from runbook.procedure.model import CoolTo, DoStep, Load, WarmTo
-from runbook.rehearsal.faults import CLOSED, HEATING, LETTING_DOWN, LOADING, Troubles
+from runbook.rehearsal.faults import CLOSED, HEATING, LETTING_DOWN, LOADING, WARMING, Troubles
 from runbook.rehearsal.instruments import Dials, Shown
 from runbook.rehearsal.vessel import Controls, Relieving, Simulation, Vessel
 from runbook.run.clock import Moment
@@ -119,9 +119,11 @@ class World:
         closed = self.vessel.mass > 0.0 and self._set is not None and not self._set.vent_open
         if closed:
             found.add(CLOSED)
-            # Of a vessel that nothing heats but the room, closing it is what makes it warm.
-            if self._set is not None and (self._set.heating is not False or not self._plan.source_tag):
+            heating = self._set is not None and self._set.heating is not False
+            if heating:
                 found.add(HEATING)
+            if heating or not self._plan.source_tag:
+                found.add(WARMING)
         elif self.vessel.mass > 0.0 and self.pressure() > 5.0e5:
             found.add(LETTING_DOWN)
         return found

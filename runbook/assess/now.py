@@ -120,7 +120,9 @@ def _assemble(
 ) -> Answer:
     middle = None if box is None or not state.closed else 0.5 * (box.low_kg + box.high_kg)
     read = readings.temperature.value if readings.temperature else None
-    sights = () if read is None else live_sights(scene, line, state, box, read)
+    # What melts behind a hand is not as warm as the wall: there the plan's own sights stand.
+    by_hand = line is not None and line.held is not None and line.seals
+    sights = () if read is None or by_hand else live_sights(scene, line, state, box, read)
     highest = _highest_read(scene, readings)
     if state.letting_down and highest is not None and highest < scene.substance.triple_pressure:
         # No liquid stays at such a pressure, however warm the wall is.

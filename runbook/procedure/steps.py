@@ -148,6 +148,8 @@ class QuickStep(FileModel):
     quick: Annotated[tuple[QuickItem, ...], Field(min_length=1)]
     """A few acts on one screen, one key each, judged once, at entry, for all of them. Example: [{do: Shut V2, path:
     seal, valves: {V2: shut}, latest: 20 min, if_not: Begin again.}]"""
+    see: See | None = None
+    """What should be seen while it lasts. Example: {show: [solid, snow]}"""
     read_after: tuple[ReadStep, ...] = ()
     """What is read when the vessel is at rest again. Example: [{what: mass, with: BS1, accept: 115 g to 119 g, if_not:
     Make safe.}]"""

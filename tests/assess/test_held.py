@@ -168,6 +168,16 @@ def test_a_wall_at_the_room_says_nothing_of_ice_behind_it(tmp_path: Path) -> Non
     assert found.agreement.verdict == "no reading"
 
 
+def test_the_class_is_told_what_melts_and_what_freezes(tmp_path: Path) -> None:
+    """The author's words first, then computed: it stands still while it melts, and what is left freezes; the closing
+    that is let go of at 1 bar(g) comes to neither."""
+    found = plan(tmp_path).lines
+    low, high = (found[i] for i in held_lines(walk(scene(tmp_path)))[:2])
+    assert [(s.computed, s.of) for s in high.sights] == [(False, ""), (True, "solid"), (True, "solid")]
+    assert "stand still at -56.6 °C" in high.sights[1].words
+    assert low.sights == ()
+
+
 def test_how_much_may_be_loaded(tmp_path: Path) -> None:
     """At least what shows liquid in the window, at most what a hand is quick enough for; planned lies between."""
     bounds = plan(tmp_path).bounds

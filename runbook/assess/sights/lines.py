@@ -2,13 +2,17 @@
 
 from __future__ import annotations
 
+import contextlib
+
 from runbook.answers import ChargeBox, Sight
+from runbook.assess.course import Held
 from runbook.assess.scene import Scene
-from runbook.assess.sights.frozen import letting_down
+from runbook.assess.sights.frozen import letting_down, melting_sight, melts
 from runbook.assess.sights.looking import Look, computed, written
 from runbook.assess.sights.path import path_sights
 from runbook.assess.walk import VesselState, Walked
-from runbook.procedure.model import CoolTo, DoStep, WarmTo
+from runbook.errors import OutsideValidity
+from runbook.procedure.model import CoolTo, DoStep, QuickStep, WarmTo
 
 _KINDS = {"liquid height": "meniscus"}
 """A name that an author may use -> the kind of the computed sight, where they differ."""
@@ -20,6 +24,8 @@ def line_sights(scene: Scene, line: Walked) -> tuple[tuple[Sight, ...], str]:
     verb, state = line.verb, line.during
     if line.lets_down and line.before.closed:
         return (*said, *letting_down(scene, 0.5 * (scene.room_coldest + scene.room_hottest))), if_not
+    if line.held is not None and line.seals:
+        return (*said, *_held(scene, line.held, state)), if_not
     look = Look(state.low_kg, state.high_kg, state.cold)
     if not isinstance(verb, WarmTo | CoolTo) or not state.closed or not look.known:
         return said, if_not
@@ -45,10 +51,22 @@ def live_sights(
     return tuple(sorted(found, key=lambda sight: sight.of not in wanted))
 
 
+def _held(scene: Scene, held: Held, state: VesselState) -> tuple[Sight, ...]:
+    """While a hand lets it rise: the solid melts, if it comes so far; then what the liquid does with the hand gone."""
+    fluid = scene.substance
+    density = state.high_kg / scene.apparatus.volume.free.value
+    found: list[Sight] = []
+    if held.level.absolute(scene.barometer.low_Pa) > fluid.triple_pressure and melts(scene, density):
+        with contextlib.suppress(OutsideValidity):
+            found.append(melting_sight(scene, density))
+            found += [s for s in letting_down(scene, fluid.triple_temperature) if s.of == "solid"]
+    return tuple(found)
+
+
 def asked_for(line: Walked | None) -> tuple[str, ...]:
     """Sights that the author of a line asks the program to show, by name."""
     step = line.step if line is not None else None
-    return step.see.show if isinstance(step, DoStep) and step.see is not None else ()
+    return step.see.show if isinstance(step, DoStep | QuickStep) and step.see is not None else ()
 
 
 def not_to_come(scene: Scene, line: Walked) -> tuple[tuple[str, ...], tuple[str, ...]]:

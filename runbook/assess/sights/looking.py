@@ -26,7 +26,7 @@ from runbook.assess.sights.surface import (
 from runbook.errors import RunbookError
 from runbook.fluids.optics import turbidity
 from runbook.fluids.state import Region, State
-from runbook.procedure.model import DoStep, Parked, Step
+from runbook.procedure.model import DoStep, Parked, QuickStep, Step
 
 NEAR_CRITICAL = 0.1
 """Within it one sentence is all that is honest [K]."""
@@ -66,9 +66,10 @@ class Look:
 
 def written(step: Step | Parked) -> tuple[tuple[Sight, ...], str]:
     """The author's sights of a step, and what to do if they do not come."""
-    if not isinstance(step, DoStep):
+    if not isinstance(step, DoStep | QuickStep):
         return (), ""
-    if_not = step.if_not or ""
+    # In a quick sequence every act says for itself what to do if it does not come.
+    if_not = step.if_not or "" if isinstance(step, DoStep) else ""
     if step.see is None or step.see.words is None:
         return (), if_not
     return (Sight(step.see.words, False, if_not),), if_not

@@ -21,6 +21,7 @@ from runbook.bench.widgets.lines import Lines
 from runbook.bench.widgets.margins import Margins
 from runbook.run.acts import QuickDone
 from runbook.run.sentences import duration
+from runbook.run.sight_words import seen_now
 from runbook.run.standing import QuickState
 
 if TYPE_CHECKING:
@@ -69,7 +70,10 @@ class QuickScreen(Place[None]):
             else:
                 rows += _present(i + 1, item, item.left_s, width)
         rows += self._simulated(width)
-        return rows + (wrapped(f" {self._said}", width - 1, "blocked") if self._said else [])
+        rows += wrapped(f" {self._said}", width - 1, "blocked") if self._said else []
+        # Last, for it is the first to go where there is no room.
+        first = next(iter(seen_now(self._desk.standing())), None)
+        return rows + ([EMPTY, *wrapped(f" SEE  {first.words}", width - 1)] if first is not None else [])
 
     def _simulated(self, width: int) -> list[Row]:
         """What one looks at with hands on the valve: the scale until the vessel is closed, then gauge and sight."""

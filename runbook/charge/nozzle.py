@@ -20,6 +20,8 @@ _SCAN = 12
 """Pressures tried first: the flux may have a kink where boiling or freezing begins."""
 _AROUND = 0.03
 """Relative distance of the two pressures tried beside one that was the throat's a moment ago [1]."""
+_FOLLOWED = 4
+"""How often a throat that has moved on is followed by that much before it is looked for anew [1]."""
 _SMOOTH = 1e-5
 """How far the flux may stand off the parabola through three of its points, relative [1]; else it is looked for anew."""
 
@@ -62,15 +64,26 @@ def throat(
 
 def _around(passing: Callable[[float], Throat], near: float, pressure: float, behind: float) -> Throat | None:
     """The throat beside a pressure [Pa]; None where it has moved away, or the flux is not smooth there."""
-    low, middle, high = (1.0 - _AROUND) * near, near, (1.0 + _AROUND) * near
-    if not behind < low or not high < pressure:
-        return None
-    a, b, c = passing(low), passing(middle), passing(high)
-    if not (a.flux < b.flux and c.flux < b.flux):
-        return None
-    bend = a.flux - 2.0 * b.flux + c.flux
-    slope = 0.5 * (c.flux - a.flux)
-    best = passing(middle - slope / bend * _AROUND * near)
+    if near <= (1.0 + _AROUND) * behind:
+        # Not choked a moment ago: it still is not where the flux falls from the outlet's own pressure on.
+        here, inside = passing(behind), passing(behind + _AROUND * (pressure - behind))
+        return here if here.flux > inside.flux else None
+    b = passing(near)
+    for _ in range(_FOLLOWED):
+        low, high = (1.0 - _AROUND) * near, (1.0 + _AROUND) * near
+        if not behind < low or not high < pressure:
+            return None
+        a, c = passing(low), passing(high)
+        if a.flux < b.flux and c.flux < b.flux:
+            return _vertex(passing, near, a.flux, b, c.flux)
+        near, b = (low, a) if a.flux > c.flux else (high, c)
+    return None
+
+
+def _vertex(passing: Callable[[float], Throat], near: float, low: float, b: Throat, high: float) -> Throat | None:
+    """The top of the parabola through three fluxes around a pressure [Pa]; None where the flux is no parabola."""
+    bend, slope = low - 2.0 * b.flux + high, 0.5 * (high - low)
+    best = passing(near - slope / bend * _AROUND * near)
     foretold = b.flux - 0.5 * slope * slope / bend
     return best if abs(best.flux - foretold) <= _SMOOTH * foretold else None
 

@@ -31,12 +31,20 @@ def main(argv: list[str]) -> int:
     parser.add_argument("--fault", metavar="NAME[@S]", default="",
                         help="what goes wrong, and seconds after its situation; 'random', or 'list'")  # fmt: skip
     parser.add_argument("--every-fault", action="store_true", help="with --headless: each in turn; 1 if one goes badly")
-    parser.add_argument("--json", action="store_true", help="with --headless: one document, SI")
+    parser.add_argument("--timeline", action="store_true",
+                        help="before it: when each line begins and each sight falls, and whether it fits")  # fmt: skip
+    parser.add_argument("--runs", type=int, default=100, metavar="N", help="with --timeline: lots of tolerances (100)")
+    parser.add_argument("--part", type=int, metavar="N", help="with --timeline: one part of the day alone, from 1")
+    parser.add_argument("--json", action="store_true", help="with --headless or --timeline: one document, SI")
     parser.add_argument("--logbook", metavar="DIR", type=Path, help="where the record goes")
     parser.add_argument("--ascii", action="store_true", help="no braille and no box characters")
     asked = parser.parse_args(argv)
-    if asked.json and not asked.headless:
-        raise InputUnusable("--json goes with --headless")
+    if asked.json and not (asked.headless or asked.timeline):
+        raise InputUnusable("--json goes with --headless or --timeline")
+    if asked.timeline and (asked.headless or asked.plain or asked.fault or asked.every_fault):
+        raise InputUnusable("--timeline comes before a rehearsal: leave out --headless, --plain and faults")
+    if asked.part is not None and not asked.timeline:
+        raise InputUnusable("--part goes with --timeline")
     if asked.every_fault and not asked.headless:
         raise InputUnusable("--every-fault goes with --headless")
     if asked.fault == "list":
@@ -47,6 +55,10 @@ def main(argv: list[str]) -> int:
 
         parse_fault(asked.fault, asked.seed)
     path = find_procedure(asked.file)
+    if asked.timeline:
+        from runbook.commands.timeline import show_timeline
+
+        return show_timeline(path, asked.seed, asked.runs, asked.part, asked.json)
     if asked.every_fault:
         return _every_fault(path, asked.seed, asked.json)
     if asked.headless:

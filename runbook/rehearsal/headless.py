@@ -33,6 +33,8 @@ _NO_PROGRESS: Final = 400
 """Wishes in one line without an event, after which the operator gives up."""
 _FAULT_PATIENCE_S: Final = 8 * 3600.0
 """[s] the operator waits in one line when something may be wrong, before making safe."""
+_BLOCKED_PATIENCE_S: Final = 1800.0
+"""[s] the operator looks for the cause while the next step stays blocked and something may be wrong."""
 _AFTER_S: Final = 12 * 3600.0
 """[s] for which a vessel that was made safe is watched."""
 _START: Final = FakeClock().now()
@@ -126,6 +128,8 @@ class _Run:
     last_reason: Reason | None = None
     entered: int = -2
     since: float = 0.0
+    blocked_since: float | None = None
+    """Since when the next line has been blocked; None: it is not."""
     least_margin: float | None = None
 
     async def go(self) -> Outcome:
@@ -137,7 +141,7 @@ class _Run:
             if self._given_up():
                 if not self._trouble or self.conductor.ledger.safe is not None:
                     return self._outcome("refused")
-                self.since, self.refusals = self.clock.now().boot, 0
+                self.since, self.refusals, self.blocked_since = self.clock.now().boot, 0, None
                 await self._do(MakeSafe(), 0.0)
                 continue
             if self.world.troubles.away(self.clock.now().boot):
@@ -162,7 +166,10 @@ class _Run:
             self.story.refused(self.conductor.ledger, found, self.clock.now(), self._began)
             self.refusals += 1
             self.last_reason = found.reasons[0]
-            self.operator.look_again = isinstance(act, GoOn) and found.kind == "blocked"
+            blocked = isinstance(act, GoOn) and found.kind == "blocked"
+            self.operator.look_again = blocked
+            if blocked and self.blocked_since is None:
+                self.blocked_since = self.clock.now().boot
             await self._wait(wait_s or 20.0)
             return
         self.refusals = 0
@@ -208,10 +215,14 @@ class _Run:
     def _watch_line(self) -> None:
         if self.conductor.ledger.line != self.entered:
             self.entered, self.since, self.refusals = self.conductor.ledger.line, self.clock.now().boot, 0
+            self.blocked_since = None
 
     def _given_up(self) -> bool:
-        patience = _FAULT_PATIENCE_S if self._began is not None else PATIENCE_S
-        return self.refusals > _NO_PROGRESS or self.clock.now().boot - self.since > patience
+        now, began = self.clock.now().boot, self._began is not None
+        patience = _FAULT_PATIENCE_S if began else PATIENCE_S
+        if began and self.blocked_since is not None and now - self.blocked_since > _BLOCKED_PATIENCE_S:
+            return True
+        return self.refusals > _NO_PROGRESS or now - self.since > patience
 
     def _outcome(self, outcome: str) -> Outcome:
         ledger = self.conductor.ledger

@@ -30,6 +30,7 @@ from runbook.run.acts import (
 from runbook.run.conductor import Conductor
 from runbook.run.opening import Participant
 from runbook.run.signing import readings_missing
+from runbook.run.state import Taken
 
 _WATCHING_S = 1.0
 """Between two looks of somebody who keeps a vent shut by hand [s]."""
@@ -46,6 +47,11 @@ class Wish:
     """None: wait."""
     wait_s: float = 0.0
     """How long before looking again [s]."""
+
+
+def _outside(need: Need, shown: float) -> bool:
+    """What a dial shows [SI] lies outside what the author accepts."""
+    return (need.low is not None and shown < need.low) or (need.high is not None and shown > need.high)
 
 
 class Operator:
@@ -127,10 +133,18 @@ class Operator:
             shown = self._world.read(need.tag)
             if shown is None:
                 return Wish(None, 60.0)
-            if (need.low is not None and shown < need.low) or (need.high is not None and shown > need.high):
-                return Wish(None, 60.0)
+            if _outside(need, shown):
+                return self._author_says(need, taken, None) or Wish(None, 60.0)
             return Wish(self._read(need.tag, None))
         return None
+
+    def _author_says(self, need: Need, taken: tuple[Taken, ...], role: str | None) -> Wish | None:
+        """Where the author says to make safe outside the range: it is read so, and done. None: it is waited for."""
+        if not need.if_not.lower().startswith("make safe"):
+            return None
+        if taken and not taken[-1].event.in_range:
+            return Wish(MakeSafe())
+        return Wish(self._read(need.tag, role, blind=role is not None))
 
     def _needed(self) -> Act | None:
         """A reading that the next line leans on and that is missing or old."""
@@ -190,11 +204,11 @@ class Operator:
                 t for t in (*ledger.before, *ledger.here) if t.event.tag == need.tag and t.event.by != signer.name
             ]
             shown = self._world.read(need.tag)
-            outside = shown is not None and (
-                (need.low is not None and shown < need.low) or (need.high is not None and shown > need.high)
-            )
-            if shown is None or outside:
+            if shown is None:
                 return Wish(None, 20.0)
+            if _outside(need, shown):
+                taken = ledger.in_entry(need.tag)
+                return self._author_says(need, taken, line.hold.signed_by) or Wish(None, 20.0)
             own = [t for t in ledger.in_entry(need.tag) if t.event.by == signer.name and t.event.blind]
             if not [t for t in others if t.event.in_range]:
                 return Wish(self._read(need.tag, None))

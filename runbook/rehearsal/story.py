@@ -9,9 +9,9 @@ from dataclasses import dataclass, field
 
 from runbook.answers import Effect, Phase, PlanLine
 from runbook.run.clock import Moment
-from runbook.run.events import Answered, Event, MadeSafe, TurnedBack, WentOn
+from runbook.run.events import Answered, Event, MadeSafe, ReadingTaken, TurnedBack, WentOn
 from runbook.run.ledger import Ledger
-from runbook.run.reasons import Refused
+from runbook.run.reasons import NOT_YET, Code, Reason, Refused
 from runbook.run.safe import make_safe
 from runbook.run.sentences import reason_words
 
@@ -29,6 +29,8 @@ class Story:
     wrong: list[str] = field(default_factory=list)
     """What should not have happened, in words."""
     _disagrees: bool = False
+    _make_safe_by: str = ""
+    """Instrument whose last reading calls for make safe, by the author's own word."""
 
     def refused(self, ledger: Ledger, refused: Refused, now: Moment, began: float | None) -> None:
         """A wish that was refused."""
@@ -48,10 +50,37 @@ class Story:
             self._notice(now, began, event.why)
         elif isinstance(event, MadeSafe):
             self._made_safe(before, event, now)
+        elif isinstance(event, ReadingTaken):
+            if event.tag == self._make_safe_by:
+                self._make_safe_by = ""
+            if not event.in_range:
+                self._outside(before, event, now, began)
         elif isinstance(event, WentOn) and before.plan is not None:
-            line = before.plan.lines[event.to]
-            if self._disagrees and _raises(line):
-                self.wrong.append(f"went on into step {line.number}, which raises, while gauge and model disagreed")
+            self._went_on(before, before.plan.lines[event.to])
+
+    def _went_on(self, before: Ledger, line: PlanLine) -> None:
+        """Into a line that raises, against what had been read or without what it leans on."""
+        if not _raises(line):
+            return
+        said = f"went on into step {line.number}, which raises,"
+        if self._disagrees:
+            self.wrong.append(f"{said} while gauge and model disagreed")
+        if self._make_safe_by:
+            self.wrong.append(f"{said} though {self._make_safe_by} had been read where the author says to make safe")
+        missing = [need.tag for need in line.entry_needs if before.reading(need.tag) is None]
+        if missing:
+            self.wrong.append(f"{said} without a reading of {' and '.join(missing)}")
+
+    def _outside(self, before: Ledger, event: ReadingTaken, now: Moment, began: float | None) -> None:
+        """A reading outside what the author accepts, where the author's word for that is make safe."""
+        line = before.present
+        held = line.hold.read if line is not None and line.hold is not None else None
+        asked = (held,) if line is None else (*line.reads, *line.read_after, held)
+        need = next((n for n in asked if n is not None and n.tag == event.tag), None)
+        if need is not None and need.if_not.lower().startswith("make safe") and before.plan is not None:
+            self._make_safe_by = event.tag
+            said = Reason(NOT_YET, Code.READING_OUTSIDE, tag=event.tag, need=need, value=event.value)
+            self._notice(now, began, reason_words(before.plan, before, said))
 
     def _made_safe(self, before: Ledger, event: MadeSafe, now: Moment) -> None:
         if self.acted_s is None:

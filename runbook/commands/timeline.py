@@ -89,6 +89,8 @@ def _lines(
         f"  An act that says no `takes` counts {ACT_S:.0f} s, a reading {READ_S:.0f} s, a signature {SIGN_S:.0f} s, "
         f"a slow crew {SLOW:g} times as much."
     )
+    if plan.verdict != "within limits":
+        yield f"  The procedure is {plan.verdict}: `runbook check` says why. Nothing here permits a step of it."
     for one in parts:
         yield ""
         yield from _part(one, warm[one.index])

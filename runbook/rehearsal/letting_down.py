@@ -78,34 +78,61 @@ class LetDownPlan:
 
 
 def let_down_plan(scene: Scene, plan: Plan, parts: Sequence[int]) -> LetDownPlan | None:
-    """Of the first step of some parts, from 0, that lets down; None where none does, or the fluid must not be."""
+    """Of the first step of some parts, from 0, that lets down; None where none does, or the fluid must not be.
+
+    Raises OutsideValidity.
+    """
     at = middle(scene, plan)
-    index = next((i for i, w in enumerate(at.lines) if isinstance(w.verb, LetDownTo) and w.part in parts), None)
-    if index is None or plan.release_forbidden:
+    step = _step(at, parts)
+    if step is None or plan.release_forbidden:
         return None
-    verb = at.lines[index].verb
-    assert isinstance(verb, LetDownTo), "it was looked for"
-    valve = next((v for v in scene.apparatus.valves if v.tag == verb.through), None)
-    if valve is None or not at.lines[index].before.closed:
-        return None
-    pause = None if verb.pause_above is None else verb.pause_above.absolute(plan.barometer)
-    stated = valve.bore is not None
-    bores = NO_BORE if valve.bore is None else tuple(share * valve.bore.value for share in OPENINGS)
-    bounds = None
-    if valve.bore is not None:
-        lots = (corner(scene, plan, most=True), corner(scene, plan, most=False))
-        bounds = tuple(_down(lot, index, valve, valve.bore.value, pause) for lot in lots)
+    bore = step.valve.bore
+    bores = NO_BORE if bore is None else tuple(share * bore.value for share in OPENINGS)
     share, limit = _in_air(scene)
     return LetDownPlan(
-        number=at.lines[index].number,
-        valve=valve.tag,
-        pause_Pa=pause,
-        bore_stated=stated,
-        ways=tuple(_down(at, index, valve, bore, pause) for bore in bores),
-        bounds=None if bounds is None else (bounds[0], bounds[1]),
+        number=at.lines[step.index].number,
+        valve=step.valve.tag,
+        pause_Pa=step.pause_Pa,
+        bore_stated=bore is not None,
+        ways=tuple(_down(at, step, wide) for wide in bores),
+        bounds=None
+        if bore is None
+        else (
+            _down(corner(scene, plan, most=True), step, bore.value),
+            _down(corner(scene, plan, most=False), step, bore.value),
+        ),
         share=share,
         limit=limit,
     )
+
+
+def downward(lot: Lot, parts: Sequence[int]) -> Downward | None:
+    """One lot let down through the valve's own bore; None where nothing is let down or nobody knows it.
+
+    Raises OutsideValidity.
+    """
+    step = _step(lot, parts)
+    return None if step is None or step.valve.bore is None else _down(lot, step, step.valve.bore.value)
+
+
+@dataclass(frozen=True, slots=True)
+class _Step:
+    """A step that lets down."""
+
+    index: int
+    valve: Valve
+    pause_Pa: float | None
+
+
+def _step(lot: Lot, parts: Sequence[int]) -> _Step | None:
+    """The first of some parts, from a closed vessel."""
+    for index, line in enumerate(lot.lines):
+        verb = line.verb
+        if isinstance(verb, LetDownTo) and line.part in parts and line.before.closed:
+            valve = next((v for v in lot.scene.apparatus.valves if v.tag == verb.through), None)
+            pause = None if verb.pause_above is None else verb.pause_above.absolute(lot.plan.barometer)
+            return None if valve is None else _Step(index, valve, pause)
+    return None
 
 
 def _in_air(scene: Scene) -> tuple[float | None, float | None]:
@@ -116,7 +143,8 @@ def _in_air(scene: Scene) -> tuple[float | None, float | None]:
     return (None, None) if found is None else (found.worst, found.allowed)
 
 
-def _down(lot: Lot, index: int, valve: Valve, bore: float, pause: float | None) -> Downward:
+def _down(lot: Lot, step: _Step, bore: float) -> Downward:
+    index, valve, pause = step.index, step.valve, step.pause_Pa
     lesson = Lesson(_bored(lot, valve.tag, bore), lot.lines[index].part)
     world, barometer = lesson.world, lot.plan.barometer
     began, pauses, coldest, most, gone = lesson.clock, 0, world.temperature(), 0.0, None

@@ -6,6 +6,7 @@ Fresh processes, never forked ones: the property library holds locks. For comman
 from __future__ import annotations
 
 import os
+import signal
 from collections.abc import Callable
 from concurrent.futures import ProcessPoolExecutor
 from multiprocessing import get_context
@@ -33,13 +34,21 @@ def all_lots(asked: Asked, given: tuple[Lot, ...], told: Callable[[int], None]) 
             told(len(found))
         return found
     with ProcessPoolExecutor(workers, get_context("spawn"), _begin, (asked,)) as pool:
-        for runs in pool.map(_one, range(len(given))):
-            found.append(runs)
-            told(len(found))
+        waiting = [pool.submit(_one, index) for index in range(len(given))]
+        try:
+            for one in waiting:
+                found.append(one.result())
+                told(len(found))
+        except BaseException:
+            # Somebody who stops it does not wait for the lots that nobody has begun.
+            pool.shutdown(cancel_futures=True)
+            raise
     return found
 
 
 def _begin(asked: Asked) -> None:
+    # Only the one in front hears the keyboard; it ends the others.
+    signal.signal(signal.SIGINT, signal.SIG_IGN)
     _here.append((opened(asked)[2], asked.parts))
 
 

@@ -6,6 +6,7 @@ refused by them.
 
 from __future__ import annotations
 
+import contextlib
 from collections import Counter
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
@@ -16,6 +17,7 @@ from typing import Final
 from runbook.answers import Plan
 from runbook.assess.bind import plan_of
 from runbook.assess.scene import Scene, open_scene
+from runbook.errors import OutsideValidity
 from runbook.procedure.reader import read_procedure
 from runbook.rehearsal.lesson import Lesson
 from runbook.rehearsal.lots import Lot, lots
@@ -112,14 +114,14 @@ def one_lot(lot: Lot, wanted: Sequence[int]) -> tuple[PartRun, ...]:
     """The wanted parts of one lot, each from where the one before it leaves the vessel.
 
     A part that finds the vessel closed can begin by itself, at rest in the room; so does one after a part that never
-    ends. What needs a part before it that never ended is left out.
+    ends. What needs a part before it that never ended is left out, and so is what begins beyond the models.
     """
     found: list[PartRun] = []
-    first = _start(lot, min(wanted))
-    lesson: Lesson | None = Lesson(lot, first)
-    for part in range(first, max(wanted) + 1):
+    lesson: Lesson | None = None
+    for part in range(_start(lot, min(wanted)), max(wanted) + 1):
         if lesson is None and _by_itself(lot, part):
-            lesson = Lesson(lot, part)
+            with contextlib.suppress(OutsideValidity):
+                lesson = Lesson(lot, part)
         if lesson is None:
             continue
         run = lesson.go(part)

@@ -13,6 +13,7 @@ from typing import Final
 
 from runbook.answers import Plan
 from runbook.assess.walk import by_source
+from runbook.errors import OutsideValidity
 from runbook.procedure.model import WarmTo
 from runbook.rehearsal.lesson import Lesson
 from runbook.rehearsal.lots import Lot
@@ -77,5 +78,8 @@ def _fits(lot: Lot, part: PartTimes, start_K: float | None, source_K: float | No
     # Nobody cools a vessel down to the temperature that it is to be warmed to.
     vessel = None if start_K is None else max(start_K, lot.room_K)
     source = None if source_K is None else max(source_K, lot.room_K)
-    ends = Lesson(lot, part.index, vessel, source).go(part.index).ends_s
+    try:
+        ends = Lesson(lot, part.index, vessel, source).go(part.index).ends_s
+    except OutsideValidity:
+        return False
     return ends is not None and part.declared_s is not None and ends <= part.declared_s

@@ -1,7 +1,8 @@
 """The clock and the dials of a rehearsal on the screens; the vessel itself is simulated in another process.
 
 Dials are what the process last said they show. Where it is gone they show nothing, which is what a person at a
-vessel sees when the gauge has gone blind: the interlock then does its work, and nothing here makes up a value.
+vessel sees when the gauge has gone blind: the interlock then does its work, and nothing here makes up a value. A new
+process is told everything that was done and when, and comes to the same vessel.
 """
 
 from __future__ import annotations
@@ -24,6 +25,10 @@ SPEEDS: Final = (1.0, 2.0, 5.0, 10.0, 20.0, 60.0, 120.0, 300.0, 600.0)
 """[1] steps of the speed keys."""
 _DEADLINE_S: Final = 10.0
 """[s] for one look."""
+_OPENING_S: Final = 30.0
+"""[s] to begin, and for each thing that a new process is told of what has happened."""
+_TRIES: Final = 3
+"""Times a lost vessel is brought back before its dials stay dark."""
 CHILD: Final = ("-m", "runbook.rehearsal.child")
 
 
@@ -37,6 +42,11 @@ def typed_value(value: float, one: Instrument, plan: Plan) -> str:
     return text.lstrip("-") if float(text) == 0.0 else text
 
 
+def _facts(asked: dict[str, Any]) -> dict[str, Any]:
+    """What a look tells besides the moment."""
+    return {key: value for key, value in asked.items() if key != "boot"}
+
+
 class Simulated:
     """Implements Pace."""
 
@@ -48,6 +58,12 @@ class Simulated:
         self._shown: dict[str, float] = {}
         self.seen = ""
         """What stands in the simulated vessel, for whoever looks into it; empty: nothing, or nobody can say."""
+        self._opening: dict[str, Any] | None = None
+        """What the simulated vessel was begun with; None: there is none."""
+        self._told: list[dict[str, Any]] = []
+        """Looks that told it of something new: a lost vessel is brought back by telling all of it once more."""
+        self._losses = 0
+        """Times it was lost since it last showed a value."""
         self._process: asyncio.subprocess.Process | None = None
         self._looking: asyncio.Task[None] | None = None
 
@@ -56,6 +72,13 @@ class Simulated:
     async def open(self, request: BindRequest, plan: Plan, seed: int, fault: str = "") -> None:
         """Start the simulated vessel, with a fault by name; where that fails the dials stay dark."""
         self._plan = plan
+        self._opening = {
+            "request": to_plain(request), "seed": seed, "boot": self.clock.now().boot, "fault": fault,
+        }  # fmt: skip
+        await self._start()
+        self._looking = asyncio.ensure_future(self._exchange(self._opening, _OPENING_S))
+
+    async def _start(self) -> None:
         try:
             self._process = await asyncio.create_subprocess_exec(
                 sys.executable,
@@ -66,9 +89,17 @@ class Simulated:
                 start_new_session=True,
             )
         except OSError:
-            return
-        asked = {"request": to_plain(request), "seed": seed, "boot": self.clock.now().boot, "fault": fault}
-        self._looking = asyncio.ensure_future(self._exchange(asked, 30.0))
+            self._process = None
+
+    async def _look(self, asked: dict[str, Any]) -> None:
+        """One look; where the process was lost, another one is told everything that has happened first."""
+        if self._process is None and self._opening is not None and self._losses < _TRIES:
+            await self._start()
+            for told in (self._opening, *self._told):
+                await self._exchange(told, _OPENING_S)
+        await self._exchange(asked)
+        if not self._told or _facts(asked) != _facts(self._told[-1]):
+            self._told.append(asked)
 
     async def close(self) -> None:
         """End it and read its pipe to the end."""
@@ -96,10 +127,12 @@ class Simulated:
             await process.stdin.drain()
             reply = json.loads(await asyncio.wait_for(process.stdout.readline(), deadline))
             self._shown = dict(reply.get("shown", {}))
+            self._losses = 0 if self._shown else self._losses
             self.seen = str(reply.get("seen", ""))
         except (OSError, ValueError, TimeoutError):
             self._shown, self.seen = {}, ""
             self._process = None
+            self._losses += 1
             with contextlib.suppress(ProcessLookupError):
                 process.kill()
             process.stdin.close()
@@ -143,7 +176,7 @@ class Simulated:
             "valves": [(tag, said.position) for tag, said in ledger.stated.items()],
             "tags": [one.tag for one in self._plan.instruments],
         }
-        self._looking = asyncio.ensure_future(self._exchange(asked))
+        self._looking = asyncio.ensure_future(self._look(asked))
 
     async def looked(self) -> None:
         """Wait for the look under way."""

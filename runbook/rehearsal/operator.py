@@ -34,6 +34,8 @@ from runbook.run.state import Taken
 
 _WATCHING_S = 1.0
 """Between two looks of somebody who keeps a vent shut by hand [s]."""
+_MOMENT_S = 5.0
+"""Between the last act of a quick sequence and the reading after it [s]."""
 _AGAIN_S = 60.0
 """After which a reading that has not changed is taken again where the next line is blocked [s]."""
 PROOFS = ("vent", "wall", "low gauge", "left open")
@@ -176,6 +178,10 @@ class Operator:
             if line.quick[done].seals and shown is not None and shown > 0.5 * (low + high):
                 return Wish(None, 5.0)
             return Wish(QuickDone(done)) if self._risen(line, done) else Wish(None, _WATCHING_S)
+        last = self._conductor.ledger.entry.quick[-1].at
+        if line.read_after and self._conductor.clock.now().age(last) < _MOMENT_S:
+            # What was done last has to have happened before it is read.
+            return Wish(None, _MOMENT_S)
         return self._asked(line.read_after)
 
     def _risen(self, line: PlanLine, item: int) -> bool:

@@ -8,7 +8,10 @@ from pathlib import Path
 
 import pytest
 
+from runbook.answers import Answer, Question, Unanswered
 from runbook.commands.rehearse import main
+from runbook.rehearsal import headless
+from runbook.rehearsal.failing import FailingEngine
 from runbook.rehearsal.headless import rehearse
 from runbook.run.journal import Journal, JournalWriter, read, verify
 from tests.assess.scenes import changed_files
@@ -95,3 +98,33 @@ def test_180_g_is_refused_by_the_acceptance_range_of_the_hold(tmp_path: Path) ->
     found = asyncio.run(rehearse(path, 3))
     assert found.outcome == "refused"
     assert found.highest_pressure < 2e5
+
+
+def _journal(path: Path, folder: Path, name: str, engine: type[FailingEngine], monkeypatch: pytest.MonkeyPatch) -> Path:
+    monkeypatch.setattr(headless, "FailingEngine", engine)
+    journal = folder / name
+    asyncio.run(rehearse(path, 3, JournalWriter(Journal.create(journal))))
+    return journal
+
+
+def test_a_seed_gives_the_same_bytes_and_a_lost_process_one_line_more(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """Two journals of a seed are identical; one in which the computing process was lost once says so in one line."""
+
+    class Lost(FailingEngine):
+        asked = 0
+
+        async def ask(self, question: Question) -> Answer | Unanswered:
+            self.asked += 1
+            if self.asked == 30:
+                return Unanswered(question.key, "the process was lost")
+            return await super().ask(question)
+
+    path = Path(__file__).parents[2] / "procedures" / "co2-triple-point.yaml"
+    first, again = (_journal(path, tmp_path, name, FailingEngine, monkeypatch) for name in ("a.jsonl", "b.jsonl"))
+    assert first.read_bytes() == again.read_bytes()
+    lost = [record.kind for record in read(_journal(path, tmp_path, "c.jsonl", Lost, monkeypatch)).records]
+    whole = [record.kind for record in read(first).records]
+    where = lost.index("NoAnswer")
+    assert lost[:where] + lost[where + 1 :] == whole

@@ -166,6 +166,8 @@ class BenchApp(App[int]):
             return
         if self.pace is not None:
             self.pace.follow(self.desk.ledger)
+            for name, words in self.pace.news():
+                await self.desk.fault_began(name, words)
         await self.desk.tick()
         self.paint()
         self._ring()

@@ -16,13 +16,14 @@ from runbook.run.sight_words import along
 _INDENT: Final = 22
 
 
-def briefing_rows(plan: Plan, request: BindRequest, width: int) -> list[Row]:
-    """Everything a person is told before the run."""
+def briefing_rows(plan: Plan, request: BindRequest, width: int, wrong: str = "") -> list[Row]:
+    """Everything a person is told before the run; wrong: what goes wrong on purpose in a rehearsal."""
     return [
         EMPTY,
         *_verdict(plan, width),
         EMPTY,
         *_day(plan, request, width),
+        *(_pair("goes wrong", wrong, width, "strong", "F") if wrong else ()),
         EMPTY,
         *_numbers(plan, width),
         EMPTY,

@@ -21,6 +21,7 @@ from runbook.bench.screens.setup import SetUpScreen
 from runbook.bench.simulated import Simulated
 from runbook.errors import ExitCode
 from runbook.procedure.reader import read_procedure
+from runbook.rehearsal.failing import FailingEngine
 from runbook.run.acts import Note
 from runbook.run.clock import Clock, ScaledClock
 from runbook.run.conductor import Conductor
@@ -73,11 +74,13 @@ class Course:
         on = str(known.procedure.issue.date) if rehearsal else self.on
         held, said = (None, "") if rehearsal else self._held(known.apparatus.tag)
         request = BindRequest(entry.path, on, charge=held, cell_closed=held is not None)
-        briefed = await app.push_screen_wait(BriefingScreen(self.engine.bind, request, held, rehearsal, said))
+        briefing = BriefingScreen(self.engine.bind, request, held, rehearsal, said, self.fault)
+        briefed = await app.push_screen_wait(briefing)
         if briefed is None:
             app.rehearsal_mark = ""
             return None
         bound, request = briefed
+        self.fault = briefing.fault
         who = played(bound.plan.roles) if rehearsal else await self._people(app, bound)
         if who is None or not (rehearsal or await app.push_screen_wait(_set_up(bound, request))):
             return None
@@ -101,14 +104,18 @@ class Course:
     ) -> Conductor:
         clock = ScaledClock(self.clock) if rehearsal else self.clock
         path = self.logbook.new_run_path(bound.plan.vessel, clock.now(), rehearsal)
-        desk = Conductor(JournalWriter(Journal.create(path)), clock, self.engine)
-        await desk.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal))
+        opened = run_opened(bound, people(who, bound.plan.roles), request, rehearsal)
+        journal = JournalWriter(Journal.create(path))
         if isinstance(clock, ScaledClock):
             # The first person is who sits here; all others are played.
             pace = Simulated(clock, who[1:])
+            desk = Conductor(journal, clock, FailingEngine(self.engine, lambda: pace.lost))
+            await desk.open(opened)
             await pace.open(request, bound.plan, self.seed, self.fault)
             app.take(desk, pace)
         else:
+            desk = Conductor(journal, clock, self.engine)
+            await desk.open(opened)
             app.take(desk)
             await desk.act(Note("Set-up check confirmed point by point.", performer(desk.ledger)))
         return desk

@@ -46,5 +46,13 @@ class Pace(Protocol):
         ...
 
     def played(self, name: str) -> str | None:
-        """The signing number of a person the rehearsal plays; None: a real one."""
+        """The signing number of a person the rehearsal plays; None: a real one, or one who has left."""
+        ...
+
+    def trouble(self, fault: str) -> None:
+        """Let one more thing go wrong, as --fault names it. Raises InputUnusable."""
+        ...
+
+    def news(self) -> list[tuple[str, str]]:
+        """Name and words of faults that have begun since somebody last asked."""
         ...

@@ -13,6 +13,7 @@ from runbook.bench.pacing import PACE_KEYS, turn_clock
 from runbook.bench.people import holder
 from runbook.bench.place import Place
 from runbook.bench.rows import Row, wrapped
+from runbook.bench.screens.faults import FaultScreen
 from runbook.bench.screens.hold import HoldScreen
 from runbook.bench.screens.note import NotePanel
 from runbook.bench.screens.pages import KeysScreen, PicturesScreen
@@ -42,6 +43,7 @@ class RunPlace(Place[None]):
         Binding("f8", "state", show=False),
         Binding("escape", "app.quit", show=False),
         Binding("space", "quiet", show=False),
+        Binding("f", "fault", show=False),
         *PACE_KEYS,
     ]
 
@@ -115,6 +117,17 @@ class RunPlace(Place[None]):
         """The clock of a rehearsal."""
         if said := turn_clock(self.bench, self.desk, what):
             self.bench.say(said)
+
+    def action_fault(self) -> None:
+        """One more thing that goes wrong on purpose; at the vessel the key does nothing."""
+        pace = self.bench.pace
+
+        def chosen(fault: str | None) -> None:
+            if pace is not None and fault:
+                pace.trouble(fault)
+
+        if pace is not None:
+            self.app.push_screen(FaultScreen(), chosen)
 
     def action_quiet(self) -> None:
         """The bell has been heard."""

@@ -10,16 +10,16 @@ from __future__ import annotations
 import asyncio
 import contextlib
 import json
-import math
 import sys
 from typing import Any, Final
 
-from runbook.answers import BindRequest, Instrument, Plan
+from runbook.answers import BindRequest, Plan
 from runbook.codec import to_plain
-from runbook.quantities import pressure_to_unit, to_unit, unit
+from runbook.rehearsal.faults import AWAY, AWAY_S, settled_fault
 from runbook.run.clock import ScaledClock
 from runbook.run.opening import Participant
 from runbook.run.state import Ledger
+from runbook.run.typed import typed_value
 
 SPEEDS: Final = (1.0, 2.0, 5.0, 10.0, 20.0, 60.0, 120.0, 300.0, 600.0)
 """[1] steps of the speed keys."""
@@ -30,16 +30,6 @@ _OPENING_S: Final = 30.0
 _TRIES: Final = 3
 """Times a lost vessel is brought back before its dials stay dark."""
 CHILD: Final = ("-m", "runbook.rehearsal.child")
-
-
-def typed_value(value: float, one: Instrument, plan: Plan) -> str:
-    """A value [SI] as a person types it from that dial, to its resolution."""
-    pressure = one.reads == "pressure"
-    shown = pressure_to_unit(value, one.unit, plan.barometer) if pressure else to_unit(value, one.unit)
-    step = one.half_division / unit(one.unit).factor
-    decimals = max(0, math.ceil(-math.log10(step) - 1e-9)) if step > 0.0 else 1
-    text = f"{shown:.{min(decimals, 6)}f}"
-    return text.lstrip("-") if float(text) == 0.0 else text
 
 
 def _facts(asked: dict[str, Any]) -> dict[str, Any]:
@@ -64,17 +54,29 @@ class Simulated:
         """Looks that told it of something new: a lost vessel is brought back by telling all of it once more."""
         self._losses = 0
         """Times it was lost since it last showed a value."""
+        self._seed = 1
+        self._faults: list[str] = []
+        """What goes wrong, settled: the same whoever reads it."""
+        self._news: list[tuple[str, str]] = []
+        self._known: set[str] = set()
+        """Names of faults whose beginning was told: a new process tells all of them once more."""
+        self._alone = False
+        self.lost = False
+        """Nothing is computed for the run now, by a fault."""
         self._process: asyncio.subprocess.Process | None = None
         self._looking: asyncio.Task[None] | None = None
 
     # -- the other process ------------------------------------------------------------------------------
 
     async def open(self, request: BindRequest, plan: Plan, seed: int, fault: str = "") -> None:
-        """Start the simulated vessel, with a fault by name; where that fails the dials stay dark."""
-        self._plan = plan
-        self._opening = {
-            "request": to_plain(request), "seed": seed, "boot": self.clock.now().boot, "fault": fault,
-        }  # fmt: skip
+        """Start the simulated vessel, with a fault by name; where that fails the dials stay dark.
+
+        Raises InputUnusable for a fault that is none.
+        """
+        self._plan, self._seed = plan, seed
+        if fault:
+            self.trouble(fault)
+        self._opening = {"request": to_plain(request), "seed": seed, "boot": self.clock.now().boot}
         await self._start()
         self._looking = asyncio.ensure_future(self._exchange(self._opening, _OPENING_S))
 
@@ -129,6 +131,7 @@ class Simulated:
             self._shown = dict(reply.get("shown", {}))
             self._losses = 0 if self._shown else self._losses
             self.seen = str(reply.get("seen", ""))
+            self._hear(reply)
         except (OSError, ValueError, TimeoutError):
             self._shown, self.seen = {}, ""
             self._process = None
@@ -138,6 +141,18 @@ class Simulated:
             process.stdin.close()
             await process.stdout.read()
             await process.wait()
+
+    def _hear(self, reply: dict[str, Any]) -> None:
+        """What people and computers feel of the faults."""
+        self._alone, self.lost = bool(reply.get("alone")), bool(reply.get("lost"))
+        for name, words in reply.get("news", ()):
+            if name in self._known:
+                continue
+            self._known.add(name)
+            self._news.append((name, words))
+            if name == AWAY:
+                # Whoever sits here is not there either: what happens meanwhile has happened.
+                self.clock.skip(AWAY_S)
 
     # -- Pace -------------------------------------------------------------------------------------------
 
@@ -175,6 +190,7 @@ class Simulated:
             "source": ledger.source,
             "valves": [(tag, said.position) for tag, said in ledger.stated.items()],
             "tags": [one.tag for one in self._plan.instruments],
+            "faults": list(self._faults),
         }
         self._looking = asyncio.ensure_future(self._look(asked))
 
@@ -192,5 +208,14 @@ class Simulated:
         return typed_value(value, one, self._plan)
 
     def played(self, name: str) -> str | None:
-        """The number of a played person; None: a real one."""
-        return self._played.get(name)
+        """The number of a played person; None: a real one, or one who has left."""
+        return None if self._alone else self._played.get(name)
+
+    def trouble(self, fault: str) -> None:
+        """Let one more thing go wrong. Raises InputUnusable."""
+        self._faults.append(settled_fault(fault, self._seed))
+
+    def news(self) -> list[tuple[str, str]]:
+        """Faults that have begun since somebody last asked."""
+        found, self._news = self._news, []
+        return found

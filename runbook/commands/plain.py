@@ -20,6 +20,7 @@ from runbook.bench.simulated import Simulated
 from runbook.commands.plain_session import Input, Session
 from runbook.errors import ExitCode, InputUnusable, JournalError
 from runbook.procedure.reader import read_procedure
+from runbook.rehearsal.failing import FailingEngine
 from runbook.run.amounts import pressure
 from runbook.run.clock import Clock, ScaledClock, SystemClock
 from runbook.run.conductor import Conductor
@@ -64,9 +65,10 @@ async def _rehearse(path: Path, seed: int, logbook: Logbook, fault: str) -> int:
     print("REHEARSAL: nothing here happens at a vessel. Played, with their signing numbers:")
     print("\n".join(f"  {p.name}, {', '.join(p.roles)}: {p.number}" for p in who))
     target = logbook.new_run_path(bound.plan.vessel, clock.now(), rehearsal=True)
-    desk = Conductor(JournalWriter(Journal.create(target)), clock, engine)
-    await desk.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal=True))
     pace = _Pace(clock, who[1:])
+    lossy = FailingEngine(engine, lambda: pace.lost)
+    desk = Conductor(JournalWriter(Journal.create(target)), clock, lossy)
+    await desk.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal=True))
     await pace.open(request, bound.plan, seed, fault)
     try:
         return await _to_the_end(Session(desk, Input(), pace), target)

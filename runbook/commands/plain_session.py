@@ -21,6 +21,10 @@ _TICK_S = 0.5
 """[s] between two looks at the clock while nothing is typed."""
 
 
+REHEARSED = ("read", "look", "speed", "wait", "jump", "fault")
+"""Words that only a rehearsal knows."""
+
+
 class Bench(Protocol):
     """The simulated bench of a rehearsal, as line mode sees it."""
 
@@ -43,6 +47,14 @@ class Bench(Protocol):
 
     async def looked(self) -> None:
         """Wait until the dials show it."""
+        ...
+
+    def trouble(self, fault: str) -> None:
+        """Let one more thing go wrong. Raises InputUnusable."""
+        ...
+
+    def news(self) -> list[tuple[str, str]]:
+        """Faults that have begun since somebody last asked."""
         ...
 
     @property
@@ -108,7 +120,13 @@ class Session:
     async def _pass(self) -> None:
         if self.pace is not None:
             self.pace.follow(self.desk.ledger)
+            await self._told()
         await self.desk.tick()
+
+    async def _told(self) -> None:
+        """Faults that have begun, for the record."""
+        for name, words in self.pace.news() if self.pace is not None else ():
+            await self.desk.fault_began(name, words)
 
     async def _typed(self, text: str) -> None:
         words = text.split()
@@ -121,7 +139,7 @@ class Session:
                 print("\n".join(sight_lines(self.desk.plan, self.desk.standing())))
             elif words and words[0] == "by" and len(words) > 1:
                 self._set_by(" ".join(words[1:]))
-            elif self.pace is not None and words and words[0] in ("read", "look", "speed", "wait", "jump"):
+            elif self.pace is not None and words and words[0] in REHEARSED:
                 await self._rehearsed(words)
             else:
                 await self._act(text)
@@ -166,6 +184,8 @@ class Session:
             dials = [(i, self.pace.dial(i.tag)) for i in self.desk.plan.instruments]
             print("  simulated: " + ", ".join(f"{i.tag} shows {d} {i.unit}" for i, d in dials if d is not None))
             print(f"  in the vessel: {self.pace.seen or 'nothing'}")
+        elif words[0] == "fault":
+            self.pace.trouble(" ".join(words[1:]))
         elif words[0] == "speed":
             self.pace.set_speed(_number(words, 1.0, 600.0))
         elif words[0] == "wait":
@@ -187,6 +207,7 @@ class Session:
         await self.pace.looked()
         self.pace.follow(self.desk.ledger)
         await self.pace.looked()
+        await self._told()
 
     async def _gap(self) -> bool:
         """The four questions; False where the input ended."""

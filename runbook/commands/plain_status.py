@@ -108,5 +108,6 @@ HELP = (
 HELP_REHEARSAL = (
     "read [TAG]   take what the simulated dial shows      look   see every dial and the vessel, and take nothing",
     "speed N      1 to 600 times      wait MIN   let minutes pass      jump   to the next thing asked for",
+    "fault NAME[@S]   what goes wrong on purpose, and seconds after its situation",
 )
 """What can be typed in a rehearsal besides."""

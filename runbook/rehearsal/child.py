@@ -29,13 +29,17 @@ def open_world(asked: dict[str, Any]) -> World:
     request = from_plain(BindRequest, asked["request"])
     scene, lines = opened(request)
     plan = plan_of(scene, date.fromisoformat(request.on), lines, request.part)
-    seed, named = int(asked["seed"]), str(asked.get("fault", ""))
-    troubles = Troubles([Trouble(*parse_fault(named, seed))] if named else [])
-    return World(scene, lines, plan, seed, Moment(float(asked["boot"]), 0.0), request.part, troubles)
+    return World(scene, lines, plan, int(asked["seed"]), Moment(float(asked["boot"]), 0.0), request.part, Troubles())
 
 
 def look(world: World, asked: dict[str, Any]) -> dict[str, Any]:
-    """Let the time since the last look pass, do what has been done: what every dial shows [SI], and what is seen."""
+    """Let the time since the last look pass, do what has been done: what every dial shows [SI], and what is seen.
+
+    With it the faults that have begun since, and what people and computers feel of them.
+    """
+    troubles = world.troubles
+    # A fault drawn at random was drawn by who asks, so that a new process is told the same.
+    troubles.all += [Trouble(*parse_fault(str(text), 0)) for text in asked["faults"][len(troubles.all) :]]
     world.move_to(Moment(float(asked["boot"]), 0.0))
     world.follow(
         replace(
@@ -47,7 +51,13 @@ def look(world: World, asked: dict[str, Any]) -> dict[str, Any]:
     )
     world.move_to(Moment(float(asked["boot"]), 0.0))
     shown = {str(tag): world.read(str(tag)) for tag in asked["tags"]}
-    return {"shown": {tag: value for tag, value in shown.items() if value is not None}, "seen": world.seen}
+    return {
+        "shown": {tag: value for tag, value in shown.items() if value is not None},
+        "seen": world.seen,
+        "news": troubles.news(),
+        "alone": troubles.alone,
+        "lost": troubles.lost(float(asked["boot"])),
+    }
 
 
 def serve(lines_in: Callable[[], str], line_out: Callable[[str], None]) -> None:

@@ -54,7 +54,11 @@ FAULTS: Final = (
     Fault("heater left on", "nothing is computed for five minutes while the heat is on", HEATING),
 )
 """In the order of the list on screen."""
-_PLUGGED_S, _AWAY_S, _LOST_S = 600.0, 1800.0, 300.0
+AWAY: Final = "operator away"
+"""The fault in which nobody does anything for a while."""
+AWAY_S: Final = 1800.0
+"""[s] for which the operator is away."""
+_PLUGGED_S, _LOST_S = 600.0, 300.0
 _LEAK = 0.01e-3
 """[m]"""
 _AIR = 3.0
@@ -85,6 +89,23 @@ def parse_fault(text: str, seed: int) -> tuple[Fault, float]:
     return find_fault(name), after
 
 
+def settled_fault(text: str, seed: int) -> str:
+    """The same fault and moment by name, whatever seed it is read with. Raises InputUnusable."""
+    fault, after = parse_fault(text, seed)
+    return f"{fault.name}@{after:g}"
+
+
+def fault_words(text: str) -> str:
+    """What was chosen, in words; one that is drawn is not told. Raises InputUnusable."""
+    if not text:
+        return "nothing"
+    if text.partition("@")[0].strip().casefold() == "random":
+        return "one of all, drawn by the seed, at a moment of its own"
+    fault, after = parse_fault(text, 0)
+    late = f"{after / 60.0:g} min after the vessel is" if after else "when the vessel is"
+    return f"{fault.name}: {fault.words}; {late} {fault.begins}"
+
+
 @dataclass
 class Trouble:
     """A fault of one rehearsal, and when it began."""
@@ -98,6 +119,8 @@ class Trouble:
     """[s]; None: not yet."""
     frozen: dict[str, float] = field(default_factory=dict)
     """What an instrument that stands still has been showing [SI], by tag."""
+    told: bool = False
+    """Its beginning has been told to the record."""
 
     def look(self, situations: Iterable[str], now: float) -> None:
         """Begin where its situation stands long enough."""
@@ -128,6 +151,13 @@ class Troubles:
         there = set(situations)
         for one in self.all:
             one.look(there, now)
+
+    def news(self) -> list[tuple[str, str]]:
+        """Name and words of those that have begun since somebody last asked."""
+        fresh = [one for one in self.all if one.began is not None and not one.told]
+        for one in fresh:
+            one.told = True
+        return [(one.fault.name, one.fault.words) for one in fresh]
 
     def on(self, name: str) -> bool:
         """That fault is one of them and has begun."""
@@ -183,7 +213,7 @@ class Troubles:
 
     def away(self, now: float) -> bool:
         """The operator does nothing."""
-        return any(one.lasting("operator away", now, _AWAY_S) for one in self.all)
+        return any(one.lasting(AWAY, now, AWAY_S) for one in self.all)
 
     def lost(self, now: float) -> bool:
         """Nothing is computed."""

@@ -11,6 +11,7 @@ from typing import Final
 
 from runbook.answers import BindRequest, ChargeBox
 from runbook.apparatus.model import Apparatus
+from runbook.assess.local import LocalEngine
 from runbook.procedure.reader import read_procedure
 from runbook.quantities import NotKnown
 from runbook.rehearsal.failing import FailingEngine
@@ -91,7 +92,8 @@ async def rehearse(
     Raises FileProblems or InputUnusable where it cannot be bound.
     """
     loaded = read_procedure(path)
-    engine = FailingEngine()
+    local = LocalEngine()
+    engine = FailingEngine(local)
     request = BindRequest(
         procedure_path=str(path), on=loaded.procedure.issue.date.isoformat(), charge=charge, part=part
     )
@@ -101,7 +103,7 @@ async def rehearse(
     who = played(bound.plan.roles)
     await conductor.open(run_opened(bound, people(who, bound.plan.roles), request, rehearsal=True))
     await conductor.settled()
-    scene, lines = engine.here.scene, engine.here.lines
+    scene, lines = local.here.scene, local.here.lines
     assert scene is not None, "bind leaves a scene"
     troubles = Troubles([] if fault is None else [Trouble(fault[0], fault[1])])
     world = World(scene, lines, bound.plan, seed, clock.now(), part, troubles)
@@ -192,6 +194,8 @@ class _Run:
 
     async def _heard(self) -> None:
         """What the physics said since."""
+        for name, words in self.world.troubles.news():
+            await self.conductor.fault_began(name, words)
         await self.conductor.settled()
         ledger = self.conductor.ledger
         if ledger.answer is not None and ledger.seq != self.seen:

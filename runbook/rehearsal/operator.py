@@ -31,6 +31,7 @@ from runbook.run.conductor import Conductor
 from runbook.run.opening import Participant
 from runbook.run.signing import readings_missing
 from runbook.run.state import Taken
+from runbook.run.typed import typed_value, understand
 
 _WATCHING_S = 1.0
 """Between two looks of somebody who keeps a vent shut by hand [s]."""
@@ -255,9 +256,13 @@ class Operator:
         shown = self._world.read(tag)
         if shown is None:
             return None
-        by = self._person(role or self._conductor.plan.roles[0])
-        said = f"{shown:.6g}"
-        return Read(tag, shown, said, f"{tag} {said} [SI]", by, blind)
+        plan = self._conductor.plan
+        one = next(i for i in plan.instruments if i.tag == tag)
+        text = typed_value(shown, one, plan)
+        typed = understand(text, one, plan)
+        if isinstance(typed, str):
+            return None
+        return Read(tag, typed.value, text, typed.echo, self._person(role or plan.roles[0]), blind)
 
     @property
     def _there(self) -> tuple[Participant, ...]:

@@ -10,6 +10,7 @@ from dataclasses import dataclass, field
 from runbook.answers import Effect, Phase, PlanLine
 from runbook.run.clock import Moment
 from runbook.run.events import Answered, Event, MadeSafe, ReadingTaken, TurnedBack, WentOn
+from runbook.run.fault_account import make_safe_by, noticed
 from runbook.run.ledger import Ledger
 from runbook.run.reasons import NOT_YET, Code, Reason, Refused
 from runbook.run.safe import make_safe
@@ -41,13 +42,9 @@ class Story:
         """An event, with the ledger before it."""
         if isinstance(event, Answered):
             self._disagrees = event.answer.agreement.verdict == "disagrees"
-            blocked = [m for m in event.answer.now if m.margin is not None and m.margin <= 0.0]
-            if self._disagrees and began is not None:
-                self._notice(now, began, "gauge and model disagree")
-            elif blocked:
-                self._notice(now, began, f"{blocked[0].limit} {blocked[0].kind}: no margin is left")
-        elif isinstance(event, TurnedBack):
-            self._notice(now, began, event.why)
+        if isinstance(event, Answered | TurnedBack):
+            if words := noticed(event):
+                self._notice(now, began, words)
         elif isinstance(event, MadeSafe):
             self._made_safe(before, event, now)
         elif isinstance(event, ReadingTaken):
@@ -73,11 +70,8 @@ class Story:
 
     def _outside(self, before: Ledger, event: ReadingTaken, now: Moment, began: float | None) -> None:
         """A reading outside what the author accepts, where the author's word for that is make safe."""
-        line = before.present
-        held = line.hold.read if line is not None and line.hold is not None else None
-        asked = (held,) if line is None else (*line.reads, *line.read_after, held)
-        need = next((n for n in asked if n is not None and n.tag == event.tag), None)
-        if need is not None and need.if_not.lower().startswith("make safe") and before.plan is not None:
+        need = None if before.plan is None else make_safe_by(before.plan, event)
+        if need is not None and before.plan is not None:
             self._make_safe_by = event.tag
             said = Reason(NOT_YET, Code.READING_OUTSIDE, tag=event.tag, need=need, value=event.value)
             self._notice(now, began, reason_words(before.plan, before, said))

@@ -21,6 +21,7 @@ from runbook.run.engine import Engine
 from runbook.run.events import (
     Answered,
     Event,
+    FaultBegan,
     GapOpened,
     Halted,
     NoAnswer,
@@ -127,6 +128,15 @@ class Conductor:
         found = await self.act(Tick())
         self._ask()
         return None if isinstance(found, Refused) else found
+
+    async def fault_began(self, name: str, words: str) -> None:
+        """Of a rehearsal: what was to go wrong has begun, for its record."""
+        if self.ledger.outcome is not None or self.ledger.halted is not None:
+            return
+        try:
+            await self._write(FaultBegan(name, words))
+        except JournalError as error:
+            self._halt(str(error))
 
     async def settled(self) -> None:
         """Wait until the standing question has been answered or given up, and everything is written."""

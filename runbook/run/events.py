@@ -134,6 +134,14 @@ class Noted:
 
 
 @dataclass(frozen=True, slots=True)
+class FaultBegan:
+    """Of a rehearsal: what was to go wrong has begun. It is told in the record alone, and changes nothing."""
+
+    name: str
+    words: str
+
+
+@dataclass(frozen=True, slots=True)
 class Answered:
     """The child answered; looked up by key, never by time."""
 
@@ -222,6 +230,7 @@ Event = (
     | ValveStated
     | SourceStated
     | Noted
+    | FaultBegan
     | Answered
     | NoAnswer
     | TurnedBack

@@ -253,7 +253,8 @@ def _closed(ledger: Ledger, event: ev.RunClosed, at: Moment) -> Ledger:
     return replace(ledger, outcome=event.outcome)
 
 
-def _noted(ledger: Ledger, event: ev.Noted, at: Moment) -> Ledger:
+def _told(ledger: Ledger, event: ev.Noted | ev.FaultBegan, at: Moment) -> Ledger:
+    """What is for the record alone."""
     return ledger
 
 
@@ -269,7 +270,8 @@ _HANDLERS: Final[dict[type[Any], Callable[[Ledger, Any, Moment], Ledger]]] = {
     ev.Proved: _proved,
     ev.ValveStated: _valve,
     ev.SourceStated: _source,
-    ev.Noted: _noted,
+    ev.Noted: _told,
+    ev.FaultBegan: _told,
     ev.Answered: _answered,
     ev.NoAnswer: _no_answer,
     ev.TurnedBack: _turned,
@@ -285,6 +287,7 @@ _HANDLERS: Final[dict[type[Any], Callable[[Ledger, Any, Moment], Ledger]]] = {
 _ANSWERS: Final = (ev.Answered, ev.NoAnswer)
 _NO_FACTS: Final = (
     ev.Noted,
+    ev.FaultBegan,
     ev.Signed,
     ev.WitnessCame,
     ev.NotAttended,

@@ -15,6 +15,7 @@ from runbook.answers import Answer, Margin, Plan
 from runbook.quantities import pressure_to_unit
 from runbook.run import events as ev
 from runbook.run.clock import Moment
+from runbook.run.fault_account import FaultAccount
 from runbook.run.journal import Record
 from runbook.run.sentences import agreement_pair, agreement_says
 
@@ -30,6 +31,7 @@ def record_lines(records: Iterable[Record]) -> tuple[str, ...]:
     least: Margin | None = None
     last: Record | None = None
     said = ""
+    account = FaultAccount()
     for record in records:
         last = record
         try:
@@ -38,6 +40,7 @@ def record_lines(records: Iterable[Record]) -> tuple[str, ...]:
             # Of a newer program: it is said that something stands there, never skipped in silence.
             lines.append(f"{record.at}  {record.kind}: this version cannot read it")
             continue
+        account.hear(event, record.moment)
         if isinstance(event, ev.RunOpened):
             plan, opened = event.plan, record.moment
             lines += _head(event, record.at)
@@ -51,7 +54,7 @@ def record_lines(records: Iterable[Record]) -> tuple[str, ...]:
         words = _words(event, plan)
         if words:
             lines.append(f"{_elapsed(opened, record.moment)}  {words}")
-    lines += _foot(plan, least, last)
+    lines += _foot(plan, least, last, account)
     return tuple(part for line in lines for part in (wrap(line, WIDTH, subsequent_indent=" " * 11) or [""]))
 
 
@@ -75,8 +78,8 @@ def _head(event: ev.RunOpened, at: str) -> list[str]:
     return [*lines, ""]
 
 
-def _foot(plan: Plan | None, least: Margin | None, last: Record | None) -> list[str]:
-    lines = [""]
+def _foot(plan: Plan | None, least: Margin | None, last: Record | None, account: FaultAccount) -> list[str]:
+    lines = ["", *account.lines()]
     if plan is not None and least is not None:
         lines.append(f"least pressure margin computed from a reading: {_margin(least, plan)}")
     if last is not None:
@@ -117,6 +120,8 @@ def _words(event: ev.Event, plan: Plan | None) -> str:
 
 def _exceptional(event: ev.Event, plan: Plan | None) -> str:
     match event:
+        case ev.FaultBegan(name, words):
+            return f"FAULT of this rehearsal begins: {name}, {words}"
         case ev.NoAnswer(unanswered):
             return f"NOTHING COMPUTED: {unanswered.why}"
         case ev.TurnedBack(line, why):

@@ -75,6 +75,8 @@ class FakePace:
         self.stopped = False
         self.jumped: list[float] = []
         self.seen = "solid 8 % of it"
+        self.faults: list[str] = []
+        self.begun: list[tuple[str, str]] = []
         self.dials = {"TT1": "24.1", "PG1": "62.6", "HS1": "30"}
 
     @property
@@ -108,6 +110,15 @@ class FakePace:
     def played(self, name: str) -> str | None:
         """All but the first person."""
         return {who.name: who.number for who in scenes.WHO[1:]}.get(name)
+
+    def trouble(self, fault: str) -> None:
+        """Noted."""
+        self.faults.append(fault)
+
+    def news(self) -> list[tuple[str, str]]:
+        """Nothing begins by itself."""
+        found, self.begun = self.begun, []
+        return found
 
 
 Journey = Callable[[BenchApp], Awaitable[int]]

@@ -6,9 +6,9 @@ from pathlib import Path
 
 from runbook.answers import BindRequest
 from runbook.assess.local import LocalEngine
-from runbook.bench.simulated import typed_value
 from runbook.commands.plain_session import Input, Session
 from runbook.procedure.reader import read_procedure
+from runbook.rehearsal.faults import Trouble, parse_fault
 from runbook.rehearsal.operator import Operator
 from runbook.rehearsal.world import World
 from runbook.run import acts
@@ -19,6 +19,7 @@ from runbook.run.journal import Journal, JournalWriter
 from runbook.run.opening import people, played, run_opened
 from runbook.run.proofs import not_proved
 from runbook.run.state import Ledger
+from runbook.run.typed import typed_value
 
 
 class Table:
@@ -35,6 +36,14 @@ class Table:
     def jump(self, seconds: float) -> None:
         """Later at once [s]."""
         self._clock.advance(seconds)
+
+    def trouble(self, fault: str) -> None:
+        """One more thing that goes wrong."""
+        self._world.troubles.all.append(Trouble(*parse_fault(fault, 1)))
+
+    def news(self) -> list[tuple[str, str]]:
+        """What has begun since."""
+        return self._world.troubles.news()
 
     def follow(self, ledger: Ledger) -> None:
         """What was done, up to now."""

@@ -12,8 +12,10 @@ from runbook.answers import Answer, Question, Unanswered
 from runbook.commands.rehearse import main
 from runbook.rehearsal import headless
 from runbook.rehearsal.failing import FailingEngine
+from runbook.rehearsal.faults import find_fault
 from runbook.rehearsal.headless import rehearse
 from runbook.run.journal import Journal, JournalWriter, read, verify
+from runbook.run.record import record_lines
 from tests.assess.scenes import changed_files
 
 
@@ -128,3 +130,27 @@ def test_a_seed_gives_the_same_bytes_and_a_lost_process_one_line_more(
     whole = [record.kind for record in read(first).records]
     where = lost.index("NoAnswer")
     assert lost[:where] + lost[where + 1 :] == whole
+
+
+def test_the_record_tells_how_the_fault_went(tmp_path: Path) -> None:
+    """When it began, when the run first noticed and what it said, when somebody acted, the least margin since."""
+    path = Path(__file__).parents[2] / "procedures" / "co2-critical-point.yaml"
+    journal = tmp_path / "fault.jsonl"
+    found = asyncio.run(
+        rehearse(path, 1, JournalWriter(Journal.create(journal)), fault=(find_fault("gauge stuck"), 0.0))
+    )
+    lines = " ".join(" ".join(record_lines(read(journal).records)).split())
+    assert "FAULT of this rehearsal begins: gauge stuck, the high gauge stands still" in lines
+    told = lines[lines.index("fault gauge stuck: first noticed after") :]
+    assert "acted on after" in told
+    assert "least pressure margin since then" in told
+    assert found.fault is not None
+    assert found.fault.began_s is not None
+
+
+def test_a_record_without_a_fault_tells_of_none(tmp_path: Path) -> None:
+    """No line about faults stands in the record of a rehearsal in which nothing went wrong."""
+    path = Path(__file__).parents[2] / "procedures" / "co2-triple-point.yaml"
+    journal = tmp_path / "good.jsonl"
+    asyncio.run(rehearse(path, 1, JournalWriter(Journal.create(journal))))
+    assert "fault" not in "\n".join(record_lines(read(journal).records)).lower().replace("default", "")

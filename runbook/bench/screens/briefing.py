@@ -17,9 +17,11 @@ from runbook.bench.briefing_rows import briefing_rows
 from runbook.bench.place import Keys, Place
 from runbook.bench.rows import EMPTY, Row, wrapped
 from runbook.bench.screens.ask import AskPanel
+from runbook.bench.screens.faults import FaultScreen
 from runbook.bench.widgets.lines import Lines
 from runbook.errors import QuantityError, RunbookError
 from runbook.quantities import Dimension, parse, parse_barometer
+from runbook.rehearsal.faults import fault_words
 from runbook.run.engine import Bound
 
 Bind = Callable[[BindRequest], Awaitable[Bound]]
@@ -36,12 +38,19 @@ class BriefingScreen(Place[tuple[Bound, BindRequest] | None]):
         Binding("p", "part", show=False),
         Binding("c", "cell", show=False),
         Binding("b", "barometer", show=False),
+        Binding("f", "fault", show=False),
         Binding("pagedown", "scroll(1)", show=False),
         Binding("pageup", "scroll(-1)", show=False),
     ]
 
     def __init__(
-        self, bind: Bind, request: BindRequest, recorded: ChargeBox | None, rehearsal: bool, warning: str = ""
+        self,
+        bind: Bind,
+        request: BindRequest,
+        recorded: ChargeBox | None,
+        rehearsal: bool,
+        warning: str = "",
+        fault: str = "",
     ) -> None:
         """Begin with `request`; `recorded` is what the vessel's charge record says is in it.
 
@@ -53,8 +62,14 @@ class BriefingScreen(Place[tuple[Bound, BindRequest] | None]):
         self._recorded = recorded
         self._rehearsal = rehearsal
         self._warning = warning
+        self.fault = fault
+        """What goes wrong on purpose in this rehearsal; empty: nothing."""
         self.bound: Bound | None = None
         self._said = ""
+
+    def keys(self) -> Keys:
+        """In a rehearsal what goes wrong can be chosen too."""
+        return (("P C B F", "change"), *self.KEYS[1:]) if self._rehearsal else self.KEYS
 
     def body(self) -> Iterable[Widget]:
         """Numbers, as many rows as they take."""
@@ -86,7 +101,8 @@ class BriefingScreen(Place[tuple[Bound, BindRequest] | None]):
     def _rows(self, width: int) -> list[Row]:
         if self.bound is not None:
             warning = [EMPTY, *wrapped(f" {self._warning}", width - 1, "blocked")] if self._warning else []
-            return [*warning, *briefing_rows(self.bound.plan, self.request, width)]
+            wrong = fault_words(self.fault) if self._rehearsal else ""
+            return [*warning, *briefing_rows(self.bound.plan, self.request, width, wrong)]
         if self._said:
             return [
                 EMPTY,
@@ -149,6 +165,16 @@ class BriefingScreen(Place[tuple[Bound, BindRequest] | None]):
         pressure, height = barometer_of(text)
         self.request = replace(self.request, barometer_Pa=pressure, height_m=height)
         self._compute()
+
+    def action_fault(self) -> None:
+        """Choose what goes wrong on purpose; at the vessel nothing does."""
+        if self._rehearsal and self.bound is not None:
+            self.app.push_screen(FaultScreen(self.fault), self._fault_chosen)
+
+    def _fault_chosen(self, fault: str | None) -> None:
+        if fault is not None:
+            self.fault = fault
+            self._repaint()
 
     def action_scroll(self, pages: int) -> None:
         """A page on or back."""

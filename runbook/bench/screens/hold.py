@@ -20,11 +20,11 @@ from runbook.bench.acting import do
 from runbook.bench.people import next_name, roles_of
 from runbook.bench.place import Keys, Place
 from runbook.bench.rows import EMPTY, Row, row, wrapped
-from runbook.bench.typed import Understood, understand
 from runbook.bench.widgets.field import Field
 from runbook.bench.widgets.lines import Lines
 from runbook.run.acts import Act, Read, Sign
 from runbook.run.state import Ledger, Taken
+from runbook.run.typed import Understood, understand
 
 if TYPE_CHECKING:
     from runbook.run.conductor import Conductor

@@ -39,6 +39,7 @@ REHEARSAL_KEYS: Keys = (
     ("[ ]", "slower, faster"),
     ("P", "stop the clock, let it go on"),
     ("J", "on to the next moment at which something is asked"),
+    ("F", "what goes wrong on purpose: choose from the list"),
 )
 _BACK: list[BindingType] = [
     Binding("escape", "back", show=False),

@@ -19,10 +19,10 @@ from runbook.bench.acting import do
 from runbook.bench.people import next_name, performer
 from runbook.bench.place import Keys, Panel
 from runbook.bench.rows import Row, beside, last_beside, row, wrapped
-from runbook.bench.typed import Understood, understand
 from runbook.bench.widgets.field import Field
 from runbook.bench.widgets.lines import Lines
 from runbook.run.acts import Read
+from runbook.run.typed import Understood, understand
 
 if TYPE_CHECKING:
     from runbook.run.conductor import Conductor

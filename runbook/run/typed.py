@@ -1,13 +1,14 @@
-"""What a typed reading becomes: echoed in full, in the unit of its dial, before it counts. Pure."""
+"""What a typed reading becomes: echoed in full, in the unit of its dial, before it counts; and back again. Pure."""
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 
 from runbook.answers import Instrument, Plan
 from runbook.apparatus.dial import DIMENSION
 from runbook.errors import QuantityError
-from runbook.quantities import Level, reading_from_typed
+from runbook.quantities import Level, pressure_to_unit, reading_from_typed, to_unit, unit
 
 
 @dataclass(frozen=True, slots=True)
@@ -33,3 +34,13 @@ def understand(text: str, instrument: Instrument, plan: Plan) -> Understood | st
     slack = 1e-9 * max(abs(instrument.low), abs(instrument.high))
     outside = not instrument.low - slack <= value <= instrument.high + slack
     return Understood(value, f"{instrument.tag} {typed.echo}", outside)
+
+
+def typed_value(value: float, one: Instrument, plan: Plan) -> str:
+    """A value [SI] as a person types it from that dial, to its resolution."""
+    pressure = one.reads == "pressure"
+    shown = pressure_to_unit(value, one.unit, plan.barometer) if pressure else to_unit(value, one.unit)
+    step = one.half_division / unit(one.unit).factor
+    decimals = max(0, math.ceil(-math.log10(step) - 1e-9)) if step > 0.0 else 1
+    text = f"{shown:.{min(decimals, 6)}f}"
+    return text.lstrip("-") if float(text) == 0.0 else text

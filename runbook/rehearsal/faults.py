@@ -35,8 +35,8 @@ class Fault:
 
 FAULTS: Final = (
     Fault("trapped air", "the cell was closed with three times its fill of air in it", CLOSED),
-    Fault("over-loaded", "the scale shows 25 g less than there is", LOADING),
-    Fault("under-loaded", "the scale shows 25 g more than there is", LOADING),
+    Fault("over-loaded", "the scale shows a fifth less than there is", LOADING),
+    Fault("under-loaded", "the scale shows a quarter more than there is", LOADING),
     Fault("slow leak", "a joint leaks through a hundredth of a millimetre, some 5 g an hour", CLOSED),
     Fault("gauge stuck", "the high gauge stands still", WARMING),
     Fault("gauge offset", "the high gauge shows 3 bar too much", CLOSED),
@@ -195,9 +195,9 @@ class Troubles:
         if reads == "temperature" and self.on("thermometer off the wall"):
             return room_K + 0.5 * (value - room_K)
         if reads == "mass" and self.on("over-loaded"):
-            return max(0.0, value - 0.025) if value > 0.0 else value
+            return 0.8 * value
         if reads == "mass" and self.on("under-loaded"):
-            return value + 0.025 if value > 0.0 else value
+            return 1.25 * value
         if reads == "carbon dioxide" and self.on("gas alarm"):
             return value + 0.02
         return self._gauge(tag, value) if tag == high_gauge else value

@@ -35,7 +35,7 @@ def test_a_fault_is_lived_through(tmp_path: Path, name: str) -> None:
 
 
 def test_a_scale_that_shows_too_little_stops_the_run_before_it_warms(tmp_path: Path) -> None:
-    """25 g more than shown is found by the height, which pressure could not tell: the lesson is not reached."""
+    """A quarter more than shown is found by the height, which pressure could not tell: the lesson is not reached."""
     outcome, story = rehearsed(tmp_path, "over-loaded")
     assert outcome.steps_done < 22
     assert story.highest_after < 95e5

@@ -99,7 +99,7 @@ def _every_fault(path: Path, seed: int, as_json: bool) -> int:
 
     told = []
     for one in FAULTS:
-        outcome = asyncio.run(rehearse(path, seed, fault=(one, 0.0)))
+        outcome = asyncio.run(rehearse(path, seed, faults=[(one, 0.0)]))
         told.append(as_document(outcome))
         if not as_json:
             print("\n".join(_fault_lines(outcome)), flush=True)
@@ -130,8 +130,8 @@ def _headless(path: Path, seed: int, as_json: bool, logbook: Path | None, fault:
     from runbook.rehearsal.faults import parse_fault
     from runbook.rehearsal.headless import rehearse
 
-    chosen = parse_fault(fault, seed) if fault else None
-    outcome = asyncio.run(rehearse(path, seed, _journal(path, logbook), fault=chosen))
+    chosen = [parse_fault(fault, seed)] if fault else []
+    outcome = asyncio.run(rehearse(path, seed, _journal(path, logbook), faults=chosen))
     if as_json:
         print(json.dumps(as_document(outcome), indent=2, allow_nan=False))
     else:

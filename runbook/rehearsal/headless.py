@@ -5,17 +5,20 @@ Time is simulated, so an hour takes under a second; the same seed gives the same
 
 from __future__ import annotations
 
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Final
 
-from runbook.answers import BindRequest, ChargeBox
+from runbook.answers import BindRequest, ChargeBox, Plan
 from runbook.apparatus.model import Apparatus
 from runbook.assess.local import LocalEngine
+from runbook.assess.scene import Scene
 from runbook.procedure.reader import read_procedure
 from runbook.quantities import NotKnown
 from runbook.rehearsal.failing import FailingEngine
 from runbook.rehearsal.faults import Fault, Trouble, Troubles
+from runbook.rehearsal.lots import Lot
 from runbook.rehearsal.operator import Operator
 from runbook.rehearsal.story import Story
 from runbook.rehearsal.world import World
@@ -58,6 +61,8 @@ class Outcome:
     events: int
     fault: FaultStory | None = None
     """How it went with a fault; None: there was none."""
+    relief_s: float | None = None
+    """When the lowest pressure at which the relief device may open was reached [s since the run was opened]."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -85,11 +90,13 @@ async def rehearse(
     journal: JournalWriter | None = None,
     charge: ChargeBox | None = None,
     part: int = 0,
-    fault: tuple[Fault, float] | None = None,
+    faults: Sequence[tuple[Fault, float]] = (),
+    draw: Callable[[Scene, Plan], Lot] | None = None,
 ) -> Outcome:
-    """One rehearsal of a procedure; fault: what goes wrong, and seconds after its situation.
+    """One rehearsal of a procedure; faults: what goes wrong, and seconds after its situation; told of is the first.
 
-    Raises FileProblems or InputUnusable where it cannot be bound.
+    draw: what is really there, out of what the tolerances allow; None: every figure as written. Raises FileProblems or
+    InputUnusable where it cannot be bound.
     """
     loaded = read_procedure(path)
     local = LocalEngine()
@@ -105,8 +112,13 @@ async def rehearse(
     await conductor.settled()
     scene, lines = local.here.scene, local.here.lines
     assert scene is not None, "bind leaves a scene"
-    troubles = Troubles([] if fault is None else [Trouble(fault[0], fault[1])])
-    world = World(scene, lines, bound.plan, seed, clock.now(), part, troubles)
+    troubles = Troubles([Trouble(*one) for one in faults])
+    there = None if draw is None else draw(scene, bound.plan)
+    world = World(
+        scene if there is None else there.scene,
+        lines if there is None else there.lines,
+        bound.plan, seed, clock.now(), part, troubles,
+    )  # fmt: skip
     engine.away = lambda: troubles.lost(clock.now().boot)
     run = _Run(conductor, world, Operator(conductor, world, lines, who), clock, loaded.apparatus)
     try:
@@ -232,6 +244,8 @@ class _Run:
         ledger = self.conductor.ledger
         reason = None
         highest = self.world.highest_pressure
+        told = self._told(outcome) if self._trouble else None
+        reached = self.world.relief_reached
         if outcome != "completed":
             reason = ledger.halted or (self._said() if outcome == "refused" else f"make safe in line {ledger.line + 1}")
         return Outcome(
@@ -242,7 +256,8 @@ class _Run:
             highest_pressure=highest,
             least_margin=self.least_margin,
             events=ledger.seq,
-            fault=self._told(outcome) if self._trouble else None,
+            fault=told,
+            relief_s=None if reached is None else reached - ledger.opened_at.boot,
         )
 
     def _told(self, outcome: str) -> FaultStory:

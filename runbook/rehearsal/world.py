@@ -80,6 +80,10 @@ class World:
         self.controls = Controls(True, _WIDE, False, room, plan.barometer)
         self.highest_pressure = plan.barometer
         """So far, the true one [Pa]."""
+        device = next((r for r in scene.apparatus.relief if r.space == scene.charge_space), None)
+        self._relief_Pa = float("inf") if device is None else plan.barometer + lowest_opening(device).pascal
+        self.relief_reached: float | None = None
+        """When the true pressure first came to where the relief device may open [s of the run's clock]."""
         if plan.charge is not None:
             self._already_loaded(0.5 * (plan.charge.low_kg + plan.charge.high_kg))
 
@@ -142,6 +146,8 @@ class World:
             self.highest_pressure = max(self.highest_pressure, self.pressure())
             left -= step
             self._at += step
+            if self.relief_reached is None and self.pressure() >= self._relief_Pa:
+                self.relief_reached = self._at
         self._shown = self._dials.follow(self._shown, self.truth(), 0.0)
 
     def watch(self, seconds: float) -> float:

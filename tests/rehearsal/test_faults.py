@@ -17,7 +17,7 @@ from tests.assess.scenes import changed_files
 
 def rehearsed(folder: Path, name: str) -> tuple[Outcome, FaultStory]:
     """A rehearsal of the shipped procedure with one fault."""
-    outcome = asyncio.run(rehearse(changed_files(folder), 1, fault=(find_fault(name), 0.0)))
+    outcome = asyncio.run(rehearse(changed_files(folder), 1, faults=[(find_fault(name), 0.0)]))
     assert outcome.fault is not None
     return outcome, outcome.fault
 

@@ -137,7 +137,7 @@ def test_the_record_tells_how_the_fault_went(tmp_path: Path) -> None:
     path = Path(__file__).parents[2] / "procedures" / "co2-critical-point.yaml"
     journal = tmp_path / "fault.jsonl"
     found = asyncio.run(
-        rehearse(path, 1, JournalWriter(Journal.create(journal)), fault=(find_fault("gauge stuck"), 0.0))
+        rehearse(path, 1, JournalWriter(Journal.create(journal)), faults=[(find_fault("gauge stuck"), 0.0)])
     )
     lines = " ".join(" ".join(record_lines(read(journal).records)).split())
     assert "FAULT of this rehearsal begins: gauge stuck, the high gauge stands still" in lines

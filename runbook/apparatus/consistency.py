@@ -83,7 +83,7 @@ def _geometry(apparatus: Apparatus) -> Iterable[Finding]:
     volume = apparatus.volume
     if volume.unheated is not None and volume.unheated.high >= volume.free.low:
         yield ("volume", "unheated"), "the unheated volume is part of the free volume and smaller than it"
-    high = apparatus.window.high
+    high = None if apparatus.window is None else apparatus.window.high
     if apparatus.shape != "upright cylinder" and high is not None and high > apparatus.diameter.high:
         yield ("window",), "the window ends above the inside top: its heights count from the inside bottom"
 
@@ -112,6 +112,8 @@ def _instruments(apparatus: Apparatus) -> Iterable[Finding]:
                 yield ("instruments", i, "of"), f"a pressure is of a space: {spaces}"
         elif one.of not in _PLACES[one.reads]:
             yield ("instruments", i, "of"), f"a {one.reads} is of: {', '.join(_PLACES[one.reads])}"
+        elif one.of == "window" and apparatus.window is None:
+            yield ("instruments", i, "of"), "this vessel has no window to read it at: write 'window', or take this away"
         if one.division.value > 0.5 * one.dial.span:
             yield ("instruments", i, "division"), "the division is more than half of the dial"
         if isinstance(one.klass, str) and not isinstance(one.dial.low, Level) and not isinstance(one.dial.high, Level):

@@ -217,8 +217,9 @@ class Apparatus(FileModel):
     """How the inside lies, for the height of the liquid. Example: lying cylinder"""
     diameter: Annotated[f.LengthField, Positive]
     """Inside. Example: 60 mm"""
-    window: Annotated[f.LengthRangeField, AfterValidator(_window)]
-    """Lowest and highest visible height above the inside bottom. Example: 6 mm to 54 mm"""
+    window: Annotated[f.LengthRangeField, AfterValidator(_window)] | None = None
+    """Lowest and highest visible height above the inside bottom; left out: nothing is seen of the inside.
+    Example: 6 mm to 54 mm"""
     body: Body
     """The heat side of the vessel. Example: {heat_capacity: 1.2 kJ/K, from_fluid: 5 W/K, loss_to_room: 0.5 W/K}"""
     mawp: Mawp

@@ -7,6 +7,7 @@ from runbook.assess.ahead import look
 from runbook.assess.boxes import viewed_shape
 from runbook.assess.room import LOWEST
 from runbook.assess.scene import Scene
+from runbook.assess.sights.marks import window_of
 from runbook.assess.walk import Walked, left_closed, walk
 from runbook.errors import RunbookError
 
@@ -19,6 +20,10 @@ _STEP = 1e-5
 def charge_bounds(scene: Scene) -> ChargeBounds:
     """Bounds on the stated mass; the tolerance of the procedure is taken off each."""
     half = 0.5 * (scene.planned[1] - scene.planned[0])
+    if scene.apparatus.window is None:
+        most, most_reason = _most(scene, half)
+        none = "this vessel has no window: no charge shows anything"
+        return ChargeBounds(None, None, most, none, none, most_reason)
     lines = walk(scene)
     if any(line.held is not None for line in lines) and not left_closed(lines):
         return _melted(scene, half)
@@ -42,7 +47,7 @@ def _melted(scene: Scene, half: float) -> ChargeBounds:
     what = "every charge between least and most shows solid, liquid and vapour together"
     try:
         both = scene.substance.saturation(scene.substance.triple_temperature)
-        share = viewed_shape(scene).volume_below(scene.apparatus.window.low or 0.0)
+        share = viewed_shape(scene).volume_below(window_of(scene).low)
     except RunbookError as error:
         return ChargeBounds(None, None, most, str(error), what, most_reason)
     density = both.vapour_density + share * (both.liquid_density - both.vapour_density)
@@ -95,10 +100,9 @@ def _most(scene: Scene, half: float) -> tuple[float | None, str]:
 def _least(scene: Scene, half: float) -> tuple[float | None, str]:
     """Charge whose surface still stands in the window 0.1 K below critical, in the largest volume [kg]."""
     fluid = scene.substance
-    window = scene.apparatus.window
     try:
         both = fluid.saturation(fluid.critical_temperature - _BELOW_CRITICAL)
-        share = viewed_shape(scene).volume_below(window.low or 0.0)
+        share = viewed_shape(scene).volume_below(window_of(scene).low)
     except RunbookError as error:
         return None, str(error)
     density = both.vapour_density + share * (both.liquid_density - both.vapour_density)

@@ -14,9 +14,11 @@ from runbook.answers import Finding
 from runbook.assess.boxes import viewed_shape
 from runbook.assess.scene import Scene
 from runbook.assess.sights import not_to_come
-from runbook.assess.sights.marks import window_of
+from runbook.assess.sights.lines import asked_for
+from runbook.assess.sights.marks import is_seen, window_of
 from runbook.assess.walk import Walked
 from runbook.charge.meniscus import Ending, ending
+from runbook.fluids.optics import haze_known
 from runbook.procedure.document import Place
 from runbook.procedure.model import DoStep, WarmTo
 
@@ -27,6 +29,8 @@ _CLAIMS = (
 )
 """What an author may claim of the end of the surface, and how that is said."""
 _DEGREES = re.compile(r"(-?[0-9]+(?:\.[0-9]+)?)\s*(?:degC|°C)")
+_OUTSIDE = ("frost", "snow")
+"""What an author may ask to be shown that is seen from outside."""
 _CLOSE = 1.0
 """How far a temperature in words may be off [K]."""
 
@@ -56,7 +60,7 @@ def truth_findings(scene: Scene, lines: Sequence[Walked], places: Sequence[Place
 def _ends(scene: Scene) -> _Ends | None:
     low, high = scene.planned
     shape, window, volume = viewed_shape(scene), window_of(scene), scene.apparatus.volume.free.value
-    if not low > 0.0:
+    if not low > 0.0 or not is_seen(scene):
         return None
     least, most = (ending(scene.substance, shape, window, m / volume) for m in (low, high))
     return None if least is None or most is None else _Ends(least, most)
@@ -92,6 +96,19 @@ def _said(ends: _Ends, line: Walked, at: Place) -> Iterator[Finding]:
 
 def _asked(scene: Scene, line: Walked, at: Place) -> Iterator[Finding]:
     """What the author asks the program to show, against what it computes along the step's path."""
+    inside = [name for name in asked_for(line) if name not in _OUTSIDE]
+    if inside and not is_seen(scene):
+        yield Finding(
+            "words and sight", "warning", *at,
+            f"step {line.number}: '{inside[0]}' is not seen, this vessel has no 'window': say what is seen outside",
+        )  # fmt: skip
+        return
+    if "haze" in inside and not haze_known(scene.substance):
+        yield Finding(
+            "words and sight", "advice", *at,
+            f"step {line.number}: the haze of {scene.substance.name} is not computed, its amplitudes are not known: "
+            "say it in 'words'",
+        )  # fmt: skip
     missing, come = not_to_come(scene, line)
     for name in missing:
         yield Finding(

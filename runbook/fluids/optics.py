@@ -91,6 +91,12 @@ def _angles(a: float) -> float:
     return (2.0 * a * a + 2.0 * a + 1.0) / a**3 * log1p(2.0 * a) - 2.0 * (1.0 + a) / a**2
 
 
+def haze_known(substance: Substance) -> bool:
+    """Whether refractivity and amplitudes of a fluid are known: without them nobody can say that no haze comes."""
+    data = find(substance.name)
+    return data.molar_refractivity is not None and data.haze is not None
+
+
 def turbidity(substance: Substance, temperature: float, density: float) -> Haze | None:
     """Haze of a charge of that density [kg/m3] at a temperature [K]; beside vapour, that of the vapour.
 

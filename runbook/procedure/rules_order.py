@@ -9,7 +9,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass, field
 
 from runbook.apparatus.model import Apparatus
-from runbook.apparatus.spaces import is_closed, isolated, trapped, ways_out
+from runbook.apparatus.spaces import is_closed, isolated, joined_spaces, trapped, ways_out
 from runbook.procedure.document import Route
 from runbook.procedure.lines import Found, Line, acts_of, lines_of, listed, readings_of
 from runbook.procedure.model import (
@@ -34,6 +34,7 @@ class _Vessel:
     positions: dict[str, str]
     loaded: bool
     empty_shown: bool = False
+    told: set[frozenset[str]] = field(default_factory=set)
     found: list[Found] = field(default_factory=list)
 
     @property
@@ -79,18 +80,45 @@ def _act(vessel: _Vessel, route: Route, valves: dict[str, str], path: Path | Non
         vessel.say((*route, "valves"), "this shuts the last way out: say so with path: seal", "seal")
     if says_seal and not closes:
         vessel.say((*route, "path"), _why_no_seal(vessel, was_closed), "seal")
-    for group in trapped(vessel.apparatus, vessel.positions):
-        if vessel.loaded and valves:
-            vessel.say(
-                (*route, "valves"),
-                f"this shuts off {listed(sorted(group))}, where no relief device is: "
-                "liquid caught there has nowhere to go when it warms",
-                "trapped space",
-            )
+    if vessel.loaded and valves:
+        _trapped(vessel, route)
     opened = {tag for tag, at in valves.items() if at == "open"} & {o.tag for o in vessel.apparatus.openings}
     if opened and was_closed and vessel.loaded and not vessel.empty_shown:
         vessel.say((*route, "valves"), f"{listed(sorted(opened))} is opened before the vessel is shown to be empty")
     return closes
+
+
+def _trapped(vessel: _Vessel, route: Route) -> None:
+    """Spaces shut off without relief, each told once.
+
+    The charge's own space in a vessel without any relief is not among them: how much is in it is known, so its
+    pressure is, and the margins judge it; that nothing relieves it is told as an advice.
+    """
+    own, relieved = vessel.apparatus.spaces[0], {device.space for device in vessel.apparatus.relief}
+    everything = joined_spaces(vessel.apparatus, {}, own)
+    for group in trapped(vessel.apparatus, vessel.positions):
+        if group in vessel.told or (own in group and not everything & relieved):
+            continue
+        vessel.told.add(group)
+        vessel.say(
+            (*route, "valves"),
+            f"this shuts off {listed(sorted(group))}, where no relief device is: "
+            "liquid caught there has nowhere to go when it warms",
+            "trapped space",
+        )
+
+
+def no_relief(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
+    """Rule 'no relief device': a sealed vessel that nothing relieves is for whoever answers for it to allow."""
+    own = joined_spaces(apparatus, {}, apparatus.spaces[0])
+    if not own & {device.space for device in apparatus.relief}:
+        yield Found(
+            "no relief device",
+            ("apparatus",),
+            f"nothing relieves the {apparatus.spaces[0]}: only charge and temperature keep its pressure; "
+            f"ask {apparatus.approved.by} whether it may be used so",
+            "advice",
+        )
 
 
 def _why_no_seal(vessel: _Vessel, was_closed: bool) -> str:

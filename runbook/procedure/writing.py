@@ -17,7 +17,7 @@ from runbook.procedure.model import Procedure
 from runbook.procedure.reader import Loaded
 from runbook.procedure.rules_guard import guards
 from runbook.procedure.rules_held import held_by_hand
-from runbook.procedure.rules_order import order
+from runbook.procedure.rules_order import no_relief, order
 from runbook.procedure.rules_people import holds, roles
 from runbook.procedure.rules_readings import readings
 from runbook.procedure.rules_tags import unknown_tags
@@ -31,6 +31,7 @@ RULES: Final[tuple[Rule, ...]] = (
     roles,
     holds,
     order,
+    no_relief,
     guards,
     held_by_hand,
     readings,

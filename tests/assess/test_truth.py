@@ -4,11 +4,14 @@ from __future__ import annotations
 
 from datetime import date
 from pathlib import Path
+from typing import get_args
 
 import pytest
 
 from runbook.answers import Finding
 from runbook.assess.bind import bind
+from runbook.procedure.reader import read_procedure
+from runbook.procedure.steps import Shown
 from tests.assess.scenes import loaded
 
 ISSUED = date(2031, 3, 2)
@@ -69,3 +72,18 @@ def test_a_sight_asked_for_that_does_not_come(tmp_path: Path) -> None:
     assert "'rain' is not what will be seen" in finding.message
     assert "meniscus" in finding.message
     assert found(tmp_path, {"show: [meniscus, haze]": "show: [liquid height, haze]"}, "words and sight") == []
+
+
+def test_an_unknown_haze_is_not_said_to_be_missing(tmp_path: Path) -> None:
+    """Of xenon no amplitudes are known: that its haze is not computed is an advice, never 'it will not be seen'."""
+    path = Path(__file__).parents[1] / "procedure" / "good" / "xenon.yaml"
+    said = [f for f in bind(read_procedure(path), ISSUED).findings if f.rule == "words and sight"]
+    assert [f.severity for f in said] == ["advice"]
+    assert "haze of xenon is not computed" in said[0].message
+
+
+def test_what_comes_is_told_in_words_one_may_write(tmp_path: Path) -> None:
+    """The names after 'there will be' are those that 'show' takes."""
+    (finding,) = found(tmp_path, {"show: [meniscus, haze]": "show: [rain, haze]"}, "words and sight")
+    names = finding.message.rsplit(": ", 1)[1].split(", ")
+    assert set(names) <= set(get_args(Shown))

@@ -27,6 +27,7 @@ def test_the_shipped_files_in_si(tmp_path: Path) -> None:
     assert procedure.room.volume == Bounded(180.0)
     assert procedure.issue.date == datetime.date(2031, 3, 2)
     assert vessel.volume.free.value == pytest.approx(250e-6, rel=1e-12)
+    assert vessel.window is not None
     assert vessel.window.high == pytest.approx(0.054, rel=1e-12)
     assert vessel.mawp.rating == Level(160e5, "gauge")
     source = vessel.heat_source

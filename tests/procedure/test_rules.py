@@ -8,6 +8,7 @@ import pytest
 
 from runbook.answers import Hazard
 from runbook.procedure.model import DoStep
+from runbook.procedure.rules_order import no_relief, order
 from runbook.procedure.steps import HazardName
 from runbook.procedure.writing import findings
 from tests.procedure.files import PROCEDURE, found, read, word_at
@@ -197,6 +198,22 @@ def test_relief_that_can_be_shut_off_is_an_error(tmp_path: Path) -> None:
     assert found(tmp_path, "trapped space", None, vessel)
 
 
+def test_a_vessel_that_nothing_relieves_is_judged_by_its_margins(tmp_path: Path) -> None:
+    """Of a vessel without any relief its own space is no trap, as its charge is known; a line shut off is, told once.
+
+    That nothing relieves it is an advice to ask whoever answers for it.
+    """
+    good = read(tmp_path)
+    bare = good.apparatus.model_copy(update={"relief": ()})
+    trap = [one.message for one in order(good.procedure, bare) if one.rule == "trapped space"]
+    assert len(trap) == 1
+    assert "shuts off low gauge line, where" in trap[0]
+    (advice,) = no_relief(good.procedure, bare)
+    assert advice.severity == "advice"
+    assert bare.approved.by in advice.message
+    assert list(no_relief(good.procedure, good.apparatus)) == []
+
+
 def test_a_tolerance_closer_than_the_code_is_doubted(tmp_path: Path) -> None:
     """ASME VIII-1 allows a disc of 130 bar 5 %: a file that says 1 % is warned."""
     (problem,) = found(tmp_path, "relief tolerance", None, {"tolerance: 5 %": "tolerance: 1 %"})
@@ -226,8 +243,6 @@ def test_an_old_charge_is_proved_again_before_it_is_warmed(tmp_path: Path) -> No
     part = good.procedure.parts[2].model_copy(update={"steps": (step,)})
     start = dict(good.procedure.at_start) | {"V1": "shut", "V2": "shut"}
     changed = good.procedure.model_copy(update={"charge": "already loaded", "parts": (part,), "at_start": start})
-    from runbook.procedure.rules_order import order
-
     said = [f for f in order(changed, good.apparatus) if f.rule == "charge"]
     assert len(said) == 1
     assert "proved again" in said[0].message

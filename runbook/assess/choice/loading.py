@@ -12,6 +12,7 @@ from runbook.assess.choice.sight import Choice, largest
 from runbook.assess.corners import temperature_at_pressure
 from runbook.assess.limits import closed_extremes, margins
 from runbook.assess.scene import Scene
+from runbook.assess.sights.marks import is_seen, window_of
 from runbook.charge.filling import mass_from_height
 from runbook.errors import OutsideValidity, RunbookError
 from runbook.quantities import Bounded
@@ -86,9 +87,9 @@ def height(choice: Choice, mass: float) -> Height | None:
             found.append(shape.height(state.liquid))
     except RunbookError:
         return None
-    window = choice.apparatus.window
     low, high = min(found), max(found)
-    seen = (window.low or 0.0) <= low and high <= (window.high or shape.full_height)
+    window = window_of(scene)
+    seen = is_seen(scene) and window.low <= low and high <= window.high
     return Height(low, found[0], high, middle, seen, _proves(choice, scene, found[0], middle))
 
 

@@ -11,6 +11,7 @@ from runbook.assess.bounds import charge_bounds
 from runbook.assess.boxes import viewed_shape
 from runbook.assess.choice.standard import Wanted, standard_scene, tolerance
 from runbook.assess.scene import Scene
+from runbook.assess.sights.marks import window_of
 from runbook.errors import OutsideValidity
 from runbook.fluids.substance import Substance, substance
 
@@ -51,6 +52,8 @@ class Choice:
     def _impossible(self) -> str:
         """Why this sight cannot be had in this vessel at all; empty where it can."""
         critical, triple = self.fluid.critical_temperature, self.fluid.triple_temperature
+        if self.apparatus.window is None:
+            return "this vessel has no window: no charge shows anything"
         cold, hot = self.wanted.room_coldest, self.wanted.warm_to
         name = self.fluid.name
         if critical <= cold:
@@ -106,7 +109,7 @@ class Choice:
     def _seen_cold(self) -> float | None:
         """Charge [kg] whose surface stands at the lower edge of the window in the coldest room."""
         scene = self.scene(self.fluid.critical_density * self.volume)
-        share = viewed_shape(scene).volume_below(self.apparatus.window.low or 0.0)
+        share = viewed_shape(scene).volume_below(window_of(scene).low)
         try:
             both = self.fluid.saturation(self.wanted.room_coldest)
         except OutsideValidity:

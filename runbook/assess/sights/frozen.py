@@ -5,6 +5,7 @@ from __future__ import annotations
 from runbook.answers import Sight
 from runbook.assess.scene import Scene
 from runbook.assess.sights import phrases as say
+from runbook.assess.sights.marks import is_seen
 from runbook.charge.outlet import snow
 from runbook.fluids.state import Region, State
 
@@ -70,10 +71,11 @@ def letting_down(scene: Scene, temperature: float) -> tuple[Sight, ...]:
     """While a way out is open: boiling, what freezes in the vessel, snow at the outlet. temperature [K]."""
     fluid, room = scene.substance, scene.barometer.middle_Pa
     found: list[Sight] = []
-    if fluid.triple_temperature + MELTING < temperature < fluid.critical_temperature:
+    inside = is_seen(scene)
+    if inside and fluid.triple_temperature + MELTING < temperature < fluid.critical_temperature:
         found.append(Sight("While liquid is left it boils: bubbles rise all through it and the wall grows cold.", True,
                            of="boiling", numbers=(("wall", temperature, "K"),), trust=say.BOIL_TRUST))  # fmt: skip
-    elif fluid.solid is not None and temperature <= fluid.triple_temperature + MELTING:
+    elif inside and fluid.solid is not None and temperature <= fluid.triple_temperature + MELTING:
         found.append(Sight(f"What liquid is left freezes at {say.at(fluid.triple_temperature)} and stays as solid.",
                            True, of="solid", numbers=(("triple point", fluid.triple_temperature, "K"),),
                            trust=say.MELT_TRUST))  # fmt: skip

@@ -3,16 +3,20 @@
 from __future__ import annotations
 
 import contextlib
+from typing import get_args
 
 from runbook.answers import ChargeBox, Sight
 from runbook.assess.course import Held
 from runbook.assess.scene import Scene
 from runbook.assess.sights.frozen import letting_down, melting_sight, melts
 from runbook.assess.sights.looking import Look, computed, written
+from runbook.assess.sights.marks import is_seen
 from runbook.assess.sights.path import path_sights
 from runbook.assess.walk import VesselState, Walked
 from runbook.errors import OutsideValidity
+from runbook.fluids.optics import haze_known
 from runbook.procedure.model import CoolTo, DoStep, QuickStep, WarmTo
+from runbook.procedure.steps import Shown
 
 _KINDS = {"liquid height": "meniscus"}
 """A name that an author may use -> the kind of the computed sight, where they differ."""
@@ -53,6 +57,8 @@ def live_sights(
 
 def _held(scene: Scene, held: Held, state: VesselState) -> tuple[Sight, ...]:
     """While a hand lets it rise: the solid melts, if it comes so far; then what the liquid does with the hand gone."""
+    if not is_seen(scene):
+        return ()
     fluid = scene.substance
     density = state.high_kg / scene.apparatus.volume.free.value
     found: list[Sight] = []
@@ -70,11 +76,16 @@ def asked_for(line: Walked | None) -> tuple[str, ...]:
 
 
 def not_to_come(scene: Scene, line: Walked) -> tuple[tuple[str, ...], tuple[str, ...]]:
-    """(names asked for that do not come on the line's path, kinds that come); nothing computed: neither."""
-    come = tuple(dict.fromkeys(sight.of for sight in line_sights(scene, line)[0] if sight.computed))
+    """(names asked for that do not come on the line's path, names that do); nothing computed: neither.
+
+    A name whose figures are not known for this fluid is in neither: nobody can say that it does not come.
+    """
+    come = {sight.of for sight in line_sights(scene, line)[0] if sight.computed}
     if not come:
         return (), ()
-    return tuple(name for name in asked_for(line) if _KINDS.get(name, name) not in come), come
+    unknown = set() if haze_known(scene.substance) else {"haze"}
+    missing = tuple(n for n in asked_for(line) if n not in unknown and _KINDS.get(n, n) not in come)
+    return missing, tuple(name for name in get_args(Shown) if _KINDS.get(name, name) in come)
 
 
 def _aim(scene: Scene, verb: WarmTo | CoolTo) -> float:

@@ -14,7 +14,7 @@ from runbook.assess.scene import Scene
 from runbook.assess.sights import phrases as say
 from runbook.assess.sights.beads import bead_sights
 from runbook.assess.sights.frozen import frost_sight, letting_down, solid_sight
-from runbook.assess.sights.marks import VISIBLE, Marks, marks
+from runbook.assess.sights.marks import VISIBLE, Marks, is_seen, marks
 from runbook.assess.sights.surface import (
     boiling_sight,
     contrast_sight,
@@ -81,6 +81,8 @@ def computed(scene: Scene, look: Look) -> tuple[Sight, ...]:
         return letting_down(scene, look.temperature)
     frost = frost_sight(scene, look.temperature)
     around = () if frost is None else (frost,)
+    if not is_seen(scene):
+        return around
     if not look.known:
         if _only_gas(scene, look):
             return (Sight("No surface: at most gas is left.", True, of="no liquid", trust=say.GAS_TRUST,

@@ -63,9 +63,17 @@ def marks(scene: Scene, mass: float) -> Marks:
     return scene.seen[mass]
 
 
+def is_seen(scene: Scene) -> bool:
+    """Whether anything of the inside is seen at all: the vessel has a window."""
+    return scene.apparatus.window is not None
+
+
 def window_of(scene: Scene) -> Window:
-    """The span of the window; the file's model allows none without two ends."""
+    """The span of the window, whose ends the file's model demands; of a vessel without one, where is_seen is False,
+    all of the inside."""
     span = scene.apparatus.window
+    if span is None:
+        return Window(0.0, viewed_shape(scene).full_height)
     return Window(span.low or 0.0, span.high if span.high is not None else viewed_shape(scene).full_height)
 
 

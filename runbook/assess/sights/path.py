@@ -14,7 +14,7 @@ from runbook.assess.sights import phrases as say
 from runbook.assess.sights.beads import bead_path
 from runbook.assess.sights.frozen import ICE_POINT, melting_sight, melts
 from runbook.assess.sights.looking import NEAR_CRITICAL, Look, computed
-from runbook.assess.sights.marks import Marks, marks
+from runbook.assess.sights.marks import Marks, is_seen, marks
 from runbook.assess.sights.surface import back_sight, contrast_numbers, end_sight
 from runbook.errors import RunbookError
 
@@ -32,7 +32,8 @@ def path_sights(scene: Scene, from_K: float, to_K: float, mass: float) -> tuple[
     warming = to_K >= from_K
     charge = marks(scene, mass)
     between: Found = []
-    for part in (_melting, _surface, _haze, _contrast, _beads, _frost):
+    inside_too = (_melting, _surface, _haze, _contrast, _beads) if is_seen(scene) else ()
+    for part in (*inside_too, _frost):
         try:
             between += part(scene, charge, warming)
         except RunbookError:

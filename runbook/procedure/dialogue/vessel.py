@@ -27,7 +27,7 @@ volume:
   source: ‹measured›
 shape: ‹shape›          # or: lying cylinder, upright cylinder, sphere
 diameter: ‹diameter›         # inside
-window: ‹window›          # lowest and highest visible height above the inside bottom
+window: ‹window›          # lowest and highest visible height above the inside bottom; no window: no line
 body: {heat_capacity: ‹metal›, from_fluid: ‹from_fluid›, loss_to_room: ‹loss›}
 
 mawp: {rating: ‹mawp›, source: ‹mawp_source›}

@@ -70,7 +70,7 @@ def _reached(scene: Scene, line: Walked, cause: str) -> list[Margin]:
         lowest = scene.barometer.low_Pa
         reach = replace(start, cold=during.cold, lowest_pressure=lowest, released=line.before.high_kg)
         return margins(scene, reach, line.before.valves, cause)
-    if during.loaded and during.closed:
+    if during.bears:
         reach = closed_extremes(scene, during.high_kg, during.hot, during.cold)
     else:
         released = during.high_kg if during.loaded and not line.before.loaded else 0.0

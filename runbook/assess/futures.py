@@ -107,7 +107,7 @@ def _future(
 
 
 def _reach(scene: Scene, state: VesselState, hot: float) -> Extremes:
-    if not state.loaded or not state.closed:
+    if not state.bears:
         released = state.high_kg if state.letting_down else 0.0
         return open_extremes(scene, hot, state.cold, released)
     return closed_extremes(scene, state.high_kg, hot, state.cold)

@@ -174,6 +174,7 @@ def _state(scene: Scene, lines: Sequence[Walked], question: Question, box: Charg
         loaded=loaded,
         closed=closed and loaded,
         letting_down=loaded and not closed and (planned.letting_down or planned.closed),
+        filled=planned.filled and not closed,
         low_kg=low,
         high_kg=high,
         valves=dict(planned.valves) | dict(question.valves),
@@ -220,7 +221,7 @@ def _wall(scene: Scene, state: VesselState, read: Observation | None, rate: floa
 
 def _reach(scene: Scene, state: VesselState, readings: Readings, held: Held | None) -> Extremes:
     """Extremes now: the worse of measured and computed, plus U; held: a hand lets go before it comes further."""
-    if not state.loaded or (not state.closed and not state.letting_down):
+    if not state.bears and not (state.loaded and state.letting_down):
         return open_extremes(scene, state.hot, state.cold)
     if held is not None:
         reach = held_reach(scene, held, state, hottest_body(scene, state))

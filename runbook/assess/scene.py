@@ -13,6 +13,7 @@ from runbook.answers import ChargeBox, Explanation, Margin
 from runbook.apparatus.model import Apparatus
 from runbook.apparatus.model import Instrument as InstrumentFile
 from runbook.assess.assumptions import ALL, Assumptions
+from runbook.charge.blowdown import coldest_of_gas
 from runbook.charge.filling import air_pressure
 from runbook.errors import FileProblems, InputUnusable
 from runbook.fluids.substance import Substance, substance
@@ -67,6 +68,8 @@ class Scene:
     """Charge and its U [kg] that a height [m] at a temperature [K] means."""
     explained: dict[tuple[object, ...], tuple[Explanation, ...]] = field(init=False, default_factory=dict)
     """Explanations by the readings they explain."""
+    let_downs: dict[tuple[float, float, float], float] = field(init=False, default_factory=dict)
+    """Coldest wall [K] of a let-down, by most charge [kg], coldest and hottest wall it begins with [K]."""
     seen: dict[float, Marks] = field(init=False, default_factory=dict)
     """What changes to the eye on the path of a charge [kg]."""
     _pressures: dict[tuple[float, float], tuple[float, float]] = field(init=False, default_factory=dict)
@@ -152,6 +155,29 @@ class Scene:
         The coldest wall that loading, or a let-down to the room, can give.
         """
         return min(self.room_coldest, self.substance.boiling_temperature(self.barometer.low_Pa))
+
+    @property
+    def comes_as_gas(self) -> bool:
+        """It is filled with gas at the temperature of the room, under the pressure of the charge."""
+        charge = self.procedure.charge
+        return not isinstance(charge, str) and charge.loaded_as == "gas"
+
+    def coldest_let_down(self, high_kg: float, cold: float, hot: float) -> float:
+        """Coldest wall [K] of a let-down of at most high_kg [kg] to the room, begun between cold and hot [K].
+
+        That of its liquid or solid in the open, unless it is gas all the way.
+        """
+        key = (high_kg, cold, hot)
+        if key not in self.let_downs:
+            body = self.apparatus.body.heat_capacity.low
+            ends = [
+                coldest_of_gas(self.substance, high_kg, self.volume[0], start, self.barometer.low_Pa, body)
+                for start in (cold, hot)
+            ]
+            known = [one for one in ends if one is not None]
+            open_air = min(cold, self.coldest_in_the_open)
+            self.let_downs[key] = max(open_air, min(cold, *known)) if len(known) == len(ends) else open_air
+        return self.let_downs[key]
 
     @cached_property
     def gas_volume(self) -> float | None:

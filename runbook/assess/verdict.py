@@ -31,7 +31,7 @@ def line_findings(
             "certificate",
             "error" if c.state != "not known" else "warning",
             *_dated_at(loaded, c),
-            f"{c.tag}: {c.what} {_DATED[c.state]} (until {c.until}). Renew it, or plan another date.",
+            f"{c.tag}: {c.what} {_DATED[c.state]}{_what_to_do(c, loaded)}",
             loaded.apparatus_file,
         )
         for c in dated
@@ -46,6 +46,12 @@ def line_findings(
         ]
         found += _gates(lines, index, at)
     return tuple(found)
+
+
+def _what_to_do(one: Certificate, loaded: Loaded) -> str:
+    if one.state == "not known":
+        return f": find it out, or ask {loaded.apparatus.approved.by}; until then nothing is within limits"
+    return f" (until {one.until}). Renew it, or plan another date."
 
 
 def _dated_at(loaded: Loaded, one: Certificate) -> Place:

@@ -48,6 +48,13 @@ class VesselState:
     """Positions by tag."""
     source: str
     """'on', 'off', 'unplugged', 'do not know' or 'none'."""
+    filled: bool = False
+    """Gas stands in it under its full pressure, though a way is open: the one to what it is filled from."""
+
+    @property
+    def bears(self) -> bool:
+        """A charge presses on it."""
+        return self.loaded and (self.closed or self.filled)
 
 
 @dataclass(frozen=True, slots=True)
@@ -155,20 +162,23 @@ def _one(
     seals = before.loaded and not before.closed and (ends_closed or course.closes)
     if isinstance(verb, Load):
         low, high = verb.load.low, verb.load.high
-        during = replace(during, loaded=True, low_kg=low, high_kg=high, cold=scene.coldest_in_the_open)
+        gas = scene.comes_as_gas
+        cold = during.cold if gas else scene.coldest_in_the_open
+        during = replace(during, loaded=True, low_kg=low, high_kg=high, cold=cold, filled=gas)
     if seals:
         # Of what was let down before nobody knows how little is left; never more than was closed in first.
         low = 0.0 if before.letting_down else sealed[0]
         during = replace(
             during, closed=True, letting_down=False, low_kg=low, high_kg=sealed[1],
-            hot=max(during.hot, scene.room_hottest),
+            hot=max(during.hot, scene.room_hottest), filled=False,
         )  # fmt: skip
     during = _moved(scene, during, verb)
     opened = (before.closed or course.closes) and not ends_closed
     lets_down = isinstance(verb, LetDownTo) or opened
     let_down = during
     if lets_down:
-        let_down = replace(during, closed=False, letting_down=True, cold=scene.coldest_in_the_open)
+        cold = scene.coldest_let_down(before.high_kg, during.cold, during.hot)
+        let_down = replace(during, closed=False, letting_down=True, cold=cold, filled=False)
     if not seals:
         # A sequence that closes and lets go again stands in the line closed, which is the worse of the two.
         during = let_down
@@ -245,7 +255,7 @@ def _after(scene: Scene, state: VesselState, step: Step | Parked, verb: Path | N
     if isinstance(step, EmptyStep):
         return replace(
             state, loaded=False, closed=False, letting_down=False, low_kg=0.0, high_kg=0.0,
-            hot=scene.room_hottest, cold=scene.room_coldest,
+            hot=scene.room_hottest, cold=scene.room_coldest, filled=False,
         )  # fmt: skip
     if isinstance(verb, WarmTo):
         # The step ends with the wall at its target; from there only the room moves it.

@@ -47,7 +47,8 @@ def _on_dial(route: Route, read: ReadStep, one: Instrument) -> Iterator[Found]:
             yield Found(
                 "reading outside dial",
                 route,
-                f"{one.tag} ends at {_said(bottom, one.dial)} and {_said(top, one.dial)}: this cannot be read on it",
+                f"{one.tag} ends at {_said(bottom, one.dial)} and {_said(top, one.dial)}: this cannot be read on it; "
+                + _within(end, bottom, slack, one.dial),
             )
             return
     if low is not None and high is not None:
@@ -61,6 +62,13 @@ def _on_dial(route: Route, read: ReadStep, one: Instrument) -> Iterator[Found]:
             )
     if high is not None and one.reads == "pressure" and high > bottom + _STEADY_SHARE * (top - bottom):
         yield Found("high on the dial", route, f"above three quarters of the scale of {one.tag}", "advice")
+
+
+def _within(end: float, bottom: float, slack: float, dial: Dial) -> str:
+    if end > bottom:
+        return "write a range that ends on the dial, or read another gauge"
+    lowest = f"begin at {_said(bottom - slack, dial)}" if slack else "begin on the dial"
+    return f"{lowest}, or leave that end out: up to ..."
 
 
 def _ends(read: ReadStep) -> tuple[float | None, float | None]:

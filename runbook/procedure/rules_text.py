@@ -15,13 +15,15 @@ from runbook.procedure.document import Route
 from runbook.procedure.lines import Found, lines_of, texts_of
 from runbook.procedure.model import DoStep, Procedure, QuickStep, StepWarning
 
-_VERBS: Final = """add adjust allow apply ask attach begin blow bring brush call carry check clamp clean clear close
-collect compare confirm connect cool count cover darken detach disconnect do dry drain dim drop empty fill find
-fit fix follow give go hang have heat insert install keep lead leave let lift light listen load lock loosen look lower
-make mark measure mount move note observe open place plug point pour press prove pull purge push put raise read
-record release remove repeat replace report reset return rinse rotate screw seal send set shake show shut slide
-stand start step stir stop store swap sweep switch tag take tap tare tell test tie tighten tilt touch turn undo
-unplug unscrew use vent ventilate verify wait warm wash watch wear weigh wipe write"""
+_VERBS: Final = """add adjust align allow apply ask attach begin bleed blow boil bring brush call carry catch check
+chill clamp clean clear close collect compare confirm connect cool count cover darken detach dim dip disconnect do
+drain drive drop dry empty evacuate explain fill find fit fix flush follow freeze give go guide hand hang have heat
+hook immerse insert install keep lay lead leave let lift light listen load lock look loosen lower make mark measure
+melt mount move note observe open pack pass place plug point pour press prove pull pump purge push put raise reach
+read record refill release remove repeat replace report reset return rinse rotate screw seal seat send set shade shake
+shine show shut slide slip spread squeeze stand start steady step stir stop store swap sweep switch tag take tap tare
+tell test tie tighten tilt touch trip try turn twist unclip undo unlock unplug unscrew unwrap use vent ventilate
+verify wait warm warn wash watch wear weigh wind wipe wrap write zero"""
 VERBS: Final = frozenset(_VERBS.split())
 """Verbs a step may begin with."""
 _NO_ACT: Final = frozenset({"let", "wait", "watch", "step", "leave"})

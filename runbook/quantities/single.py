@@ -92,7 +92,7 @@ def to_si(number: str, found: Unit, text: str) -> float:
     if found.reference == "absolute" and result < 0:
         refuse(text, "is an absolute pressure below zero", "check the sign, or write a gauge pressure")
     if found.reference in ("gauge", "vacuum") and result < _LOWEST_GAUGE_PA:
-        refuse(text, "is lower than an empty vessel", "a gauge pressure ends at about -1 bar(g)")
+        refuse(text, "is lower than an empty vessel", "write -1 bar(g), or leave that end out: up to ...")
     return result
 
 

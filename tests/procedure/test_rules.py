@@ -167,6 +167,12 @@ def test_wording_is_warned_of_not_refused(tmp_path: Path, rule: str, old: str, n
     assert [p.severity for p in found(tmp_path, rule, {old: new})] == [severity]
 
 
+@pytest.mark.parametrize("verb", ["Drive", "Lower", "Evacuate", "Bleed"])
+def test_more_orders_are_known(tmp_path: Path, verb: str) -> None:
+    """Verbs that a good author used are orders too."""
+    assert found(tmp_path, "verb first", {"do: Press tare": f"do: {verb} the cell"}) == []
+
+
 def test_the_shipped_procedure_is_clean(tmp_path: Path) -> None:
     """No rule finds anything in it, not even an advice."""
     assert [str(p) for p in findings(read(tmp_path))] == []
@@ -212,6 +218,14 @@ def test_a_vessel_that_nothing_relieves_is_judged_by_its_margins(tmp_path: Path)
     assert advice.severity == "advice"
     assert bare.approved.by in advice.message
     assert list(no_relief(good.procedure, good.apparatus)) == []
+
+
+def test_a_reading_below_the_dial_is_told_what_to_write(tmp_path: Path) -> None:
+    """The finding names where the range may begin: what the gauge may be off below its first mark."""
+    (problem,) = found(tmp_path, "reading outside dial", {"accept: -0.1 bar(g) to 0.1": "accept: -0.4 bar(g) to 0.1"})
+    assert "begin at -0.15 bar(g), or leave that end out" in problem.message
+    (problem,) = found(tmp_path, "reading outside dial", {"accept: up to 1.5 bar(g)": "accept: up to 200 bar(g)"})
+    assert "ends on the dial" in problem.message
 
 
 def test_a_tolerance_closer_than_the_code_is_doubted(tmp_path: Path) -> None:

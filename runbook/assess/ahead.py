@@ -15,6 +15,7 @@ from runbook.assess.barred import barred_margins
 from runbook.assess.futures import hottest_body, left_alone
 from runbook.assess.held import held_reach, stuck_margins
 from runbook.assess.limits import closed_extremes, margins, open_extremes, worst_of
+from runbook.assess.open_heat import steam_rise
 from runbook.assess.rates import rate_margins
 from runbook.assess.scene import Scene
 from runbook.assess.walk import VesselState, Walked, by_source
@@ -74,7 +75,7 @@ def _reached(scene: Scene, line: Walked, cause: str) -> list[Margin]:
         reach = closed_extremes(scene, during.high_kg, during.hot, during.cold)
     else:
         released = during.high_kg if during.loaded and not line.before.loaded else 0.0
-        reach = open_extremes(scene, during.hot, during.cold, released)
+        reach = open_extremes(scene, during.hot, during.cold, released, steam_rise(scene, during))
     return margins(scene, reach, during.valves, cause)
 
 

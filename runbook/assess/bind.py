@@ -21,6 +21,7 @@ from runbook.assess.bounds import charge_bounds
 from runbook.assess.evidence.desk import what_instruments_tell
 from runbook.assess.making_safe import making_safe_findings
 from runbook.assess.mend import mends
+from runbook.assess.open_heat import open_heat_findings
 from runbook.assess.path import planned_path
 from runbook.assess.plan_line import plan_line
 from runbook.assess.scene import Scene, open_scene
@@ -32,6 +33,7 @@ from runbook.procedure.model import (
     LetDownTo,
 )
 from runbook.procedure.reader import Loaded
+from runbook.procedure.rules_guard import LOADS
 from runbook.procedure.writing import findings as writing_findings
 from runbook.quantities import Level
 
@@ -62,10 +64,11 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
     vent = lets_down or next((t for t in outside if any(v.tag == t for v in apparatus.valves)), None)
     forbidden = scene.substance.data.hazards.release_forbidden
     found = (
-        tuple(Finding(p.rule, p.severity, p.line, p.column, p.message) for p in writing_findings(loaded))
+        _written(scene)
         + barred_findings(scene)
         + line_findings(loaded, walked, plan_lines, dated)
         + truth_findings(scene, walked, places)
+        + tuple(open_heat_findings(scene, walked, places))
         + single_fault_findings(scene, walked, places)
         + making_safe_findings(scene, walked, plan_lines, None if forbidden else vent, places)
     )
@@ -115,6 +118,16 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
         make_safe_also=tuple((a.do, a.who or "") for a in procedure.make_safe_also),
         path=planned_path(scene, walked),
         telling=what_instruments_tell(scene),
+    )
+
+
+def _written(scene: Scene) -> tuple[Finding, ...]:
+    """What the writing rules find, but for what they cannot know: a fluid that is neither cold nor under pressure."""
+    mild = f"this {LOADS}" if scene.stays_liquid else None
+    return tuple(
+        Finding(p.rule, p.severity, p.line, p.column, p.message)
+        for p in writing_findings(scene.loaded)
+        if mild is None or not p.message.startswith(mild)
     )
 
 

@@ -11,6 +11,7 @@ from runbook.apparatus.model import HeatSource
 from runbook.assess.heat_time import seconds_to_pressure, seconds_to_temperature
 from runbook.assess.held import held_vent, let_go, stuck_margins, stuck_pressure
 from runbook.assess.limits import Extremes, closed_extremes, margins, open_extremes, worst_of
+from runbook.assess.open_heat import steam_rise
 from runbook.assess.scene import Scene
 from runbook.assess.walk import VesselState
 from runbook.quantities import NotKnown
@@ -109,7 +110,7 @@ def _future(
 def _reach(scene: Scene, state: VesselState, hot: float) -> Extremes:
     if not state.bears:
         released = state.high_kg if state.letting_down else 0.0
-        return open_extremes(scene, hot, state.cold, released)
+        return open_extremes(scene, hot, state.cold, released, steam_rise(scene, state))
     return closed_extremes(scene, state.high_kg, hot, state.cold)
 
 

@@ -18,6 +18,8 @@ from runbook.assess.scene import Scene
 from runbook.errors import OutsideValidity
 from runbook.quantities import Level, NotKnown, Range
 
+_UNVENTED = "how much steam its open way lets out is not known: write the bore of its valve"
+
 
 @dataclass(frozen=True, slots=True)
 class Extremes:
@@ -51,10 +53,13 @@ def lowest_pressure(scene: Scene, high_kg: float, cold: float) -> float:
         return 0.0
 
 
-def open_extremes(scene: Scene, hot: float, cold: float, released: float = 0.0) -> Extremes:
-    """Of an open vessel with walls between cold and hot [K] that gives released [kg] to the room."""
+def open_extremes(scene: Scene, hot: float, cold: float, released: float = 0.0, rise: float | None = 0.0) -> Extremes:
+    """Of an open vessel with walls between cold and hot [K] that gives released [kg] to the room.
+
+    rise: how far its steam brings it above the room's pressure [Pa]; None: that is not known.
+    """
     at = Corner(None, scene.volume[0], hot)
-    worst = Worst(scene.barometer.high_Pa, 0.0, at)
+    worst = Worst(scene.barometer.high_Pa + rise, 0.0, at) if rise is not None else Worst(None, 0.0, at, _UNVENTED)
     return Extremes(worst, scene.barometer.low_Pa, hot, cold, released)
 
 

@@ -146,6 +146,10 @@ class Scene:
         if not self.assume.air:
             return 0.0
         full = self.barometer.high_Pa * self.volume[1] / (GAS_CONSTANT * self.room_coldest)
+        if self.stays_liquid and self.planned[0] > 0.0:
+            # The liquid has driven out the air whose place it took.
+            liquid = self.planned[0] / self.substance.saturation(self.room_coldest).liquid_density
+            return full * max(0.0, 1.0 - liquid / self.volume[1])
         return AIR_OVER_ICE * full
 
     @cached_property
@@ -155,6 +159,13 @@ class Scene:
         The coldest wall that loading, or a let-down to the room, can give.
         """
         return min(self.room_coldest, self.substance.boiling_temperature(self.barometer.low_Pa))
+
+    @cached_property
+    def stays_liquid(self) -> bool:
+        """In the open it stays a liquid, however hot the room: it boils above that."""
+        return self.room_hottest < self.substance.boiling_temperature(self.barometer.low_Pa) and (
+            self.substance.triple_temperature < self.room_coldest
+        )
 
     @property
     def comes_as_gas(self) -> bool:

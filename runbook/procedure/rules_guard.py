@@ -73,11 +73,15 @@ def _hold(
     )
 
 
+LOADS: Final = "loads what is cold or under pressure"
+"""What every loading does, of a fluid that boils below the room's temperature."""
+
+
 def _warning(apparatus: Apparatus, line: Line) -> Iterator[Found]:
     if not isinstance(line.step, DoStep | QuickStep) or line.step.warning is not None:
         return
     for route, _, path, _ in acts_of(line):
-        does = "loads what is cold or under pressure" if isinstance(path, Load) else _raises(apparatus, path)
+        does = LOADS if isinstance(path, Load) else _raises(apparatus, path)
         if does:
             yield Found(
                 "warning missing", route, f"this {does}: say what can hurt and how to avoid it, in a warning", "warning"

@@ -135,12 +135,8 @@ def _verb(vessel: _Vessel, route: Route, path: Path | None, closed: bool) -> Non
     at = (*route, "path")
     if isinstance(path, Load) and closed:
         vessel.say(at, "the vessel is closed here: open a way in before it is loaded")
-    source = vessel.apparatus.heat_source
-    if isinstance(path, WarmTo):
-        if not vessel.loaded:
-            vessel.say(at, "nothing is in the vessel here: there is nothing to warm")
-        elif source is not None and path.by_means_of == source.tag and not closed:
-            vessel.say(at, "the heat source warms a charge that is not sealed yet: seal it before")
+    if isinstance(path, WarmTo) and not vessel.loaded:
+        vessel.say(at, "nothing is in the vessel here: there is nothing to warm")
     if isinstance(path, LetDownTo) and not vessel.loaded:
         vessel.say(at, "nothing is in the vessel here: there is nothing to let down")
     if isinstance(path, OpenContainment) and vessel.loaded and not vessel.empty_shown:

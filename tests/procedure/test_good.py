@@ -10,6 +10,8 @@ from runbook.assess.bind import bind
 from runbook.procedure.reader import read_procedure
 
 FILES = sorted((Path(__file__).parent / "good").glob("*.yaml"))
+UNKNOWN = {"franklin"}
+"""Of a vessel two of whose proofs nobody has: not proved is the true answer."""
 
 
 @pytest.mark.parametrize("path", FILES, ids=lambda path: path.stem)
@@ -18,5 +20,10 @@ def test_a_good_procedure_is_called_good(path: Path) -> None:
     loaded = read_procedure(path)
     plan = bind(loaded, loaded.procedure.issue.date)
     assert [f.message for f in plan.findings if f.severity == "error"] == []
-    assert len([f for f in plan.findings if f.severity == "warning"]) <= 2
-    assert plan.verdict == "within limits"
+    warnings = [f for f in plan.findings if f.severity == "warning"]
+    assert len(warnings) <= 2
+    if path.stem in UNKNOWN:
+        assert plan.verdict == "not proved"
+        assert [f.rule for f in warnings] == ["certificate", "certificate"]
+    else:
+        assert plan.verdict == "within limits"

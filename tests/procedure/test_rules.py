@@ -64,12 +64,6 @@ ERRORS = [
         "      - do: Warm the cell\n        who: performer\n        path: {warm_to: 33 degC, by_means_of: H1}",
         "{warm_to",
     ),
-    (
-        "order",
-        "      - do: Shut V3\n        who: performer",
-        "      - do: Warm the cell\n        who: performer\n        path: {warm_to: 33 degC, by_means_of: H1}",
-        "{warm_to",
-    ),
     ("order", "      - show_empty: {low_gauge: PG2, isolator: V3, wall: TT1, vent: V2}\n", "", "{open_containment"),
     (
         "order",

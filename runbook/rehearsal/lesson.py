@@ -58,12 +58,7 @@ class Lesson:
         """The vessel has come to one temperature [K], by itself the room's, with the charge of the lot in it."""
         world = self.world
         at = world.room_K if start_K is None else start_K
-        vessel = replace(world.vessel, body_K=at, source_K=at if source_K is None else source_K)
-        if vessel.mass > 0.0 and not vessel.in_the_open:
-            mass = self.lot.charge_kg
-            state = self.lot.scene.substance.state(at, mass / self.lot.scene.apparatus.volume.free.value)
-            vessel = replace(vessel, mass=mass, energy=state.internal_energy or vessel.energy)
-        world.vessel = vessel
+        world.stand(at, at if source_K is None else source_K, self.lot.charge_kg)
 
     def go(self, part: int) -> PartRun:
         """Through one part. What lies beyond the models ends it as a line that never ends."""

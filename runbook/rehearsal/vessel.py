@@ -1,23 +1,26 @@
 """The simulated vessel: advance(vessel, controls, dt) is pure; nothing here knows of procedures or screens.
 
-One temperature of the charge, one of the body, one of the source. Closed, the heat balance is the one that left alone
-uses; open, what leaves is equilibrium flow through the holes that are open, and energy and mass are kept. Times show
-the trend. Raises OutsideValidity where the models end.
+Closed, open or empty, heat moves by the one step that left alone uses too; what leaves is equilibrium flow through the
+holes that are open. Mass and energy are kept, and what came and went is counted. Times show the trend. Raises
+OutsideValidity where the models end.
 """
 
 from __future__ import annotations
 
 import contextlib
-from dataclasses import dataclass, replace
+from dataclasses import replace
+from math import inf
 
 from runbook.charge.filling import air_pressure
-from runbook.charge.heat import HeatPath, Lumps
 from runbook.charge.heat import advance as advance_lumps
 from runbook.charge.isochore import Isochore
 from runbook.charge.letdown import Contents, Hole, LetDown
+from runbook.charge.lumps import HeatPath, Lumps, driven_to, exchanged, stored
 from runbook.errors import OutsideValidity
 from runbook.fluids.state import State
 from runbook.fluids.substance import Substance
+from runbook.rehearsal.contents import Controls, Relieving, Tally, Vessel, after_leaving, let_out, warmed
+from runbook.rehearsal.lying import InTheOpen, Lying
 
 _OPEN_CONTACT = 0.1
 """Share of the coupling that lumps of solid, or liquid, in the open have, an estimate [1]."""
@@ -37,64 +40,7 @@ _RESEATS = 0.9
 """Share of its opening pressure at which a relief valve shuts again, common practice [1]."""
 
 
-@dataclass(frozen=True, slots=True)
-class Relieving:
-    """The relief device of the simulated vessel."""
-
-    opens_at: float
-    """Absolute [Pa]; infinite where it does not open at all."""
-    reseats: bool
-    """A valve shuts again; a disc does not."""
-
-
-@dataclass(frozen=True, slots=True)
-class Controls:
-    """What hands, and faults, have set."""
-
-    vent_open: bool
-    """Any way out to the room."""
-    bore: float
-    """Bore of the widest one open [m]."""
-    heating: bool | float
-    """False off; True on up to the cut-out; a number: set point of the source [K]."""
-    room_K: float
-    """[K]"""
-    barometer: float
-    """[Pa]"""
-    port: str = "top"
-    """Where that way out takes from."""
-    leak: float = 0.0
-    """Bore of a leak [m]; 0: tight."""
-    loss: float = 1.0
-    """Share of the body's loss to the room that is left [1]."""
-
-    @property
-    def holes(self) -> tuple[Hole, ...]:
-        """Every way out but the relief."""
-        ways = [Hole(self.bore, self.port)] if self.vent_open and self.bore > 0.0 else []
-        return (*ways, Hole(self.leak, "top")) if self.leak > 0.0 else tuple(ways)
-
-
-@dataclass(frozen=True, slots=True)
-class Vessel:
-    """What is in the simulated vessel now."""
-
-    mass: float
-    """Of the charge [kg]; 0 when empty."""
-    energy: float
-    """Internal energy of the charge [J/kg]."""
-    body_K: float
-    """[K]"""
-    source_K: float
-    """[K]"""
-    in_the_open: bool
-    """Solid or liquid lies in the open vessel at the room's pressure."""
-    released: float = 0.0
-    """Gas given to the room so far [kg]."""
-    air: float = 0.0
-    """Closed in with the charge [mol]."""
-    relief_open: bool = False
-    """A relief device stands open."""
+__all__ = ["Controls", "Relieving", "Simulation", "Tally", "Vessel"]
 
 
 class Simulation:
@@ -104,21 +50,56 @@ class Simulation:
         """volume [m3]."""
         self.substance, self.volume, self.path, self.relief = substance, volume, path, relief
         self._letdown = LetDown(substance, volume)
+        self._open = InTheOpen(substance, volume)
         self._isochore: tuple[float, Isochore] | None = None
         self._state: tuple[tuple[float, float], State] | None = None
 
-    # -- looking --------------------------------------------------------------------------------------
+    # -- hands ----------------------------------------------------------------------------------------
 
     def loaded(self, vessel: Vessel, mass: float, barometer: float) -> Vessel:
         """Solid (or liquid) of a mass [kg] laid into the open vessel, at its temperature in the open."""
-        temperature = self.in_the_open_at(barometer)
-        density = max(mass / self.volume, 20.0)
-        energy = self.substance.state(temperature, density).internal_energy or 0.0
-        return replace(vessel, mass=mass, energy=energy, in_the_open=True)
+        lying = self._open.lying(barometer)
+        # What is too little to fill the vessel with its own vapour comes all the same as what lies there.
+        density = max(mass / self.volume, 2.0 * lying.vapour_density)
+        energy = self.substance.state(lying.temperature, density).internal_energy or 0.0
+        return self._put(replace(vessel, in_the_open=True), mass, energy)
+
+    def _put(self, vessel: Vessel, mass: float, energy: float) -> Vessel:
+        """The vessel with another charge [kg] of an energy [J/kg] in place of what was in."""
+        tally = vessel.tally
+        tally = replace(
+            tally,
+            mass_in=tally.mass_in + mass - vessel.mass,
+            energy_in=tally.energy_in + mass * energy - vessel.mass * vessel.energy,
+        )
+        return replace(vessel, mass=mass, energy=energy, tally=tally)
+
+    def closed_in(self, vessel: Vessel, mass: float, kelvin: float) -> Vessel:
+        """The vessel with so much [kg] closed in, in place of what was, at a temperature [K]."""
+        state = self.substance.state(kelvin, mass / self.volume)
+        return self._put(vessel, mass, vessel.energy if state.internal_energy is None else state.internal_energy)
+
+    def source_filled(self, vessel: Vessel, kelvin: float) -> Vessel:
+        """Fresh water at a temperature [K] in place of what was in the source."""
+        brought = self.path.source_heat_capacity * (kelvin - vessel.source_K)
+        tally = replace(vessel.tally, energy_in=vessel.tally.energy_in + brought)
+        return replace(vessel, source_K=kelvin, tally=tally)
+
+    def stood(self, vessel: Vessel, body_K: float, source_K: float) -> Vessel:
+        """The body has come to one temperature and the source to another [K], by the room."""
+        after = replace(vessel, body_K=body_K, source_K=source_K)
+        given = self.stored(after) - self.stored(vessel)
+        return replace(after, tally=replace(after.tally, from_room=after.tally.from_room + given))
+
+    # -- looking --------------------------------------------------------------------------------------
+
+    def stored(self, vessel: Vessel) -> float:
+        """All the heat in charge, body and source [J], but for a constant."""
+        return stored(self._lumps(vessel), vessel.mass, self.path)
 
     def in_the_open_at(self, barometer: float) -> float:
         """Temperature of what lies in the open [K]."""
-        return self.substance.boiling_temperature(barometer)
+        return self._open.lying(barometer).temperature
 
     def state(self, vessel: Vessel) -> State | None:
         """Of the closed charge; None when empty or in the open."""
@@ -154,9 +135,13 @@ class Simulation:
         while left > 1e-9:
             vessel = self._relieved(vessel, controls)
             if vessel.mass <= _GONE:
-                return self._empty(vessel, controls, left)
+                vessel, step = self._empty(vessel, controls, left)
+                left -= step
+                continue
             if vessel.in_the_open and controls.vent_open and controls.bore > 0.0:
-                return self._open(vessel, controls, left)
+                vessel, step = self._lying(vessel, controls, left)
+                left -= step
+                continue
             vessel = replace(vessel, in_the_open=False)
             holes = self._holes(vessel, controls)
             if holes and not controls.vent_open and self.pressure(vessel, controls) <= controls.barometer * 1.001:
@@ -182,36 +167,66 @@ class Simulation:
     def _holes(self, vessel: Vessel, controls: Controls) -> tuple[Hole, ...]:
         return (*controls.holes, Hole(RELIEF_BORE, "top")) if vessel.relief_open else controls.holes
 
-    def _empty(self, vessel: Vessel, controls: Controls, dt: float) -> Vessel:
-        body = self.path.body_heat_capacity
-        share = min(1.0, dt * self.path.loss_to_room / body) if body > 0 else 1.0
-        warmed = vessel.body_K + share * (controls.room_K - vessel.body_K)
-        return replace(vessel, mass=0.0, in_the_open=False, air=0.0, body_K=warmed)
+    def _empty(self, vessel: Vessel, controls: Controls, longest: float) -> tuple[Vessel, float]:
+        """One step [s] of a vessel with nothing in it; a breath that was left has gone out."""
+        step = min(longest, _LEAK_STEP)
+        return self._warmed(let_out(vessel), controls, step, 0.0, 0.0, 0.0), step
 
-    def _open(self, vessel: Vessel, controls: Controls, dt: float) -> Vessel:
-        """What lies in the open leaves by what the body gives it."""
-        cold = self.in_the_open_at(controls.barometer)
-        watt = _OPEN_CONTACT * self.path.from_fluid * max(0.0, vessel.body_K - cold)
-        gone = min(vessel.mass, watt * dt / self._latent(cold))
-        warmed = self.path.loss_to_room * (controls.room_K - vessel.body_K)
-        body = vessel.body_K + (warmed - watt) * dt / self.path.body_heat_capacity
-        return replace(vessel, mass=vessel.mass - gone, body_K=body, released=vessel.released + gone)
+    def _lying(self, vessel: Vessel, controls: Controls, longest: float) -> tuple[Vessel, float]:
+        """One step [s] of what lies in the open: it leaves by what the body gives it."""
+        lying = self._open.lying(controls.barometer)
+        step = min(longest, _LEAK_STEP)
+        after = self._given_in_the_open(vessel, controls, lying, step)
+        wanted = lying.wants(vessel.mass, vessel.energy)
+        given = after.mass * after.energy - vessel.mass * vessel.energy
+        if given > wanted > 0.0:
+            # The last of it goes within the step: what comes after finds the vessel empty.
+            step *= max(wanted / given, 1e-3)
+            after = self._given_in_the_open(vessel, controls, lying, step)
+        gone = lying.leaving(after.mass, after.energy)
+        if after.mass - gone <= lying.vapour_mass:
+            return let_out(after), step
+        return after_leaving(after, gone, gone * lying.enthalpy), step
 
-    def _latent(self, temperature: float) -> float:
-        """Heat [J/kg] from what lies in the open to its vapour at a temperature [K]."""
-        fluid = self.substance
-        if fluid.solid is not None and temperature < fluid.triple_temperature:
-            return fluid.solid.heat_of_sublimation(temperature)
-        both = fluid.saturation(temperature)
-        return temperature * (both.vapour_entropy - both.liquid_entropy)
+    def _given_in_the_open(self, vessel: Vessel, controls: Controls, lying: Lying, step: float) -> Vessel:
+        after = self._warmed(vessel, controls, step, lying.temperature, inf, _OPEN_CONTACT)
+        if after.energy < vessel.energy:
+            # A body colder than what lies in it is not warmed by it: the vapour between them stands still.
+            return self._warmed(vessel, controls, step, lying.temperature, inf, 0.0)
+        return after
+
+    def _lumps(self, vessel: Vessel) -> Lumps:
+        tally = vessel.tally
+        return Lumps(
+            vessel.energy, vessel.body_K, vessel.source_K, from_room=tally.from_room, from_source=tally.from_source
+        )
+
+    def _path(self, controls: Controls) -> HeatPath:
+        if controls.loss == 1.0:
+            return self.path
+        return replace(self.path, loss_to_room=controls.loss * self.path.loss_to_room)
+
+    def _warmed(
+        self, vessel: Vessel, controls: Controls, dt: float, fluid_K: float, takes_up: float, contact: float
+    ) -> Vessel:
+        """After dt [s] in one step, what leaves left out; the charge by its temperature and what it takes up [J/K]."""
+        path = self._path(controls)
+        limit = driven_to(path, controls.heating)
+        return warmed(vessel, exchanged(
+            self._lumps(vessel), vessel.mass, fluid_K, takes_up, path, controls.room_K, limit, dt, contact
+        ))  # fmt: skip
 
     def _closed(self, vessel: Vessel, controls: Controls, dt: float) -> Vessel:
         isochore = self._isochore_of(vessel.mass / self.volume)
-        energy = max(vessel.energy, isochore.energies[0])
-        path = replace(self.path, loss_to_room=controls.loss * self.path.loss_to_room)
-        lumps = Lumps(energy, vessel.body_K, vessel.source_K)
-        after = advance_lumps(lumps, vessel.mass, isochore, path, controls.room_K, controls.heating, dt)
-        return replace(vessel, energy=after.fluid_energy, body_K=after.body_K, source_K=after.source_K)
+        missing = vessel.mass * (isochore.energies[0] - vessel.energy)
+        if missing > 0.0:
+            # Colder than what is modelled the body gives at once what it would give soon.
+            body_K = vessel.body_K - missing / self.path.body_heat_capacity
+            vessel = replace(vessel, energy=isochore.energies[0], body_K=body_K)
+        after = advance_lumps(
+            self._lumps(vessel), vessel.mass, isochore, self._path(controls), controls.room_K, controls.heating, dt
+        )
+        return warmed(vessel, after)
 
     def _shut(self, vessel: Vessel, controls: Controls, longest: float) -> tuple[Vessel, float]:
         """One step [s] of the closed charge; none that passes the opening of a relief device by more than a little."""
@@ -232,42 +247,16 @@ class Simulation:
         assert state is not None, "something closed is in it"
         if state.pressure <= controls.barometer * 1.001:
             lies = (state.solid or 0.0) > 0.0 or (0.0 < (state.liquid or 0.0) < 1.0)
-            return replace(vessel, in_the_open=lies, mass=vessel.mass if lies else 0.0), 0.0
+            return (replace(vessel, in_the_open=True) if lies else let_out(vessel)), 0.0
         out = [self._letdown.leaving(state, hole, controls.barometer) for hole in holes]
         flow = sum(one.flow for one in out)
         seeps = flow < _SEEPS * vessel.mass
         step = min(longest, _LEAK_STEP if seeps else _STEP, 0.01 * vessel.mass / flow if flow > 0.0 else longest)
         # Implicit in the charge's own warming: a little gas in a warm body must not overshoot it.
-        coupling = self.path.from_fluid * step
-        gap = vessel.body_K - state.temperature
-        heat = coupling * gap / (1.0 + coupling / (vessel.mass * _GAS_CAPACITY))
+        after = self._warmed(vessel, controls, step, state.temperature, vessel.mass * _GAS_CAPACITY, 1.0)
         gone = min(flow * step, 0.5 * vessel.mass)
         carried = sum(one.flow * one.enthalpy for one in out) / flow * gone if flow > 0.0 else 0.0
-        left = vessel.mass - gone
-        body, source = self._warmed(vessel, controls, heat, step)
-        return replace(
-            vessel,
-            mass=left,
-            energy=(vessel.mass * vessel.energy + heat - carried) / left,
-            body_K=body,
-            source_K=source,
-            released=vessel.released + gone,
-            # Air leaves with the vapour it is in.
-            air=vessel.air * (left / vessel.mass),
-        ), step
-
-    def _warmed(self, vessel: Vessel, controls: Controls, given: float, dt: float) -> tuple[float, float]:
-        """Body and source [K] after dt [s] in which the body gave the charge so much [J]."""
-        path = self.path
-        room = controls.loss * path.loss_to_room * (controls.room_K - vessel.body_K) * dt
-        if path.source_heat_capacity <= 0.0:
-            return vessel.body_K + (room - given) / path.body_heat_capacity, vessel.source_K
-        across = path.source_coupling * (vessel.source_K - vessel.body_K) * dt
-        limit = controls.heating if isinstance(controls.heating, float) else path.source_limit_K
-        on = controls.heating is not False and (limit is None or vessel.source_K < limit)
-        power = path.source_power * dt if on else 0.0
-        body = vessel.body_K + (room + across - given) / path.body_heat_capacity
-        return body, vessel.source_K + (power - across) / path.source_heat_capacity
+        return after_leaving(after, gone, carried), step
 
     def _isochore_of(self, density: float) -> Isochore:
         if self._isochore is None or self._isochore[0] != density:

@@ -87,6 +87,11 @@ class World:
         if plan.charge is not None:
             self._already_loaded(0.5 * (plan.charge.low_kg + plan.charge.high_kg))
 
+    @property
+    def simulation(self) -> Simulation:
+        """The physics of the vessel."""
+        return self._simulation
+
     def follow(self, ledger: Ledger) -> None:
         """Do what the run says has been done."""
         line = self._lines[ledger.line] if 0 <= ledger.line < len(self._lines) else None
@@ -156,6 +161,12 @@ class World:
             # Where the models end the last that they said stands.
             self.move_to(Moment(self._at + seconds, 0.0))
         return self.highest_pressure
+
+    def stand(self, body_K: float, source_K: float, charge_kg: float) -> None:
+        """Vessel and source have come to one temperature each [K]; with a charge closed in it is so much [kg]."""
+        self.vessel = self._simulation.stood(self.vessel, body_K, source_K)
+        if self.vessel.mass > 0.0 and not self.vessel.in_the_open:
+            self.vessel = self._simulation.closed_in(self.vessel, charge_kg, body_K)
 
     def at_rest(self) -> bool:
         """Nothing of it moves any more: empty, in the open, or as warm as the room with every limit far."""
@@ -261,8 +272,7 @@ class World:
         return False
 
     def _already_loaded(self, mass: float) -> None:
-        state = self._scene.substance.state(self.room_K, mass / self._scene.apparatus.volume.free.value)
-        self.vessel = replace(self.vessel, mass=mass, energy=state.internal_energy or 0.0)
+        self.vessel = self._simulation.closed_in(self.vessel, mass, self.room_K)
         self.controls = replace(self.controls, vent_open=False, bore=0.0)
 
 

@@ -171,3 +171,5 @@ class PlanLine:
     """What to do when the sight does not come."""
     lasts_s: float | None
     """Estimated duration [s]; None where nobody knows."""
+    falls: bool = False
+    """Its path cools, or lets pressure down: a lower reading a minute later is no contradiction."""

@@ -150,7 +150,8 @@ class Agreement:
     computed_U: float | None
     """Its expanded uncertainty from the thermometer, the charge and the equation [Pa]."""
     proves: str
-    """'thermometer and gauge' (two phases: says nothing of the charge), 'charge' or 'nothing'."""
+    """'thermometer and gauge' (two phases: says nothing of the charge), 'charge' or 'nothing'; 'read apart' where a
+    step moved the vessel between the two readings."""
 
 
 @dataclass(frozen=True, slots=True)

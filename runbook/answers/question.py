@@ -25,6 +25,8 @@ class Observation:
     """The vessel was closed when it was read."""
     beside: bool = False
     """A temperature kept only because a height was read beside it: it says nothing of how warm the wall is now."""
+    line: int = -1
+    """The line in which it was read; -1: nobody says."""
 
 
 @dataclass(frozen=True, slots=True)

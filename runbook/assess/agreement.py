@@ -72,8 +72,12 @@ def agreement(
     box: ChargeBox | None,
     pressure: Observation | None,
     margin_left: float | None,
+    apart: bool = False,
 ) -> Agreement:
-    """Compare; margin_left: the smallest pressure margin of the step leaned on [Pa], None where unknown."""
+    """Compare; margin_left: the smallest pressure margin of the step leaned on [Pa], None where unknown.
+
+    apart: a step moved the vessel between the two readings, which then say nothing of each other.
+    """
     if pressure is None:
         return NO_READING
     read_U = reading_U(scene, pressure)
@@ -82,7 +86,9 @@ def agreement(
         return replace(NO_READING, tag=pressure.tag, read=pressure.value, read_U=read_U)
     band = hypot(read_U, computed.U)
     off = abs(pressure.value - computed.pressure)
-    if off > band:
+    if apart:
+        verdict, proves = "cannot tell", "read apart"
+    elif off > band:
         verdict, proves = "disagrees", "nothing"
     elif margin_left is None or band >= margin_left:
         verdict, proves = "cannot tell", "nothing"

@@ -38,7 +38,7 @@ from runbook.assess.scene import Scene
 from runbook.assess.sights import liquid_height, live_sights
 from runbook.assess.walk import VesselState, Walked, hottest_of, start_state
 from runbook.errors import OutsideValidity
-from runbook.procedure.model import WarmTo
+from runbook.procedure.model import CoolTo, LetDownTo, WarmTo
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,7 +69,9 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     reach = _reach(scene, state, readings, held)
     computed = None
     if box is not None and state.closed and readings.temperature is not None and held is None:
-        computed = computed_pressure(scene, box, readings.temperature, rate)
+        # A thermometer lags downwards too.
+        moving = max(rate, line.rate if line is not None else 0.0)
+        computed = computed_pressure(scene, box, readings.temperature, moving)
     standing = worst_of(margins(scene, reach, state.valves, "now"))
     distance = _distance(scene, state, reach, rate, standing, held is not None)
     found_now = _timed(standing, distance)
@@ -77,7 +79,8 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     alone, _ = left_alone(scene, state, with_times=False)
     proved = _proved(scene, lines, question, box, state)
     left = _pressure_left(ahead)
-    verdict = agreement(scene, computed, box, readings.pressure, left)
+    apart = _read_apart(lines, readings.temperature, readings.pressure)
+    verdict = agreement(scene, computed, box, readings.pressure, left, apart)
     found = _assemble(
         scene,
         question,
@@ -194,6 +197,14 @@ def _readings(scene: Scene, question: Question) -> Readings:
         max(joined, key=lambda o: (o.value, o.sequence), default=None),
         shut,
     )
+
+
+def _read_apart(lines: Sequence[Walked], wall: Observation | None, gauge: Observation | None) -> bool:
+    """The one was read in a line whose path moved the vessel, the other in a later line."""
+    if wall is None or gauge is None or min(wall.line, gauge.line) < 0:
+        return False
+    first, last = sorted((wall.line, gauge.line))
+    return any(isinstance(one.verb, WarmTo | CoolTo | LetDownTo) for one in lines[first:last])
 
 
 def worst_rate(scene: Scene, state: VesselState, line: Walked | None) -> float:

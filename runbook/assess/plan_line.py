@@ -23,6 +23,7 @@ from runbook.assess.scene import Scene
 from runbook.assess.sights import line_sights
 from runbook.assess.walk import Walked
 from runbook.procedure.model import (
+    CoolTo,
     DoStep,
     EmptyStep,
     HoldStep,
@@ -75,6 +76,7 @@ def plan_line(scene: Scene, walked: Sequence[Walked], index: int) -> PlanLine:
         sights=sights,
         if_not=if_not,
         lasts_s=_lasts(line),
+        falls=line.lets_down or isinstance(line.verb, CoolTo),
     )
 
 

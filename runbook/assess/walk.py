@@ -286,6 +286,8 @@ def hottest_of(scene: Scene, verb: WarmTo) -> float:
 def coldest_of(scene: Scene, verb: CoolTo) -> float:
     """Coldest wall of a cooling [K]: as hottest_of, downwards."""
     coldest = _target(scene, verb)[0] - _probe(scene, verb)
+    if verb.set_to is not None:
+        coldest = min(coldest, verb.set_to.low)
     if verb.overshoot is not None:
         coldest -= verb.overshoot.high
     return coldest

@@ -92,7 +92,7 @@ class CoolTo(FileModel):
     by_means_of: Name
     """Tag of the heat source, or `room air`, `lukewarm water`, `cold water`. Example: room air"""
     set_to: f.TemperatureField | None = None
-    """Set point of the source, where it is not the target. Example: 27 degC"""
+    """Where a jacket or bath cools: temperature of the water that is let into it. Example: 25 degC"""
     rate: f.TemperatureRateRangeField | None = None
     """How fast it may go. Example: up to 2 K/min"""
     overshoot: f.TemperatureDifferenceField | None = None

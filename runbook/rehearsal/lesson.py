@@ -121,7 +121,7 @@ class Lesson:
                 self._busy(0.5 * planned.witness.wait_s if planned.witness is not None else 0.0)
                 ended = True
             case LineKind.QUICK:
-                ended = self._quick(index, planned)
+                ended = self._quick(index, planned, partial(self._look, watch))
             case LineKind.EMPTY:
                 ended = self._empty(index, planned)
             case _:
@@ -166,16 +166,16 @@ class Lesson:
             shown is not None and (need.low is None or shown >= need.low) and (need.high is None or shown <= need.high)
         )
 
-    def _quick(self, index: int, planned: PlanLine) -> bool:
+    def _quick(self, index: int, planned: PlanLine, look: Callable[[], None]) -> bool:
         line = self.lot.lines[index]
         assert isinstance(line.step, QuickStep), "the plan's kind is the step's"
         scale = next((i.tag for i in self.lot.plan.instruments if i.reads == "mass"), None)
         for item, written in zip(planned.quick, line.step.quick, strict=True):
             path = written.path
             if isinstance(path, LetRiseTo):
-                self._until(partial(self._let_go, path, self.clock + item.latest_s), _nothing, _FINE_TICK)
+                self._until(partial(self._let_go, path, self.clock + item.latest_s), look, _FINE_TICK)
             elif item.seals and line.held is None and scale is not None and not self._weighs(scale):
-                if not self._until(partial(self._weighs, scale), _nothing):
+                if not self._until(partial(self._weighs, scale), look):
                     return False
             else:
                 self.wait(min(ITEM_S * self.lot.pace, item.latest_s))

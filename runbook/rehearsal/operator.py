@@ -10,7 +10,7 @@ from dataclasses import dataclass
 
 from runbook.answers import LineKind, Need, PlanLine
 from runbook.assess.walk import Walked
-from runbook.procedure.model import LetRiseTo, QuickStep
+from runbook.procedure.model import DoStep, LetRiseTo, QuickStep
 from runbook.rehearsal.arriving import arrived, risen
 from runbook.rehearsal.world import World
 from runbook.run.acts import (
@@ -107,7 +107,11 @@ class Operator:
         return self._asked(line.reads)
 
     def _arrived(self) -> bool:
-        """The path of the line has come to its end, by the instruments."""
+        """The act has taken its time, and the path of the line has come to its end, by the instruments."""
+        step, entry = self._lines[self._conductor.ledger.line].step, self._conductor.ledger.entry
+        takes = step.takes.value if isinstance(step, DoStep) and step.takes is not None else 0.0
+        if self._conductor.clock.now().age(entry.at) < takes:
+            return False
         return arrived(self._world, self._conductor.plan, self._lines[self._conductor.ledger.line])
 
     def _due(self, line: PlanLine) -> Act | None:

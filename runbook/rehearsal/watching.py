@@ -56,7 +56,7 @@ class Watch:
         self._at, self._then = world.temperature(), clock
         self._solid, self._liquid = world.ice_seen, world.liquid_seen
         self._ahead: list[tuple[float, str, str]] = []
-        self._down = isinstance(line.verb, LetDownTo)
+        self._down, self._held = isinstance(line.verb, LetDownTo), line.held is not None
         target = _target(line, world.room_K)
         if target is not None and not world.vessel.in_the_open and world.vessel.mass > 0.0:
             # The ends are what stands, not what falls; when the last solid goes is not told by a temperature.
@@ -77,6 +77,8 @@ class Watch:
             at, of, words = self._ahead.pop(0)
             share = (at - self._at) / (now - self._at) if now != self._at else 1.0
             self._note(of, words, self._then + min(1.0, max(0.0, share)) * (clock - self._then))
+        if self._held and world.liquid_seen and not self._liquid:
+            self._note("liquid", "Liquid is seen.", clock)
         if self._solid and not world.ice_seen:
             self._note("solid gone", "The last solid is gone.", clock)
         if self._down and self._liquid and not world.liquid_seen:

@@ -101,6 +101,8 @@ class World:
                 if isinstance(passed.verb, Load):
                     mass = passed.verb.load.value
                     self.vessel = self._simulation.loaded(self.vessel, mass, self.controls.barometer)
+                elif isinstance(passed.verb, CoolTo):
+                    self._fresh_water(passed.verb)
         self._line = ledger.line
         vent_open, bore = self._vent(ledger, line)
         self._connected = ledger.source in ("on", "off", "do not know")
@@ -270,6 +272,13 @@ class World:
             aim = verb.warm_to if isinstance(verb, WarmTo) else verb.cool_to
             return self.room_K if isinstance(aim, str) else aim.value
         return False
+
+    def _fresh_water(self, verb: CoolTo) -> None:
+        """To cool by a jacket or bath of water is to fill it with water of the set temperature; no other source can."""
+        source = self._scene.apparatus.heat_source
+        by_it = source is not None and verb.by_means_of == source.tag and "water" in source.kind
+        if by_it and verb.set_to is not None:
+            self.vessel = replace(self.vessel, source_K=verb.set_to.value)
 
     def _already_loaded(self, mass: float) -> None:
         self.vessel = self._simulation.closed_in(self.vessel, mass, self.room_K)

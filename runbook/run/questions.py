@@ -21,6 +21,8 @@ from runbook.run.state import Carried, Ledger, Seen
 
 TOGETHER_S: Final = 120.0
 """[s] two readings of one instrument at most this far apart, in one line, are of the same moment."""
+AT_ONCE_S: Final = 10.0
+"""[s] the same, in a line in which what is read falls by itself."""
 BESIDE_S: Final = 600.0
 """[s] a temperature at most this old stands beside a height."""
 CARRIED: Final = 8
@@ -116,6 +118,7 @@ def to_fields(one: Observation) -> dict[str, object]:
         "by": one.by,
         "closed": one.closed,
         "beside": one.beside,
+        "line": one.line,
     }
 
 
@@ -144,7 +147,7 @@ def key_of(ledger: Ledger) -> str:
 
 def with_reading(ledger: Ledger, event: ReadingTaken, at: Moment, seq: int) -> Seen:
     """What counts once this reading has come as event `seq`."""
-    one = Observation(event.tag, event.what, event.value, seq, event.by, read_closed(ledger))
+    one = Observation(event.tag, event.what, event.value, seq, event.by, read_closed(ledger), line=ledger.line)
     seen = ledger.seen
     if event.what in ("mass", "liquid height"):
         if one.closed:
@@ -190,7 +193,9 @@ def _kept(ledger: Ledger, kept: tuple[Carried, ...], new: Carried, at: Moment) -
     if len(kept) > 1:
         return (new,) if fits else _middle_gone((*kept, new))
     earlier = ledger.latest[new.one.tag]
-    together = at.age(earlier.at) <= TOGETHER_S and earlier.event.line == ledger.line
+    line = ledger.present
+    apart = AT_ONCE_S if line is not None and line.falls else TOGETHER_S
+    together = at.age(earlier.at) <= apart and earlier.event.line == ledger.line
     return (*kept, new) if together and not fits else (new,)
 
 

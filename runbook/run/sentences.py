@@ -217,6 +217,8 @@ def agreement_proves(agreement: Agreement | None) -> str:
         return "says: nothing yet"
     if agreement.verdict == "disagrees":
         return "disagrees: one of the two is wrong, and nothing that raises goes on"
+    if agreement.proves == "read apart":
+        return "cannot tell: the vessel was moved between the two readings; read both again"
     if agreement.verdict == "cannot tell":
         return "cannot tell: the readings are too coarse for the margin that is left"
     if agreement.proves == "charge":

@@ -65,7 +65,7 @@ def test_what_may_not_be_let_out_is_outside_limits(tmp_path: Path, fluid: str) -
     """Loading beside an open vent and letting down through it: each an error at its step, with the law."""
     found = plan(tmp_path, fluid)
     assert found.verdict == "outside limits"
-    assert set(forbidden(found)) == {"1.13", "4.4"}
+    assert set(forbidden(found)) == {"1.13", "4.5"}
     text = (tmp_path / "co2-critical-point.yaml").read_text("utf-8").splitlines()
     said = [f for f in found.findings if "Regulation (EU) 2024/573" in f.message]
     assert [text[f.line - 1][f.column - 1 :].split(":")[1].split()[0] for f in said] == ["Load", "Let"]
@@ -74,12 +74,12 @@ def test_what_may_not_be_let_out_is_outside_limits(tmp_path: Path, fluid: str) -
 
 def test_a_forbidden_release_lowers_nothing(tmp_path: Path) -> None:
     """A step that lowers one hazard may be entered while the vessel is not at rest; this one may not."""
-    step = line_of(plan(tmp_path, "SF6"), "4.4")
+    step = line_of(plan(tmp_path, "SF6"), "4.5")
     effects = dict(step.effects)
     assert effects[Hazard.RELEASE] is Effect.RAISES
     assert Effect.LOWERS not in effects.values()
-    assert forbidden(plan(tmp_path, "SF6"))["4.4"].judgement is Judgement.BLOCKED
-    assert dict(line_of(plan(tmp_path, "carbon dioxide"), "4.4").effects)[Hazard.OVER_PRESSURE] is Effect.LOWERS
+    assert forbidden(plan(tmp_path, "SF6"))["4.5"].judgement is Judgement.BLOCKED
+    assert dict(line_of(plan(tmp_path, "carbon dioxide"), "4.5").effects)[Hazard.OVER_PRESSURE] is Effect.LOWERS
     assert forbidden(plan(tmp_path, "carbon dioxide")) == {}
 
 
@@ -87,12 +87,12 @@ def test_recovered_into_a_closed_bottle_it_is_not_let_out(tmp_path: Path) -> Non
     """A space of the apparatus that no way leads out of is no room."""
     found = plan(tmp_path, "SF6", RECOVERED, BOTTLE)
     assert set(forbidden(found)) == {"1.13"}
-    assert dict(line_of(found, "4.4").effects)[Hazard.RELEASE] is Effect.KEEPS
+    assert dict(line_of(found, "4.5").effects)[Hazard.RELEASE] is Effect.KEEPS
 
 
 def test_a_bottle_whose_own_valve_nobody_knows_counts_as_open(tmp_path: Path) -> None:
     """Unknown never permits a step that raises a hazard."""
-    assert "4.4" in forbidden(plan(tmp_path, "SF6", RECOVERED, OPEN_BOTTLE))
+    assert "4.5" in forbidden(plan(tmp_path, "SF6", RECOVERED, OPEN_BOTTLE))
 
 
 def test_a_puff_within_a_quick_sequence_is_a_release(tmp_path: Path) -> None:
@@ -114,7 +114,7 @@ def test_a_purge_with_it_is_a_release(tmp_path: Path) -> None:
 def test_a_refusal_says_the_law(tmp_path: Path) -> None:
     """On the bench the reason is the law and what to do, not a margin of grams."""
     found = plan(tmp_path, "SF6")
-    said = margin_words(found, forbidden(found)["4.4"])
+    said = margin_words(found, forbidden(found)["4.5"])
     assert "sulfur hexafluoride could get out to the room, which is forbidden (Regulation (EU) 2024/573)" in said
     assert "recover it" in said
 
@@ -156,7 +156,7 @@ def test_no_step_with_what_burns_is_entered(tmp_path: Path, fluid: str) -> None:
     found = plan(tmp_path, fluid)
     burning = [line.number for line in found.lines if any(m.kind == "ignition" for m in line.ahead)]
     assert burning[0] == "1.13"
-    assert burning[-1] == "4.5"
+    assert burning[-1] == "4.6"
     assert {m.margin for line in found.lines for m in line.ahead if m.kind == "ignition"} == {None}
     assert sum("ignition" in f.message for f in found.findings if f.severity == "error") == 1
     cold = plan(tmp_path, "carbon dioxide")

@@ -28,7 +28,7 @@ def _heavy(procedure: str, vessel: str) -> tuple[str, str]:
 
 
 def _hot(procedure: str, vessel: str) -> tuple[str, str]:
-    text = procedure.replace("warm_to: 33 degC", "warm_to: 44 degC").replace("set_to: 34 degC", "set_to: 45 degC")
+    text = procedure.replace("warm_to: 33 degC", "warm_to: 44 degC").replace("set_to: 35 degC", "set_to: 45 degC")
     return text, vessel.replace("cut_out: 38 degC", "cut_out: 40 degC")
 
 

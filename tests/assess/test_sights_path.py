@@ -154,7 +154,7 @@ def planned(folder: Path) -> list[PlanLine]:
 def test_warm_and_cool_lines_carry_their_path(tmp_path: Path) -> None:
     """The lesson's warming says with what and when the class sees it, the author's own words first."""
     found = [one for one in planned(tmp_path) if any(s.at_K is not None for s in one.sights)]
-    assert [one.number for one in found] == ["1.18", "3.4", "3.5"]
+    assert [one.number for one in found] == ["1.18", "3.4", "3.6"]
     assert all(one.kind is LineKind.DO for one in found)
     lesson = found[1].sights
     assert not lesson[0].computed

@@ -63,10 +63,11 @@ def test_cooling_that_is_lost_is_judged_to_the_hottest_room(tmp_path: Path) -> N
     wide = {
         "mass: 117 g ± 2 g": "mass: 180 g ± 2 g",
         "accept: 115 g to 119 g": "accept: 178 g to 182 g",
-        "path: {cool_to: 28 degC, by_means_of: room air}": "path: {cool_to: 5 degC, by_means_of: cold water}",
+        "path: {cool_to: 30 degC, by_means_of: H1, set_to: 25 degC, rate: up to 2 K/min}":
+        "path: {cool_to: 5 degC, by_means_of: cold water}",
     }
     made = plan(tmp_path, {}, wide)
-    cold = next(line for line in made.lines if line.number == "3.5")
+    cold = next(line for line in made.lines if line.number == "3.6")
     off = cold.left_alone.futures[0]
     assert (off.cause, off.at_rest) == ("heat off", False)
     assert off.ends_K == pytest.approx(303.15)

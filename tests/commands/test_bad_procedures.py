@@ -21,7 +21,7 @@ HOLD = """      - hold:
 BAD: dict[str, tuple[Mapping[str, str], Mapping[str, str]]] = {
     "too much is closed in": ({"mass: 117 g ± 2 g": "mass: 145 g ± 2 g"}, {}),
     "the cut-out comes too late": ({}, {"cut_out: 38 degC ± 1 K": "cut_out: 46 degC ± 1 K"}),
-    "it is warmed too far": ({"warm_to: 33 degC": "warm_to: 41 degC", "set_to: 34 degC": "set_to: 42 degC"}, {}),
+    "it is warmed too far": ({"warm_to: 33 degC": "warm_to: 41 degC", "set_to: 35 degC": "set_to: 42 degC"}, {}),
     "the room is too small for the gas": ({"volume: 180 m3": "volume: 12 m3"}, {}),
     "a rating nobody knows": (
         {},
@@ -40,7 +40,7 @@ BAD: dict[str, tuple[Mapping[str, str], Mapping[str, str]]] = {
         {"do: Shut V3\n        who: performer\n        valves: {V3: shut}\n": "do: Shut V3\n        who: performer\n"},
         {},
     ),
-    "the surface will not fade": ({"mass: 117 g ± 2 g": "mass: 98 g ± 2 g", "105 g to 150 g": "90 g to 150 g"}, {}),
+    "the surface will not fade": ({"mass: 117 g ± 2 g": "mass: 98 g ± 2 g", "117 g to 150 g": "90 g to 150 g"}, {}),
 }  # fmt: skip
 """What is wrong, and the words changed for it in the procedure and in the vessel."""
 

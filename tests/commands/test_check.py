@@ -96,7 +96,7 @@ def test_steps_that_say_the_same_stand_once(tmp_path: Path, capsys: pytest.Captu
     main([str(path), *ON])
     out = capsys.readouterr().out
     assert out.count("RD1 pressure, heat stuck on") == 1
-    assert "steps 1.17, 3.3 to 3.5: RD1 pressure, heat stuck on" in out
+    assert "steps 1.17, 3.3 to 3.6: RD1 pressure, heat stuck on" in out
 
 
 def test_plain_when_piped(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:

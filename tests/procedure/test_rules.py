@@ -15,7 +15,7 @@ from tests.procedure.files import PROCEDURE, found, read, word_at
 
 ERRORS = [
     # rule, old, new, where the finding stands
-    ("unknown tag", "with: BS1, accept: 105", "with: BS9, accept: 105", "BS9"),
+    ("unknown tag", "with: BS1, accept: 117", "with: BS9, accept: 117", "BS9"),
     ("unknown tag", "through: V2, pause", "through: V8, pause", "V8"),
     ("unknown tag", "by_means_of: H1", "by_means_of: H2", "H2"),
     ("unknown tag", "low_gauge: PG2", "low_gauge: PG3", "PG3"),
@@ -28,7 +28,7 @@ ERRORS = [
     ("start position", "V3: open, H1", "H1", "{V1"),
     ("position", "H1: unplugged}", "H1: shut}", "shut"),
     ("position", "at_start: {V1: open", 'at_start: {V1: "on"', '"on"'),
-    ("wrong instrument", "{what: mass, with: BS1, accept: 105 g", "{what: mass, with: TT1, accept: 105 g", "TT1"),
+    ("wrong instrument", "{what: mass, with: BS1, accept: 117 g", "{what: mass, with: TT1, accept: 117 g", "TT1"),
     (
         "text and valves",
         "do: Shut V3\n        who: performer\n        valves: {V3: shut}",
@@ -75,7 +75,7 @@ ERRORS = [
     ("seal", "path: seal, valves: {V2: shut}", "valves: {V2: shut}", "{V2"),
     ("seal", "path: seal, valves: {V2: shut}", "path: seal", "seal"),
     ("charge", "charge: {mass: 117 g ± 2 g, loaded_as: dry ice}", "charge: already loaded", "{load"),
-    ("charge", "path: {load: 140 g ± 10 g}", "path: {load: 80 g ± 10 g}", "80 g"),
+    ("charge", "path: {load: 145 g ± 5 g}", "path: {load: 80 g ± 10 g}", "80 g"),
     (
         "gauge isolated",
         "valves: {V3: shut}",
@@ -84,7 +84,7 @@ ERRORS = [
     ),
     ("no act outside limits", "accept: 115 g to 119 g, if_not: Make safe.", "accept: 115 g to 119 g", "{what: mass"),
     ("reading outside dial", "accept: 115 g to 119 g", "accept: 115 g to 19 kg", "115 g to 19 kg"),
-    ("reading outside dial", "accept: 18 degC to 26 degC", "accept: 18 degC to 126 degC", "18 degC to 126"),
+    ("reading outside dial", "accept: 17 degC to 30.5 degC", "accept: 17 degC to 126 degC", "17 degC to 126"),
     ("instrument too coarse", "accept: 115 g to 119 g", "accept: 116.9 g to 117.1 g", "116.9"),
     (
         "instrument too coarse",
@@ -150,7 +150,7 @@ WARNINGS = [
     ("named by exception", "do: Press tare", "do: Shut all valves except V2", "warning"),
     ("and with or", "do: Press tare", "do: If it is cold and dry or still, press tare", "warning"),
     ("high on the dial", "accept: 48 bar(g) to 75 bar(g)", "accept: 48 bar(g) to 150 bar(g)", "advice"),
-    ("set point at the cut-out", "set_to: 34 degC", "set_to: 37.5 degC", "warning"),
+    ("set point at the cut-out", "set_to: 35 degC", "set_to: 37.5 degC", "warning"),
 ]
 
 

@@ -220,6 +220,18 @@ def test_readings_of_different_moments_do_not_contradict(how: str) -> None:
     assert carried(run, "PG1") == [ROOM + 70e5]
 
 
+@pytest.mark.parametrize(("after", "carries"), [(60.0, [65e5]), (5.0, [70e5, 65e5])])
+def test_what_falls_by_the_step_itself_is_no_contradiction(after: float, carries: list[float]) -> None:
+    """While a step cools or lets down, a lower reading a minute later is newer; at one moment it is one still."""
+    run = begun(plan(line(1), line(2, falls=True)))
+    run.must(GoOn())
+    run.must(GoOn())
+    run.read("PG1", ROOM + 70e5)
+    run.clock.advance(after)
+    run.read("PG1", ROOM + 65e5)
+    assert carried(run, "PG1") == [ROOM + x for x in carries]
+
+
 def test_many_contradictions_keep_the_extremes() -> None:
     """However many disagree, the lowest, the highest and the last are carried."""
     run = begun(plan(line(1)))

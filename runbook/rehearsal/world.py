@@ -278,7 +278,7 @@ class World:
         source = self._scene.apparatus.heat_source
         by_it = source is not None and verb.by_means_of == source.tag and "water" in source.kind
         if by_it and verb.set_to is not None:
-            self.vessel = replace(self.vessel, source_K=verb.set_to.value)
+            self.vessel = self._simulation.source_filled(self.vessel, verb.set_to.value)
 
     def _already_loaded(self, mass: float) -> None:
         self.vessel = self._simulation.closed_in(self.vessel, mass, self.room_K)

@@ -1,8 +1,9 @@
 """How much is in the vessel, from what has been read.
 
 At closing it is the last reading plus the scale's error, no loss assumed. After closing a height at a known
-temperature, or a weighing of the closed vessel, proves it. The most it can be comes down only when two
-different people's measurements both say so; a contradiction leaves the worse standing.
+temperature, or a weighing of the closed vessel, proves it; of a charge that comes as gas, pressure and temperature
+do. The most it can be comes down only when two different people's measurements both say so; a contradiction leaves
+the worse standing.
 """
 
 from __future__ import annotations
@@ -11,6 +12,7 @@ from dataclasses import dataclass
 
 from runbook.answers import ChargeBox, Observation
 from runbook.apparatus.instruments import permissible_error
+from runbook.apparatus.spaces import isolated
 from runbook.assess.scene import GAS_CONSTANT, Scene
 from runbook.charge.filling import mass_from_height
 from runbook.charge.geometry import Shape, ShapeKind
@@ -30,7 +32,7 @@ class Measured:
     high_kg: float
     by: str
     how: str
-    """'weighing' or 'height'."""
+    """'weighing', 'height' or 'pressure'."""
 
 
 def charge_box(
@@ -52,6 +54,14 @@ def charge_box(
 def _before_closing(
     scene: Scene, record: ChargeBox | None, observations: tuple[Observation, ...], closed: bool
 ) -> ChargeBox | None:
+    if scene.comes_as_gas:
+        gauges = [o for o in observations if o.what == "pressure"]
+        open_yet = [o for o in gauges if not o.closed]
+        filled = _by_pressure(scene, open_yet, observations) or _by_pressure(scene, gauges, observations)
+        if filled:
+            # A gauge read before the filling says too little: the plan counts beside it.
+            low, high = scene.planned
+            return ChargeBox(min(filled[-1].low_kg, low), max(filled[-1].high_kg, high), False, ("pressure",))
     weighings = [o for o in observations if o.what == "mass" and not o.closed]
     if weighings:
         last = max(weighings, key=lambda o: o.sequence)
@@ -81,6 +91,27 @@ def _after_closing(scene: Scene, observations: tuple[Observation, ...]) -> list[
             measured = None if beside is None else _from_height(scene, one, beside)
             if measured is not None:
                 found.append(measured)
+    if scene.comes_as_gas:
+        found += _by_pressure(scene, [o for o in observations if o.what == "pressure" and o.closed], observations)
+    return found
+
+
+def _by_pressure(scene: Scene, gauges: list[Observation], observations: tuple[Observation, ...]) -> list[Measured]:
+    """Gas measured by what it presses at the temperature read beside it; where liquid could be, not at all."""
+    found = []
+    for one in gauges:
+        beside = _temperature_beside(one, observations)
+        if beside is None or isolated(scene.apparatus, one.tag, {}):
+            continue
+        off, warm = _error(scene, one), _error(scene, beside)
+        off += 0.5 * (scene.barometer.high_Pa - scene.barometer.low_Pa)
+        try:
+            thin = scene.substance.equation.gas_density(beside.value + warm, max(one.value - off, 1.0))
+            dense = scene.substance.equation.gas_density(beside.value - warm, one.value + off)
+        except RunbookError:
+            continue
+        if thin is not None and dense is not None:
+            found.append(Measured(thin * scene.volume[0], dense * scene.volume[1], one.by, "pressure"))
     return found
 
 

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 from runbook.answers import Need
 from runbook.assess.scene import Scene
-from runbook.assess.walk import Walked, is_closed
+from runbook.assess.walk import Walked, is_closed, outside_tags
 from runbook.procedure.model import OpenContainment, QuickStep, ReadStep
 from runbook.quantities import Level, LevelRange, Range
 
@@ -38,7 +38,10 @@ def entry_needs(scene: Scene, lines: Sequence[Walked], index: int) -> tuple[Need
     line = lines[index]
     wanted: list[str] = []
     if line.seals:
-        wanted = ["mass"]
+        # Gas is measured by what it presses; all else by what it weighs.
+        wanted = ["temperature", "pressure"] if scene.comes_as_gas else ["mass"]
+    elif line.warms and (not line.during.closed or proved_by_height_alone(scene)):
+        wanted = ["temperature"]
     elif line.warms or (line.lets_down and line.before.closed):
         wanted = ["temperature", "pressure"]
     elif isinstance(line.verb, OpenContainment):
@@ -53,6 +56,15 @@ def entry_needs(scene: Scene, lines: Sequence[Walked], index: int) -> tuple[Need
             continue
         needs.append(Need(tag, what, scene.instrument(tag).dial.unit, fresh_s=_fresh_s(line, tag)))
     return tuple(needs)
+
+
+def proved_by_height_alone(scene: Scene) -> bool:
+    """A tube that no gauge can read: sealed for good, without a valve, its charge is proved by its height.
+
+    A vessel that could have a gauge and has none stays blocked.
+    """
+    able = {one.reads for one in scene.apparatus.instruments}
+    return not outside_tags(scene) and "pressure" not in able and {"temperature", "liquid height"} <= able
 
 
 def seal_items(scene: Scene, line: Walked) -> tuple[int, ...]:

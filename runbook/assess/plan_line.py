@@ -17,7 +17,7 @@ from runbook.answers import (
 from runbook.assess.ahead import commits, look
 from runbook.assess.hazards import effects
 from runbook.assess.held import held_vent
-from runbook.assess.needs import entry_needs, need_of, seal_items
+from runbook.assess.needs import entry_needs, need_of, proved_by_height_alone, seal_items
 from runbook.assess.phases import phases
 from runbook.assess.scene import Scene
 from runbook.assess.sights import line_sights
@@ -56,9 +56,9 @@ def plan_line(scene: Scene, walked: Sequence[Walked], index: int) -> PlanLine:
         warning=_warning(step),
         effects=line_effects,
         committing=commits(scene, line),
-        leans_on=_leans_on(line),
+        leans_on=_leans_on(scene, line),
         entry_needs=entry_needs(scene, walked, index),
-        needs_charge_proof=line.warms,
+        needs_charge_proof=line.warms and line.during.closed,
         opens_containment=_opens(scene, line),
         reads=tuple(need_of(scene, r) for r in step.read) if isinstance(step, DoStep) else (),
         hold=_hold(scene, step),
@@ -133,7 +133,10 @@ def text_of(step: Step | Parked) -> str:
     return f"Leave the vessel at rest: heat {step.heat}, shield {step.shield}, key with {step.key_with}"
 
 
-def _leans_on(line: Walked) -> tuple[str, ...]:
+def _leans_on(scene: Scene, line: Walked) -> tuple[str, ...]:
+    if line.warms and (not line.during.closed or proved_by_height_alone(scene)):
+        # In the open there is no pressure to agree on; nor is there one where no gauge can be.
+        return ()
     if line.warms:
         return ("temperature", "charge")
     if line.lets_down and not line.seals:

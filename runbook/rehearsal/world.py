@@ -29,6 +29,12 @@ _WIDE = 5e-3
 """Bore of an opening that states none [m]."""
 _IN_AIR = 420e-6
 """Carbon dioxide in clean air, volume fraction [1]; NOAA 2023."""
+_OXYGEN = 0.209
+"""Oxygen in clean air, volume fraction [1]."""
+_IN_WATER = 30.0
+"""How many times faster water takes heat to or from a body than still air: our choice, 300 over 10 W/m2/K [1]."""
+_PAST = 1.0
+"""How far past its target the water is with which a vessel is brought there [K]."""
 _SEEN = 0.01
 """Share of the volume that liquid has to fill before anybody sees it [1]."""
 _LONGEST = 5.0
@@ -64,6 +70,7 @@ class World:
             (_WIDE if v.bore is None else v.bore.value for v in scene.apparatus.valves if v.tag in sprung), default=0.0
         )
         self._set: Controls | None = None
+        self._loss = 1.0
         self._connected = False
         self._full_of_air = plan.barometer * volume / (GAS_CONSTANT * room)
         self._high_gauge = next(
@@ -99,21 +106,34 @@ class World:
             # Somebody quick may have passed several lines since the last look; what they did was done.
             for passed in self._lines[self._line + 1 : ledger.line + 1]:
                 if isinstance(passed.verb, Load):
-                    mass = passed.verb.load.value
-                    self.vessel = self._simulation.loaded(self.vessel, mass, self.controls.barometer)
+                    self._load(passed.verb.load.value)
                 elif isinstance(passed.verb, CoolTo):
                     self._fresh_water(passed.verb)
         self._line = ledger.line
         vent_open, bore = self._vent(ledger, line)
         self._connected = ledger.source in ("on", "off", "do not know")
-        self._set = replace(self.controls, vent_open=vent_open, bore=bore, heating=self._heating(ledger, line))
+        if line is not None and line.during.filled:
+            # The open way leads to the cylinder it is filled from.
+            vent_open, bore = False, 0.0
+        water = _water(line)
+        self._loss = 1.0 if water is None else _IN_WATER
+        around = self.room_K if water is None else water
+        heating = self._heating(ledger, line)
+        self._set = replace(self.controls, vent_open=vent_open, bore=bore, heating=heating, room_K=around)
         self._trouble()
+
+    def _load(self, mass: float) -> None:
+        """Laid into the open vessel; or, of a charge that comes as gas, let in from its cylinder [kg]."""
+        if self._scene.comes_as_gas:
+            self._already_loaded(mass)
+        else:
+            self.vessel = self._simulation.loaded(self.vessel, mass, self.controls.barometer)
 
     def _trouble(self) -> None:
         """Faults whose situation stands begin, and what the hands have set becomes what it really is."""
         self.troubles.look(self._situations(), self._at)
         if self._set is not None:
-            real = replace(self._set, leak=0.0, loss=1.0)
+            real = replace(self._set, leak=0.0, loss=self._loss)
             if self._springs > 0.0 and not real.vent_open and self.troubles.away(self._at):
                 # No hand is on it any more.
                 real = replace(real, vent_open=True, bore=self._springs)
@@ -235,12 +255,16 @@ class World:
             return self.vessel.mass
         if reads == "liquid height":
             return self._height()
+        if reads == "oxygen":
+            return _OXYGEN * max(0.0, 1.0 - self._share_of_room())
         if reads == "carbon dioxide":
-            fluid, room = self._scene.substance, self._scene.procedure.room.volume.value
             # Of another gas the meter sees nothing.
-            own = self.vessel.released * (self._scene.gas_volume or 0.0) / room if fluid.name == reads else 0.0
-            return _IN_AIR + own
+            return _IN_AIR + (self._share_of_room() if self._scene.substance.name == reads else 0.0)
         return None
+
+    def _share_of_room(self) -> float:
+        """What has been let out, as a share of the room's volume [1]: nothing of it is carried off."""
+        return self.vessel.released * (self._scene.gas_volume or 0.0) / self._scene.procedure.room.volume.value
 
     def _height(self) -> float | None:
         state = self._simulation.state(self.vessel)
@@ -283,6 +307,15 @@ class World:
     def _already_loaded(self, mass: float) -> None:
         self.vessel = self._simulation.closed_in(self.vessel, mass, self.room_K)
         self.controls = replace(self.controls, vent_open=False, bore=0.0)
+
+
+def _water(line: Walked | None) -> float | None:
+    """Temperature [K] of the water that is poured around the vessel in this line; None: none is."""
+    verb = None if line is None else line.verb
+    if not isinstance(verb, WarmTo | CoolTo) or verb.by_means_of not in ("lukewarm water", "cold water"):
+        return None
+    aim, past = (verb.warm_to, _PAST) if isinstance(verb, WarmTo) else (verb.cool_to, -_PAST)
+    return None if isinstance(aim, str) else aim.value + past
 
 
 def _relieving(scene: Scene, troubles: Troubles) -> Relieving | None:

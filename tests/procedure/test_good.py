@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+import asyncio
 from pathlib import Path
 
 import pytest
 
 from runbook.assess.bind import bind
 from runbook.procedure.reader import read_procedure
+from runbook.rehearsal.headless import rehearse
 
 FILES = sorted((Path(__file__).parent / "good").glob("*.yaml"))
 UNKNOWN = {"franklin"}
@@ -27,3 +29,10 @@ def test_a_good_procedure_is_called_good(path: Path) -> None:
         assert [f.rule for f in warnings] == ["certificate", "certificate"]
     else:
         assert plan.verdict == "within limits"
+
+
+@pytest.mark.parametrize("name", ["sf6", "r134a", "natterer", "xenon", "nitrogen"])
+def test_a_good_procedure_is_rehearsed_to_its_end(name: str) -> None:
+    """The ideal operator comes through: tubes without a gauge, water poured by hand, gas from a cylinder."""
+    found = asyncio.run(rehearse(next(path for path in FILES if path.stem == name), 1))
+    assert (found.outcome, found.reason) == ("completed", None)

@@ -81,7 +81,7 @@ class Vessel:
     energy: float
     """Internal energy of the charge [J/kg]."""
     body_K: float
-    """[K]"""
+    """Where it has two sides, of the one that the source touches [K]."""
     source_K: float
     """[K]"""
     in_the_open: bool
@@ -90,6 +90,8 @@ class Vessel:
     """Closed in with the charge [mol]."""
     relief_open: bool = False
     """A relief device stands open."""
+    far_K: float | None = None
+    """Of the side that the source does not touch [K]; None: as body_K."""
     tally: Tally = Tally()
 
     @property
@@ -105,6 +107,7 @@ def warmed(vessel: Vessel, after: Lumps) -> Vessel:
         energy=after.fluid_energy,
         body_K=after.body_K,
         source_K=after.source_K,
+        far_K=after.far_K,
         tally=replace(vessel.tally, from_room=after.from_room, from_source=after.from_source),
     )
 

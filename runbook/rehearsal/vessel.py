@@ -87,7 +87,7 @@ class Simulation:
 
     def stood(self, vessel: Vessel, body_K: float, source_K: float) -> Vessel:
         """The body has come to one temperature and the source to another [K], by the room."""
-        after = replace(vessel, body_K=body_K, source_K=source_K)
+        after = replace(vessel, body_K=body_K, source_K=source_K, far_K=None)
         given = self.stored(after) - self.stored(vessel)
         return replace(after, tally=replace(after.tally, from_room=after.tally.from_room + given))
 
@@ -122,8 +122,8 @@ class Simulation:
                 air = air_pressure(self.substance, state.temperature, state.density, vessel.air, self.volume)
         return max(state.pressure + air, controls.barometer)
 
-    def wall(self, vessel: Vessel, controls: Controls) -> float:
-        """Temperature of the wetted wall [K]: the charge's where there is one."""
+    def temperature(self, vessel: Vessel) -> float:
+        """Of the closed charge; of the body where there is none [K]."""
         state = self.state(vessel)
         return vessel.body_K if state is None else state.temperature
 
@@ -197,9 +197,7 @@ class Simulation:
 
     def _lumps(self, vessel: Vessel) -> Lumps:
         tally = vessel.tally
-        return Lumps(
-            vessel.energy, vessel.body_K, vessel.source_K, from_room=tally.from_room, from_source=tally.from_source
-        )
+        return Lumps(vessel.energy, vessel.body_K, vessel.source_K, vessel.far_K, tally.from_room, tally.from_source)
 
     def _path(self, controls: Controls) -> HeatPath:
         if controls.loss == 1.0:
@@ -221,8 +219,9 @@ class Simulation:
         missing = vessel.mass * (isochore.energies[0] - vessel.energy)
         if missing > 0.0:
             # Colder than what is modelled the body gives at once what it would give soon.
-            body_K = vessel.body_K - missing / self.path.body_heat_capacity
-            vessel = replace(vessel, energy=isochore.energies[0], body_K=body_K)
+            colder = missing / self.path.body_heat_capacity
+            far_K = None if vessel.far_K is None else vessel.far_K - colder
+            vessel = replace(vessel, energy=isochore.energies[0], body_K=vessel.body_K - colder, far_K=far_K)
         after = advance_lumps(
             self._lumps(vessel), vessel.mass, isochore, self._path(controls), controls.room_K, controls.heating, dt
         )

@@ -71,8 +71,9 @@ class Watch:
         """Note what has fallen since the last look; clock: now [s]."""
         world = self._world
         now = world.temperature()
-        self._found.hottest_K = max(self._found.hottest_K, now)
-        self._found.coldest_K = min(self._found.coldest_K, now)
+        coldest, hottest = world.wall()
+        self._found.hottest_K = max(self._found.hottest_K, hottest)
+        self._found.coldest_K = min(self._found.coldest_K, coldest)
         while self._ahead and (now >= self._ahead[0][0] if self._warming else now <= self._ahead[0][0]):
             at, of, words = self._ahead.pop(0)
             share = (at - self._at) / (now - self._at) if now != self._at else 1.0

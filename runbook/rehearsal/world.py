@@ -13,15 +13,15 @@ from runbook.answers import Plan
 from runbook.apparatus.relief import lowest_opening
 from runbook.apparatus.spaces import springs_open
 from runbook.assess.boxes import viewed_shape
-from runbook.assess.futures import hottest_source
-from runbook.assess.heat_time import heat_path
 from runbook.assess.scene import GAS_CONSTANT, Scene
 from runbook.assess.walk import Walked, valves_of
 from runbook.errors import OutsideValidity
+from runbook.fluids.state import Region
 from runbook.procedure.model import CoolTo, DoStep, Load, WarmTo
 from runbook.rehearsal.faults import CLOSED, HEATING, LETTING_DOWN, LOADING, WARMING, Troubles
 from runbook.rehearsal.instruments import Dials, Shown
-from runbook.rehearsal.vessel import Controls, Relieving, Simulation, Vessel
+from runbook.rehearsal.physics import relieving, simulation_of
+from runbook.rehearsal.vessel import Controls, Simulation, Vessel
 from runbook.run.clock import Moment
 from runbook.run.ledger import Ledger
 
@@ -37,6 +37,8 @@ _PAST = 1.0
 """How far past its target the water is with which a vessel is brought there [K]."""
 _SEEN = 0.01
 """Share of the volume that liquid has to fill before anybody sees it [1]."""
+_DROPS = 0.3
+"""How much colder than the vapour a window is before anybody sees what runs down it, an estimate [K]."""
 _LONGEST = 5.0
 """Longest step between two looks at the instruments [s]."""
 
@@ -57,14 +59,10 @@ class World:
         """A world in which nothing has been done yet; part: the one the run begins with, from 0."""
         self.troubles = troubles if troubles is not None else Troubles()
         """What goes wrong in it."""
-        source = scene.apparatus.heat_source
-        limit = None if source is None else hottest_source(scene, source)
         room = 0.5 * (scene.room_hottest + scene.room_coldest)
         self._scene, self._lines, self._plan = scene, lines, plan
         volume = scene.apparatus.volume.free.value
-        self._simulation = Simulation(
-            scene.substance, volume, heat_path(scene, limit), _relieving(scene, self.troubles)
-        )
+        self._simulation = simulation_of(scene, self.troubles)
         sprung = springs_open(scene.apparatus)
         self._springs = max(
             (_WIDE if v.bore is None else v.bore.value for v in scene.apparatus.valves if v.tag in sprung), default=0.0
@@ -139,7 +137,7 @@ class World:
                 real = replace(real, vent_open=True, bore=self._springs)
             self.controls = self.troubles.controls(real, self._at, self._connected)
         if self._simulation.relief is not None:
-            self._simulation.relief = _relieving(self._scene, self.troubles)
+            self._simulation.relief = relieving(self._scene, self.troubles)
         fills = self.troubles.air_fills
         if fills and self.vessel.mass > 0.0 and not self.vessel.in_the_open and self.vessel.air == 0.0:
             self.vessel = replace(self.vessel, air=fills * self._full_of_air)
@@ -203,8 +201,14 @@ class World:
         return self._simulation.pressure(self.vessel, self.controls)
 
     def temperature(self) -> float:
-        """Of the wetted wall, true [K]."""
-        return self._simulation.wall(self.vessel, self.controls)
+        """Of the charge, true; of the body where none is closed in [K]."""
+        return self._simulation.temperature(self.vessel)
+
+    def wall(self) -> tuple[float, float]:
+        """Coldest and hottest that the wetted wall is anywhere, true [K]: between the charge and the metal behind."""
+        vessel = self.vessel
+        there = (self.temperature(), vessel.body_K, vessel.body_K if vessel.far_K is None else vessel.far_K)
+        return min(there), max(there)
 
     @property
     def ice_seen(self) -> bool:
@@ -219,6 +223,14 @@ class World:
         return state is not None and (state.liquid or 0.0) > _SEEN
 
     @property
+    def drops_seen(self) -> bool:
+        """Vapour beside liquid condenses on the windows: they sit on the side that the source does not touch."""
+        state, far = self._simulation.state(self.vessel), self.vessel.far_K
+        if state is None or far is None or self._scene.apparatus.window is None:
+            return False
+        return state.region is Region.LIQUID_VAPOUR and far < state.temperature - _DROPS
+
+    @property
     def seen(self) -> str:
         """What stands in the simulated vessel: 'solid 8.2 %, liquid 1.1 % of it'; empty: nothing."""
         if self.vessel.mass <= 1e-6:
@@ -230,7 +242,8 @@ class World:
             return "solid in the open" if cold else "liquid in the open"
         shares = (("solid", state.solid or 0.0), ("liquid", state.liquid or 0.0))
         there = [f"{name} {100.0 * share:.{0 if share > 0.1 else 1}f} %" for name, share in shares if share > 0.0]
-        return f"{', '.join(there)} of it" if there else "nothing but gas"
+        drops = ", drops on the windows" if self.drops_seen else ""
+        return f"{', '.join(there)} of it{drops}" if there else "nothing but gas"
 
     def read(self, tag: str) -> float | None:
         """What an instrument shows now [SI; pressures absolute]; None where it shows nothing."""
@@ -247,7 +260,7 @@ class World:
 
     def _true(self, tag: str, reads: str) -> float | None:
         if reads == "temperature":
-            return self.temperature()
+            return self._temperature_of(self._scene.instrument(tag).of)
         if reads == "pressure":
             joined = self._scene.instrument(tag).of == self._scene.charge_space or self._low_joined
             return self.pressure() if joined else self.controls.barometer
@@ -265,6 +278,24 @@ class World:
     def _share_of_room(self) -> float:
         """What has been let out, as a share of the room's volume [1]: nothing of it is carried off."""
         return self.vessel.released * (self._scene.gas_volume or 0.0) / self._scene.procedure.room.volume.value
+
+    def _temperature_of(self, place: str) -> float:
+        """What a thermometer there has before it [K]: on the wall, the side that the source touches."""
+        match place:
+            case "room air":
+                return self.room_K
+            case "bath":
+                return self._bath()
+            case "fluid":
+                return self.temperature()
+            case _:
+                return self.vessel.body_K
+
+    def _bath(self) -> float:
+        """Water poured by hand, else the source's; where there is none it stands as warm as the vessel in it [K]."""
+        if self._loss != 1.0 and self._set is not None:
+            return self._set.room_K
+        return self.vessel.body_K if self._scene.apparatus.heat_source is None else self.vessel.source_K
 
     def _height(self) -> float | None:
         state = self._simulation.state(self.vessel)
@@ -316,14 +347,3 @@ def _water(line: Walked | None) -> float | None:
         return None
     aim, past = (verb.warm_to, _PAST) if isinstance(verb, WarmTo) else (verb.cool_to, -_PAST)
     return None if isinstance(aim, str) else aim.value + past
-
-
-def _relieving(scene: Scene, troubles: Troubles) -> Relieving | None:
-    """The relief device on the charge's space, as it truly opens; None where there is none."""
-    device = next((r for r in scene.apparatus.relief if r.space == scene.charge_space), None)
-    if device is None:
-        return None
-    rated = device.bursts_at if device.bursts_at is not None else device.opens_at
-    assert rated is not None, "the model refuses a device without a pressure"
-    opens = troubles.relief_opens(lowest_opening(device).pascal, rated.pascal)
-    return Relieving(scene.barometer.middle_Pa + opens, device.kind == "relief valve")

@@ -10,7 +10,7 @@ import pytest
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
-from runbook.charge.lumps import HeatPath
+from runbook.charge.lumps import HeatPath, two_sided
 from runbook.errors import OutsideValidity
 from runbook.fluids.substance import substance
 from runbook.rehearsal import headless
@@ -45,7 +45,9 @@ MOVED = [
 def held(simulation: Simulation, vessel: Vessel) -> float:
     """All the heat in a vessel [J], but for a constant; worked out here again."""
     path = simulation.path
-    metal = path.body_heat_capacity * vessel.body_K + path.source_heat_capacity * vessel.source_K
+    far_K = vessel.body_K if vessel.far_K is None else vessel.far_K
+    metal = path.body_heat_capacity * ((1.0 - path.far_share) * vessel.body_K + path.far_share * far_K)
+    metal += path.source_heat_capacity * vessel.source_K
     return vessel.mass * vessel.energy + metal
 
 
@@ -119,14 +121,20 @@ TURNS = st.lists(
     capacities=st.sampled_from([(1200.0, 2500.0), (60.0, 200.0), (300.0, 0.0)]),
     coupling=st.sampled_from([0.1, 5.0, 50.0]),
     reseats=st.booleans(),
+    sides=st.sampled_from([1, 2]),
     turns=TURNS,
 )
 def test_nothing_is_lost_whatever_hands_do(
-    gram: float, capacities: tuple[float, float], coupling: float, reseats: bool, turns: list[tuple[Controls, float]]
+    gram: float,
+    capacities: tuple[float, float],
+    coupling: float,
+    reseats: bool,
+    sides: int,
+    turns: list[tuple[Controls, float]],
 ) -> None:
     """Any vessel and charge, vents, leaks, relief and heat in any order: 1e-6 of what moved, as far as models reach."""
     path = HeatPath(capacities[0], coupling, 0.5, capacities[1], 60.0, 311.15)
-    simulation = Simulation(CO2, VOLUME, path, Relieving(70e5, reseats))
+    simulation = Simulation(CO2, VOLUME, two_sided(path) if sides == 2 else path, Relieving(70e5, reseats))
     first = Vessel(0.0, 0.0, ROOM, ROOM, False)
     vessel = simulation.loaded(first, gram / 1000.0, ATMOSPHERE)
     for controls, seconds in turns:
@@ -170,8 +178,8 @@ def test_what_lies_in_the_open_stays_as_warm_as_it_lies() -> None:
 
 def test_a_charge_colder_than_what_is_modelled_is_warmed_by_its_body() -> None:
     """Not by nothing: 1e-9 of what is held."""
-    simulation = Simulation(CO2, VOLUME, replace(PATH, loss_to_room=0.0))
-    closed = simulation.closed_in(Vessel(0.0, 0.0, ROOM, ROOM, False), 0.02, ROOM)
+    simulation = Simulation(CO2, VOLUME, two_sided(replace(PATH, loss_to_room=0.0)))
+    closed = simulation.closed_in(Vessel(0.0, 0.0, ROOM, ROOM, False, far_K=290.0), 0.02, ROOM)
     deep = replace(closed, energy=closed.energy - 1e6)
     after = simulation.advance(deep, Controls(False, 0.0, False, ROOM, ATMOSPHERE), 1.0)
     assert held(simulation, after) == pytest.approx(held(simulation, deep), rel=1e-9)

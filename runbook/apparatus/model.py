@@ -241,7 +241,8 @@ class Apparatus(FileModel):
     """Every part that bears pressure, cold or heat. Example: [{tag: B1, what: body, space: cell, pressure: up to 250
     bar(g), temperature: -100 degC to 100 degC, source: drawing}]"""
     relief: tuple[Relief, ...] = ()
-    """Bursting discs and relief valves. Example: [{tag: RV2, kind: relief valve, space: cell, opens_at: 9 bar(g),
+    """Bursting discs and relief valves; left out: nothing relieves it, and only charge and temperature keep its
+    pressure. Example: [{tag: RV2, kind: relief valve, space: cell, opens_at: 9 bar(g),
     tolerance: 3 %, run_below: 90 %, fitted: 2031-02-11, valid_until: 2032-02-11, source: test sheet}]"""
     heat_source: HeatSource | None = None
     """What warms the vessel besides the room; left out: nothing does. Example: {tag: H1, kind: water jacket, power: 60

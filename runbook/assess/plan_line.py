@@ -139,6 +139,9 @@ def _leans_on(scene: Scene, line: Walked) -> tuple[str, ...]:
         return ()
     if line.warms:
         return ("temperature", "charge")
+    if scene.comes_as_gas and line.lets_down and line.before.closed and line.before.low_kg <= 0.0:
+        # Some of the gas has gone before, and nobody knows how much: there is nothing the gauge could agree with.
+        return ()
     if line.lets_down and not line.seals:
         return ("pressure",)
     return ()

@@ -27,7 +27,8 @@ def main(argv: list[str]) -> int:
     parser.add_argument("--start", action="store_true", help="ask nothing: write the commented start")
     parser.add_argument("kind", nargs="?", choices=sorted(_NAMES), help="what to write")
     parser.add_argument("file", nargs="?", metavar="FILE", help=f"where (default: {_OR})")
-    asked = parser.parse_args(argv)
+    # FILE may stand after --start.
+    asked = parser.parse_intermixed_args(argv)
     if asked.manual:
         return _manual()
     if asked.kind is None:

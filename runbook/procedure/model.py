@@ -100,7 +100,8 @@ class Charge(FileModel):
     mass: Annotated[f.MassField, Positive]
     """What is sealed in, and the most it may be off. Example: 117 g ± 2 g"""
     loaded_as: Literal["dry ice", "liquid", "gas", "already loaded"]
-    """How it comes in. Example: dry ice"""
+    """How it comes in: dry ice and liquid as cold as they lie in the open; gas as warm as the room, let in under its
+    pressure and measured by gauge and thermometer. Example: dry ice"""
 
 
 class Room(FileModel):
@@ -179,7 +180,8 @@ class Procedure(FileModel):
     apparatus: Annotated[Text, BeforeValidator(_one_vessel)]
     """The apparatus file, relative to this one and in its folder or beneath. Example: apparatus/view-cell-250.yaml"""
     fluid: Text
-    """What is in the vessel, by name. Example: carbon dioxide"""
+    """What is in the vessel: R134a, argon, carbon dioxide, nitrogen, sulfur hexafluoride, water, xenon; ethane,
+    n-butane and propane, which burn, are known but refused. Example: carbon dioxide"""
     charge: Annotated[
         Annotated[Charge, Tag("(mapping)")] | Annotated[Literal["already loaded"], Tag("(words)")],
         Discriminator(mapping_or_words),

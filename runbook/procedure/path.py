@@ -61,7 +61,8 @@ class OpenContainment(FileModel):
     """A closure of the vessel is opened to the room."""
 
     open_containment: Name | None = None
-    """A closure is opened to the room: tag of the opening; left out: any. Example: V1"""
+    """A closure is opened to the room: tag of the opening; left out: any. A valve, also to let air in, is opened by
+    `valves` alone. Example: V1"""
 
     @model_validator(mode="before")
     @classmethod
@@ -73,7 +74,8 @@ class WarmTo(FileModel):
     """The fluid becomes warmer."""
 
     warm_to: Aim
-    """The fluid becomes warmer: to a temperature, or to `room temperature`. Example: 33 degC"""
+    """The fluid becomes warmer: to a temperature, or to `room temperature`; in the open by a source only what boils
+    above the room's temperature, such as water. Example: 33 degC"""
     by_means_of: Name
     """Tag of the heat source, or `room air`, `lukewarm water`, `cold water`. Example: H1"""
     set_to: f.TemperatureField | None = None
@@ -116,7 +118,8 @@ class LetDownTo(FileModel):
     """Gas leaves through a valve until a pressure is reached. It fixes a pressure, not a temperature."""
 
     let_down_to: f.LevelField
-    """Gas leaves until this pressure is reached; it fixes a pressure, not a temperature. Example: 0 bar(g)"""
+    """Gas leaves until this pressure is reached; it fixes a pressure, not a temperature. To stop above the room's
+    pressure write a quick sequence: open the valve, shut it with `path: seal` at the level. Example: 0 bar(g)"""
     through: Name
     """Tag of the valve. Example: V2"""
     pause_above: f.LevelField | None = None

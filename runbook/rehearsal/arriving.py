@@ -34,6 +34,13 @@ def arrived(world: World, plan: Plan, line: Walked) -> bool:
     return True
 
 
+def let_down(world: World, plan: Plan, path: LetDownTo) -> bool:
+    """Where gas is let out by hand to a level: a gauge that shows the vessel has come to it, or none shows it."""
+    shown = [world.read(one.tag) for one in plan.instruments if one.reads == "pressure"]
+    highest = max((one for one in shown if one is not None), default=None)
+    return highest is None or highest <= path.let_down_to.absolute(plan.barometer)
+
+
 def risen(world: World, path: LetRiseTo, barometer: float) -> bool:
     """Where a vent is held shut by hand: the gauge shows the level, or nothing, or the sight has come.
 

@@ -10,8 +10,8 @@ from dataclasses import dataclass
 
 from runbook.answers import LineKind, Need, PlanLine
 from runbook.assess.walk import Walked
-from runbook.procedure.model import DoStep, LetRiseTo, QuickStep
-from runbook.rehearsal.arriving import arrived, risen
+from runbook.procedure.model import DoStep, LetDownTo, LetRiseTo, QuickStep
+from runbook.rehearsal.arriving import arrived, let_down, risen
 from runbook.rehearsal.world import World
 from runbook.run.acts import (
     Act,
@@ -190,13 +190,20 @@ class Operator:
         return self._asked(line.read_after)
 
     def _risen(self, line: PlanLine, item: int) -> bool:
-        """Where a vent is held shut by hand: the sight has come, the gauge shows the level, or the time is over."""
+        """Where a hand waits for a level on a gauge: it shows it, the sight has come, or the time is over."""
         step = self._lines[self._conductor.ledger.line].step
         path = step.quick[item].path if isinstance(step, QuickStep) else None
+        before = step.quick[item - 1].path if isinstance(step, QuickStep) and item > 0 else None
+        if isinstance(before, LetDownTo) and not let_down(self._world, self._conductor.plan, before):
+            return self._late(line, item)
         if not isinstance(path, LetRiseTo):
             return True
         if risen(self._world, path, self._conductor.plan.barometer):
             return True
+        return self._late(line, item)
+
+    def _late(self, line: PlanLine, item: int) -> bool:
+        """The time of a quick act is all but over."""
         entry = self._conductor.ledger.entry
         since = entry.quick[-1].at if entry.quick else entry.at
         return self._conductor.clock.now().age(since) >= line.quick[item].latest_s - 2.0 * _WATCHING_S

@@ -135,3 +135,14 @@ def test_a_tube_no_gauge_can_read_leans_on_its_height() -> None:
     blocked = plan_line(other, walk(other), warming)
     assert [need.tag for need in blocked.entry_needs] == ["TT1", "no pressure instrument"]
     assert blocked.leans_on == ("temperature", "charge")
+
+
+def test_gas_left_by_a_let_down_leans_on_no_agreement(argon: tuple[Scene, tuple[Walked, ...]]) -> None:
+    """Before the first let-down gauge and charge have to agree; of what it leaves nobody knows how much there is."""
+    scene, lines = argon
+    downs = [i for i, line in enumerate(lines) if line.lets_down and line.before.closed]
+    assert len(downs) == 2
+    leans = [plan_line(scene, lines, i).leans_on for i in downs]
+    assert leans[-1] == ()
+    needs = [need.what for need in entry_needs(scene, lines, downs[-1])]
+    assert needs == ["temperature", "pressure"]

@@ -63,3 +63,11 @@ def test_the_schema_tells_every_key(capsys: pytest.CaptureFixture[str]) -> None:
     words: dict[str, Any] = editor_schema("procedure")["$defs"]
     assert words["Seal"]["const"] == "seal"
     assert "description" in words["WarmTo"]["properties"]["overshoot"]
+
+
+def test_the_file_may_stand_after_start(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """`runbook new apparatus --start FILE`, in the order that the help shows."""
+    path = tmp_path / "vessel.yaml"
+    assert main(["new", "apparatus", "--start", str(path)]) == 0
+    assert capsys.readouterr().out.strip() == str(path)
+    assert path.read_text("utf-8").startswith("# One vessel.")

@@ -31,7 +31,7 @@ def test_a_good_procedure_is_called_good(path: Path) -> None:
         assert plan.verdict == "within limits"
 
 
-@pytest.mark.parametrize("name", ["sf6", "r134a", "natterer", "xenon", "nitrogen"])
+@pytest.mark.parametrize("name", ["sf6", "r134a", "natterer", "xenon", "nitrogen", "argon", "beads", "co2-liquid"])
 def test_a_good_procedure_is_rehearsed_to_its_end(name: str) -> None:
     """The ideal operator comes through: tubes without a gauge, water poured by hand, gas from a cylinder."""
     found = asyncio.run(rehearse(next(path for path in FILES if path.stem == name), 1))

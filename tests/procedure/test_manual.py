@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 import os
+import re
 
+from runbook.fluids.catalogue import fluids
 from runbook.procedure.manual import BEGIN, key_table, manual_path
 
 
@@ -24,3 +26,12 @@ def test_the_page_itself_is_short() -> None:
     assert path is not None
     page = path.read_text("utf-8").partition(BEGIN)[0]
     assert len(page.split()) < 1200
+
+
+def test_every_fluid_is_named() -> None:
+    """The table says which fluids there are, and which of them are refused; the list is the catalogue's."""
+    row = next(line for line in key_table().splitlines() if line.startswith("| `fluid` |"))
+    allowed, refused = row.split(";")[:2]
+    for fluid in fluids():
+        there = refused if fluid.hazards.flammable else allowed
+        assert re.search(rf"\b{re.escape(fluid.name)}\b", there), fluid.name

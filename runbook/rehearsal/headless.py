@@ -220,7 +220,7 @@ class _Run:
 
     @property
     def _began(self) -> float | None:
-        return next((one.began for one in self.world.troubles.all), None)
+        return min((one.began for one in self.world.troubles.all if one.began is not None), default=None)
 
     def _watch_margin(self) -> None:
         answer = self.conductor.ledger.answer

@@ -21,7 +21,7 @@ from runbook.answers.margins import (
     Margin,
     Phase,
 )
-from runbook.answers.plan import Certificate, ChargeBounds, Finding, Instrument, Plan, PlanPart
+from runbook.answers.plan import Certificate, ChargeBounds, Finding, Instrument, Plan, PlanPart, VesselBeside
 from runbook.answers.question import Answer, Observation, Question, Unanswered
 from runbook.answers.request import BindRequest
 
@@ -63,5 +63,6 @@ __all__ = [
     "Sight",
     "Telling",
     "Unanswered",
+    "VesselBeside",
     "Witness",
 ]

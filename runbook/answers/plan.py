@@ -88,6 +88,24 @@ class Finding:
 
 
 @dataclass(frozen=True, slots=True)
+class VesselBeside:
+    """A further vessel in the same bath; its margins, readings and limits stand among the plan's own."""
+
+    vessel: str
+    """Its tag."""
+    apparatus: str
+    """What people call it."""
+    planned_kg: tuple[float, float]
+    """Least and most that is in it by the file [kg]."""
+    free_volume: tuple[float, float]
+    """Least and most [m3]."""
+    ceiling: float | None
+    """Lowest pressure limit [Pa]; None: not known."""
+    ceiling_by: str
+    bounds: ChargeBounds
+
+
+@dataclass(frozen=True, slots=True)
 class Plan:
     """A procedure bound to its vessel, this room and this charge."""
 
@@ -152,3 +170,5 @@ class Plan:
     """The planned charge at fixed density, cold to hot: temperature [K], pressure [Pa]. For pictures only."""
     telling: tuple[Telling, ...] = ()
     """What each instrument would show of the faults that happen, at rest as planned. For words only."""
+    beside: tuple[VesselBeside, ...] = ()
+    """Further vessels in the bath of the first; all other fields that name one vessel are the first one's."""

@@ -22,6 +22,8 @@ _PLACES: Final = {
     "oxygen": ("room air",),
 }
 """What an instrument that reads so can be on; a pressure is of a space."""
+SHARED: Final = ("bath", "room air", "scale")
+"""What an instrument of the first vessel reads for those beside it too."""
 
 
 def inconsistencies(apparatus: Apparatus) -> tuple[Finding, ...]:
@@ -33,6 +35,7 @@ def inconsistencies(apparatus: Apparatus) -> tuple[Finding, ...]:
         *_ranges(apparatus),
         *_instruments(apparatus),
         *_dates(apparatus),
+        *_beside(apparatus),
     )
 
 
@@ -43,6 +46,10 @@ def tagged(apparatus: Apparatus) -> list[tuple[tuple[str | int, ...], str]]:
         found += [((name, i, "tag"), one.tag) for i, one in enumerate(getattr(apparatus, name))]
     if apparatus.heat_source is not None:
         found.append((("heat_source", "tag"), apparatus.heat_source.tag))
+    for n, one in enumerate(apparatus.beside):
+        found.append((("beside", n, "tag"), one.tag))
+        for name in ("components", "instruments"):
+            found += [(("beside", n, name, i, "tag"), part.tag) for i, part in enumerate(getattr(one, name))]
     return found
 
 
@@ -126,6 +133,32 @@ def _instruments(apparatus: Apparatus) -> Iterable[Finding]:
                         "shorten the dial, or write an error instead of the class"
                     ),
                 )
+
+
+def _beside(apparatus: Apparatus) -> Iterable[Finding]:
+    if apparatus.beside and (apparatus.valves or apparatus.openings or apparatus.relief):
+        words = "only a vessel sealed for good, without valve, opening and relief, has others beside it"
+        yield ("beside",), words
+    for n, one in enumerate(apparatus.beside):
+        for i, reads in enumerate(one.instruments):
+            if reads.of not in ("window", "wall", apparatus.spaces[0]):
+                yield ("beside", n, "instruments", i, "of"), "what is shared is an instrument of the first vessel"
+        for route, message in inconsistencies(seen_alone(apparatus, n + 1)):
+            # What the first vessel's file shares has been said of it already.
+            if route[0] == "instruments" and int(route[1]) >= len(one.instruments):
+                continue
+            if route[0] in ("components", "instruments", "volume", "window", "proof_test"):
+                yield ("beside", n, *route), message
+
+
+def seen_alone(apparatus: Apparatus, number: int) -> Apparatus:
+    """One vessel of an apparatus, from 0, as if the others were not there: with the bath and what reads it."""
+    if number == 0:
+        return apparatus.model_copy(update={"beside": ()})
+    one = apparatus.beside[number - 1]
+    shared = tuple(i for i in apparatus.instruments if i.of in SHARED)
+    own = {name: getattr(one, name) for name in type(one).model_fields if name != "instruments"}
+    return apparatus.model_copy(update={**own, "instruments": (*one.instruments, *shared), "beside": (), "beads": ()})
 
 
 def _dates(apparatus: Apparatus) -> Iterable[Finding]:

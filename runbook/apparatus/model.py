@@ -197,6 +197,38 @@ CyclesOrUnknown = Annotated[
 ]
 
 
+class Beside(FileModel):
+    """A further vessel, sealed for good, in the bath of the first: what is shared stands in the first alone."""
+
+    name: Text
+    """What people call it. Example: tube with much in it"""
+    tag: Name
+    """Of this vessel. Example: T14"""
+    volume: Volume
+    """What the fluid can fill. Example: {free: 12.0 mL ± 0.1 mL, source: filled with water and weighed}"""
+    shape: Literal["lying cylinder", "upright cylinder", "sphere"]
+    """How the inside lies. Example: upright cylinder"""
+    diameter: Annotated[f.LengthField, Positive]
+    """Inside. Example: 14 mm"""
+    window: Annotated[f.LengthRangeField, AfterValidator(_window)] | None = None
+    """Lowest and highest visible height above the inside bottom. Example: 2 mm to 76 mm"""
+    body: Body
+    """The heat side of this vessel. Example: {heat_capacity: 60 J/K, from_fluid: 0.5 W/K, loss_to_room: 0.2 W/K}"""
+    mawp: Mawp
+    """Maximum allowable working pressure. Example: {rating: 70 bar(g), source: drawing}"""
+    proof_test: ProofTestOrUnknown
+    """The last pressure test, or `not known`. Example: {pressure: 105 bar(g), done: 2031-01-14, valid_until:
+    2033-01-13}"""
+    cycles: CyclesOrUnknown
+    """Pressure cycles of its life, or `not known`. Example: {allowed: 2000, before_this_log: 120}"""
+    components: Annotated[tuple[Component, ...], Field(min_length=1)]
+    """Every part that bears pressure, cold or heat; `space` is the first vessel's. Example: [{tag: G14, what: quartz
+    tube, space: tube, pressure: up to 80 bar(g), temperature: -20 degC to 150 degC, source: proof test}]"""
+    instruments: tuple[Instrument, ...] = ()
+    """What is read on this vessel alone. Example: [{tag: HS14, reads: liquid height, of: window, dial: 0 mm to 80 mm,
+    error: 1 mm, division: 1 mm, read_from: camera, valid_until: 2032-01-19}]"""
+
+
 class Apparatus(FileModel):
     """One vessel. All quantities SI; a pressure is a Level with its reference."""
 
@@ -253,5 +285,11 @@ class Apparatus(FileModel):
     beads: tuple[Bead, ...] = ()
     """Beads in view that tell the density around them; their own volume is taken off the free volume. Example:
     [{tag: K1, density: 0.45 g/cm3 ± 0.01 g/cm3, colour: red}]"""
+    beside: tuple[Beside, ...] = ()
+    """Further vessels, sealed for good, in the same bath; only of a vessel without valve and opening. Example: [{name:
+    tube with much in it, tag: T14, volume: {free: 12.0 mL ± 0.1 mL, source: weighed}, shape: upright cylinder,
+    diameter: 14 mm, body: {heat_capacity: 60 J/K, from_fluid: 0.5 W/K, loss_to_room: 0.2 W/K}, mawp: {rating: 70
+    bar(g), source: drawing}, proof_test: not known, cycles: not known, components: [{tag: G14, what: quartz tube,
+    space: tube, pressure: up to 80 bar(g), temperature: -20 degC to 150 degC, source: proof test}]}]"""
     logbook: Text | None = None
     """A shared folder of runs, relative to this file. Example: ../logbook"""

@@ -24,7 +24,8 @@ from runbook.assess.mend import mends
 from runbook.assess.open_heat import open_heat_findings
 from runbook.assess.path import planned_path
 from runbook.assess.plan_line import plan_line
-from runbook.assess.scene import Scene, open_scene
+from runbook.assess.scene import Scene, open_scene, refuse_unbound
+from runbook.assess.several import merged_plan
 from runbook.assess.single_faults import single_fault_findings
 from runbook.assess.truth import truth_findings
 from runbook.assess.verdict import line_findings, mend_findings, position, verdict_of
@@ -34,6 +35,7 @@ from runbook.procedure.model import (
 )
 from runbook.procedure.reader import Loaded
 from runbook.procedure.rules_guard import LOADS
+from runbook.procedure.several import seen_from_each
 from runbook.procedure.writing import findings as writing_findings
 from runbook.quantities import Level
 
@@ -49,7 +51,17 @@ def bind(
     charge: what the vessel's charge record says is in it. Raises InputUnusable, never OutsideValidity: what
     the models do not reach is an unknown margin, and the verdict is not proved.
     """
-    return plan_of(open_scene(loaded, barometer_Pa, charge), on)
+    refuse_unbound(loaded)
+    scenes = [open_scene(one, barometer_Pa, charge if n == 0 else None) for n, one in enumerate(seen_from_each(loaded))]
+    return plan_of_all(loaded, [(scene, walk(scene)) for scene in scenes], on)
+
+
+def plan_of_all(
+    loaded: Loaded, scenes: Sequence[tuple[Scene, tuple[Walked, ...]]], on: date, part: int = 0
+) -> Plan:
+    """The plan of all vessels of a procedure, each in its scene, the first one first."""
+    plans = [plan_of(scene, on, lines, part) for scene, lines in scenes]
+    return merged_plan(plans, _written(scenes[0][0], loaded)) if len(plans) > 1 else plans[0]
 
 
 def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, part: int = 0) -> Plan:
@@ -64,7 +76,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
     vent = lets_down or next((t for t in outside if any(v.tag == t for v in apparatus.valves)), None)
     forbidden = scene.substance.data.hazards.release_forbidden
     found = (
-        _written(scene)
+        (() if loaded.one_of_several else _written(scene, loaded))
         + barred_findings(scene)
         + line_findings(loaded, walked, plan_lines, dated)
         + truth_findings(scene, walked, places)
@@ -121,12 +133,12 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
     )
 
 
-def _written(scene: Scene) -> tuple[Finding, ...]:
+def _written(scene: Scene, loaded: Loaded) -> tuple[Finding, ...]:
     """What the writing rules find, but for what they cannot know: a fluid that is neither cold nor under pressure."""
     mild = f"this {LOADS}" if scene.stays_liquid else None
     return tuple(
         Finding(p.rule, p.severity, p.line, p.column, p.message)
-        for p in writing_findings(scene.loaded)
+        for p in writing_findings(loaded)
         if mild is None or not p.message.startswith(mild)
     )
 

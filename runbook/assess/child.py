@@ -23,13 +23,15 @@ from typing import Any
 from runbook import __version__
 from runbook.answers import Question
 from runbook.answers.request import BindRequest
-from runbook.assess.bind import plan_of
+from runbook.assess.bind import plan_of_all
 from runbook.assess.now import answer
-from runbook.assess.scene import Scene, open_scene
+from runbook.assess.scene import Scene, open_scene, refuse_unbound
+from runbook.assess.several import asked_of, merged_answer
 from runbook.assess.walk import Walked, walk
 from runbook.codec import from_plain, to_plain
 from runbook.errors import FileProblems, RunbookError
-from runbook.procedure.reader import read_procedure
+from runbook.procedure.reader import Loaded, read_procedure
+from runbook.procedure.several import seen_from_each
 
 LONGEST_S = 60.0
 """No answer takes this long; then the process is stuck and ends itself [s]."""
@@ -39,8 +41,18 @@ LONGEST_S = 60.0
 class Bound:
     """The one procedure this child has bound."""
 
-    scene: Scene | None = None
-    lines: tuple[Walked, ...] = ()
+    scenes: tuple[tuple[Scene, tuple[Walked, ...]], ...] = ()
+    """Of each vessel, the first one first; empty: nothing is bound."""
+
+    @property
+    def scene(self) -> Scene | None:
+        """Of the first vessel."""
+        return self.scenes[0][0] if self.scenes else None
+
+    @property
+    def lines(self) -> tuple[Walked, ...]:
+        """As the first vessel goes through them."""
+        return self.scenes[0][1] if self.scenes else ()
 
 
 def versions() -> dict[str, str]:
@@ -54,18 +66,23 @@ def versions() -> dict[str, str]:
     return found
 
 
-def opened(request: BindRequest) -> tuple[Scene, tuple[Walked, ...]]:
-    """The scene of a request and its walk. Raises FileProblems, InputUnusable or OutsideValidity."""
-    scene = open_scene(
-        read_procedure(Path(request.procedure_path)),
-        request.barometer_Pa,
-        request.charge,
-        height_m=request.height_m,
-        hottest_K=request.room_hottest_K,
-        # A later part finds the vessel as the parts before it leave it.
-        cell_closed=request.cell_closed and request.part == 0,
-    )
-    return scene, walk(scene)
+def opened(loaded: Loaded, request: BindRequest) -> tuple[tuple[Scene, tuple[Walked, ...]], ...]:
+    """The scene of each vessel of a request, and its walk. Raises FileProblems, InputUnusable or OutsideValidity."""
+    # What is wrong with the files as they stand is told of them, not of one vessel's view.
+    refuse_unbound(loaded)
+    scenes = [
+        open_scene(
+            seen,
+            request.barometer_Pa,
+            request.charge if number == 0 else None,
+            height_m=request.height_m,
+            hottest_K=request.room_hottest_K,
+            # A later part finds the vessel as the parts before it leave it.
+            cell_closed=request.cell_closed and request.part == 0 and number == 0,
+        )
+        for number, seen in enumerate(seen_from_each(loaded))
+    ]
+    return tuple((scene, walk(scene)) for scene in scenes)
 
 
 def reply(bound: Bound, asked: dict[str, Any]) -> dict[str, Any]:
@@ -74,9 +91,9 @@ def reply(bound: Bound, asked: dict[str, Any]) -> dict[str, Any]:
     try:
         if asked.get("ask") == "bind":
             request = from_plain(BindRequest, asked["request"])
-            scene, bound.lines = opened(request)
-            bound.scene, loaded = scene, scene.loaded
-            plan = plan_of(scene, date.fromisoformat(request.on), bound.lines, request.part)
+            loaded = read_procedure(Path(request.procedure_path))
+            bound.scenes = opened(loaded, request)
+            plan = plan_of_all(loaded, bound.scenes, date.fromisoformat(request.on), request.part)
             return {
                 "key": key,
                 "plan": to_plain(plan),
@@ -84,10 +101,15 @@ def reply(bound: Bound, asked: dict[str, Any]) -> dict[str, Any]:
                 "apparatus_text": loaded.apparatus_text,
             }
         if asked.get("ask") == "now":
-            if bound.scene is None:
+            if not bound.scenes:
                 return {"key": key, "why": "nothing is bound yet"}
             question = from_plain(Question, asked["question"])
-            return {"key": key, "answer": to_plain(answer(bound.scene, bound.lines, question))}
+            answers = [
+                answer(scene, lines, asked_of(scene, question, first=n == 0) if len(bound.scenes) > 1 else question)
+                for n, (scene, lines) in enumerate(bound.scenes)
+            ]
+            tags = [scene.apparatus.tag for scene, _ in bound.scenes]
+            return {"key": key, "answer": to_plain(merged_answer(answers, tags, question.key))}
     except FileProblems as problems:
         return {"key": key, "problems": [to_plain(p) for p in problems.problems]}
     except RunbookError as error:

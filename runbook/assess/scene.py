@@ -249,7 +249,8 @@ def open_scene(
     OutsideValidity for an impossible barometer, FileProblems for a fluid that is not known and where a step names
     what the apparatus does not have: no margin can be computed for that.
     """
-    _refuse_unbound(loaded)
+    if not loaded.one_of_several:
+        refuse_unbound(loaded)
     if charge is None and not cell_closed:
         charge = _stated(loaded)
     stated = loaded.procedure.room.height
@@ -269,7 +270,8 @@ UNBOUND = ("unknown tag", "wrong instrument", "position")
 """Rules whose errors leave a step without the thing it is about."""
 
 
-def _refuse_unbound(loaded: Loaded) -> None:
+def refuse_unbound(loaded: Loaded) -> None:
+    """Raises FileProblems where a step names what the apparatus does not have."""
     errors = tuple(p for p in writing_findings(loaded) if p.severity == "error")
     if any(p.rule in UNBOUND for p in errors):
         raise FileProblems(errors)

@@ -187,6 +187,9 @@ class Procedure(FileModel):
         Discriminator(mapping_or_words),
     ]
     """How much is sealed in; or the words `already loaded`. Example: {mass: 117 g ± 2 g, loaded_as: dry ice}"""
+    beside: dict[Name, Charge] = Field(default_factory=dict)
+    """What is in each vessel beside the first, by its tag; they come loaded. Example: {T14: {mass: 12.5 g ± 0.1 g,
+    loaded_as: already loaded}}"""
     room: Room
     """The room it is written for. Example: {hottest: 30 degC, coldest: 18 degC, volume: 180 m3, air_changes: 2 per h,
     height: 120 m}"""

@@ -45,6 +45,8 @@ class Loaded:
     procedure_sha256: str
     """Of the file's bytes."""
     apparatus_sha256: str
+    one_of_several: bool = False
+    """As one vessel of several sees the files, which have been judged as a whole."""
 
 
 def read_procedure(path: Path) -> Loaded:

@@ -33,6 +33,7 @@ def unknown_tags(procedure: Procedure, apparatus: Apparatus) -> Iterator[Found]:
     """Rules 'unknown tag', 'position', 'start position' and 'wrong instrument'."""
     kinds = _kinds(apparatus)
     yield from _at_start(procedure, kinds)
+    yield from _beside(procedure, apparatus)
     for line in lines_of(procedure):
         for route, valves, path, _ in acts_of(line):
             yield from _positions((*route, "valves"), valves, kinds)
@@ -51,6 +52,19 @@ def _kinds(apparatus: Apparatus) -> dict[str, str]:
     if apparatus.heat_source is not None:
         kinds[apparatus.heat_source.tag] = "heat source"
     return kinds
+
+
+def _beside(procedure: Procedure, apparatus: Apparatus) -> Iterable[Found]:
+    """Every vessel beside the first has its charge, and comes loaded: nobody loads a vessel that is sealed for good."""
+    there = [one.tag for one in apparatus.beside]
+    for tag, charge in procedure.beside.items():
+        if tag not in there:
+            yield _unknown(("beside", tag), tag, there, "vessel beside the first")
+        elif charge.loaded_as != "already loaded":
+            yield Found("position", ("beside", tag, "loaded_as"), f"{tag} is sealed for good: it comes already loaded")
+    if missing := [tag for tag in there if tag not in procedure.beside]:
+        route = ("beside",) if procedure.beside else ("apparatus",)
+        yield Found("unknown tag", route, f"beside: does not say what is in {listed(missing)}")
 
 
 def _at_start(procedure: Procedure, kinds: dict[str, str]) -> Iterable[Found]:

@@ -23,6 +23,7 @@ from runbook.procedure.rules_readings import readings
 from runbook.procedure.rules_tags import unknown_tags
 from runbook.procedure.rules_text import messages, wording
 from runbook.procedure.rules_vessel import heating, protection
+from runbook.procedure.several import whole
 
 Rule = Callable[[Procedure, Apparatus], Iterator[Found]]
 
@@ -48,7 +49,7 @@ def findings(loaded: Loaded) -> tuple[Problem, ...]:
     lines = split_lines(loaded.procedure_text)
     kept: dict[tuple[Place, str, str], Problem] = {}
     for rule in RULES:
-        for found in rule(loaded.procedure, loaded.apparatus):
+        for found in rule(loaded.procedure, whole(loaded.apparatus)):
             at = _place(loaded, found.route)
             problem = located(loaded.procedure_file, lines, at, found.message, found.rule, found.severity)
             kept.setdefault((at, found.rule, found.message), problem)

@@ -11,13 +11,16 @@ import sys
 from collections.abc import Callable
 from dataclasses import replace
 from datetime import date
+from pathlib import Path
 from typing import Any
 
 from runbook.answers.request import BindRequest
-from runbook.assess.bind import plan_of
+from runbook.assess.bind import plan_of_all
 from runbook.assess.child import opened, serve_standard
 from runbook.codec import from_plain
 from runbook.errors import RunbookError
+from runbook.procedure.reader import read_procedure
+from runbook.rehearsal.bath import world_of
 from runbook.rehearsal.faults import Trouble, Troubles, parse_fault
 from runbook.rehearsal.world import World
 from runbook.run.clock import Moment
@@ -27,9 +30,10 @@ from runbook.run.state import Ledger, Stated
 def open_world(asked: dict[str, Any]) -> World:
     """The world of a request, a seed and a moment. Raises RunbookError."""
     request = from_plain(BindRequest, asked["request"])
-    scene, lines = opened(request)
-    plan = plan_of(scene, date.fromisoformat(request.on), lines, request.part)
-    return World(scene, lines, plan, int(asked["seed"]), Moment(float(asked["boot"]), 0.0), request.part, Troubles())
+    loaded = read_procedure(Path(request.procedure_path))
+    scenes = opened(loaded, request)
+    plan = plan_of_all(loaded, scenes, date.fromisoformat(request.on), request.part)
+    return world_of(scenes, plan, int(asked["seed"]), Moment(float(asked["boot"]), 0.0), request.part, Troubles())
 
 
 def look(world: World, asked: dict[str, Any]) -> dict[str, Any]:

@@ -16,6 +16,7 @@ from runbook.assess.local import LocalEngine
 from runbook.assess.scene import Scene
 from runbook.procedure.reader import read_procedure
 from runbook.quantities import NotKnown
+from runbook.rehearsal.bath import world_of
 from runbook.rehearsal.failing import FailingEngine
 from runbook.rehearsal.faults import Fault, Trouble, Troubles
 from runbook.rehearsal.lots import Lot
@@ -114,11 +115,8 @@ async def rehearse(
     assert scene is not None, "bind leaves a scene"
     troubles = Troubles([Trouble(*one) for one in faults])
     there = None if draw is None else draw(scene, bound.plan)
-    world = World(
-        scene if there is None else there.scene,
-        lines if there is None else there.lines,
-        bound.plan, seed, clock.now(), part, troubles,
-    )  # fmt: skip
+    scenes = local.here.scenes if there is None else ((there.scene, there.lines), *local.here.scenes[1:])
+    world = world_of(scenes, bound.plan, seed, clock.now(), part, troubles)
     engine.away = lambda: troubles.lost(clock.now().boot)
     run = _Run(conductor, world, Operator(conductor, world, lines, who), clock, loaded.apparatus)
     try:

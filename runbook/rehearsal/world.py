@@ -72,11 +72,14 @@ class World:
         self._connected = False
         self._full_of_air = plan.barometer * volume / (GAS_CONSTANT * room)
         self._high_gauge = next(
-            (i.tag for i in plan.instruments if i.reads == "pressure" and i.of == scene.charge_space), None
+            (i.tag for i in scene.apparatus.instruments if i.reads == "pressure" and i.of == scene.charge_space), None
         )
         self.room_K = room
         """Temperature of the room [K]."""
-        self._dials = Dials(plan.instruments, seed)
+        self.own_tags = {one.tag for one in scene.apparatus.instruments}
+        """Instruments that read this vessel and what is around it."""
+        self._instruments = tuple(one for one in plan.instruments if one.tag in self.own_tags)
+        self._dials = Dials(self._instruments, seed)
         self._shown = Shown()
         self._at = now.boot
         self._line = plan.parts[part].first - 1 if part else -1
@@ -252,7 +255,7 @@ class World:
     def truth(self) -> dict[str, float]:
         """What each instrument would show if it were perfect [SI; pressures absolute]."""
         found: dict[str, float] = {}
-        for one in self._plan.instruments:
+        for one in self._instruments:
             value = self._true(one.tag, one.reads)
             if value is not None:
                 found[one.tag] = self.troubles.truth(one.tag, one.reads, value, self.room_K, self._high_gauge)

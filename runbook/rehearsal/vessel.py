@@ -59,6 +59,8 @@ class Simulation:
     def loaded(self, vessel: Vessel, mass: float, barometer: float) -> Vessel:
         """Solid (or liquid) of a mass [kg] laid into the open vessel, at its temperature in the open."""
         lying = self._open.lying(barometer)
+        if self._stays(vessel.body_K, barometer):
+            return self.closed_in(vessel, mass, vessel.body_K)
         # What is too little to fill the vessel with its own vapour comes all the same as what lies there.
         density = max(mass / self.volume, 2.0 * lying.vapour_density)
         energy = self.substance.state(lying.temperature, density).internal_energy or 0.0
@@ -101,6 +103,10 @@ class Simulation:
         """Temperature of what lies in the open [K]."""
         return self._open.lying(barometer).temperature
 
+    def _stays(self, kelvin: float, barometer: float) -> bool:
+        """In the open it is a liquid that does not boil, at a temperature [K] and a pressure of the room [Pa]."""
+        return self.substance.triple_temperature < kelvin < self.in_the_open_at(barometer)
+
     def state(self, vessel: Vessel) -> State | None:
         """Of the closed charge; None when empty or in the open."""
         if vessel.mass <= _GONE or vessel.in_the_open:
@@ -120,6 +126,9 @@ class Simulation:
             # Where the vessel is full of liquid the air is in it, and adds what nobody can say.
             with contextlib.suppress(OutsideValidity):
                 air = air_pressure(self.substance, state.temperature, state.density, vessel.air, self.volume)
+        if not controls.vent_open and self._stays(controls.room_K, controls.barometer):
+            # Cold steam draws a vacuum.
+            return state.pressure + air
         return max(state.pressure + air, controls.barometer)
 
     def temperature(self, vessel: Vessel) -> float:
@@ -144,8 +153,10 @@ class Simulation:
                 continue
             vessel = replace(vessel, in_the_open=False)
             holes = self._holes(vessel, controls)
-            if holes and not controls.vent_open and self.pressure(vessel, controls) <= controls.barometer * 1.001:
-                # Nothing leaves through a leak that nothing drives, and it makes no open vessel.
+            quiet = not controls.vent_open or self._stays(controls.room_K, controls.barometer)
+            if holes and quiet and self.pressure(vessel, controls) <= controls.barometer * 1.001:
+                # Nothing leaves through a leak that nothing drives, and it makes no open vessel; nor does what lies
+                # there as a liquid leave before it boils.
                 holes = ()
             if not holes:
                 vessel, step = self._shut(vessel, controls, left)

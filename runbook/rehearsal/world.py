@@ -329,7 +329,8 @@ class World:
                 return verb.set_to.value
             aim = verb.warm_to if isinstance(verb, WarmTo) else verb.cool_to
             return self.room_K if isinstance(aim, str) else aim.value
-        return False
+        # Left on it keeps the set point it has.
+        return False if self._set is None else self._set.heating
 
     def _fresh_water(self, verb: CoolTo) -> None:
         """To cool by a jacket or bath of water is to fill it with water of the set temperature; no other source can."""

@@ -133,11 +133,14 @@ def _containment(plan: Plan, ledger: Ledger, now: Moment) -> Iterator[Reason]:
 def _position_after_leaving(plan: Plan, ledger: Ledger, now: Moment, tag: str) -> str:
     """Of a valve, once going on has confirmed what the present line does to it, if that line is finished.
 
-    What the line moves and nobody has stated since is not known: taking it up again confirms nothing.
+    What an unfinished line moves to another position is not known: taking it up confirms nothing.
     """
     line = ledger.present
-    moved = dict(line.valves) if line is not None and not unfinished(plan, ledger, now) else {}
-    return moved.get(tag, UNKNOWN if tag in ledger.entry.unconfirmed else ledger.position(tag))
+    moves = dict(line.valves) if line is not None else {}
+    if tag in moves and not unfinished(plan, ledger, now):
+        return moves[tag]
+    stands = ledger.position(tag)
+    return stands if moves.get(tag, stands) == stands else UNKNOWN
 
 
 def _needs(plan: Plan, ledger: Ledger, now: Moment, line: PlanLine, answer: Answer | None) -> Iterator[Reason]:

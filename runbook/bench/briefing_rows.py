@@ -10,6 +10,7 @@ from typing import Final
 from runbook.answers import BindRequest, Finding, Plan
 from runbook.bench.rows import EMPTY, Row, wrapped
 from runbook.quantities import say, say_level
+from runbook.run.amounts import planned, vessels
 from runbook.run.evidence_words import TOLD, telling_lines
 from runbook.run.sight_words import along
 
@@ -47,7 +48,7 @@ def _verdict(plan: Plan, width: int) -> list[Row]:
     words = f"{sign} {plan.verdict.upper()} of the figures in the file, approved by {plan.approved}"
     return [
         *wrapped(f" {plan.procedure}", width - 1, "strong"),
-        *_pair("vessel", f"{plan.vessel}, {plan.apparatus}; {plan.fluid}", width),
+        *_pair("vessel", f"{vessels(plan)}; {plan.fluid}", width),
         *_pair("checked", words, width, style),
     ]
 
@@ -78,14 +79,14 @@ def _numbers(plan: Plan, width: int) -> list[Row]:
     rows = _pair(
         "ceiling", _pressure(plan.ceiling, plan) + (f" by {plan.ceiling_by}" if plan.ceiling_by else ""), width
     )
-    for name, mass, reason in (
+    # Vessels that stand beside each other are sealed: nobody chooses what is in them.
+    for name, mass, reason in () if plan.beside else (
         ("least charge", bounds.least_kg, bounds.least_reason),
         ("best charge", bounds.best_kg, bounds.best_reason),
         ("most charge", bounds.most_kg, bounds.most_reason),
     ):
         rows += _pair(name, f"{'none' if mass is None else say(mass, 'g', 1)}  {reason}", width)
-    low, high = plan.planned_kg
-    rows += _pair("planned", f"{say(low, 'g', 1)} to {say(high, 'g', 1)}", width, "strong")
+    rows += _pair("planned", planned(plan), width, "strong")
     restless = [line.number for line in plan.lines if not line.left_alone.at_rest]
     ends = [f.ends_Pa for line in plan.lines for f in line.left_alone.futures if f.ends_Pa is not None]
     highest = f"at most {_pressure(max(ends), plan)}" if ends else "not known"

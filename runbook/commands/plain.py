@@ -21,7 +21,7 @@ from runbook.commands.plain_session import Input, Session
 from runbook.errors import ExitCode, InputUnusable, JournalError
 from runbook.procedure.reader import read_procedure
 from runbook.rehearsal.failing import FailingEngine
-from runbook.run.amounts import pressure
+from runbook.run.amounts import planned, pressure, vessels
 from runbook.run.clock import Clock, ScaledClock, SystemClock
 from runbook.run.conductor import Conductor
 from runbook.run.engine import ChildEngine
@@ -146,13 +146,13 @@ def briefing_lines(plan: Plan) -> list[str]:
     masses = {"least": bounds.least_kg, "best": bounds.best_kg, "most": bounds.most_kg}
     reasons = {"least": bounds.least_reason, "best": bounds.best_reason, "most": bounds.most_reason}
     lines = [
-        f"{plan.procedure} in {plan.apparatus} ({plan.vessel})",
+        f"{plan.procedure} in {vessels(plan)}",
         f"{plan.verdict} of the figures in this file, approved by {plan.approved}",
         f"ceiling {pressure(plan, plan.ceiling)} by {plan.ceiling_by}; barometer {plan.barometer / 100:.0f} hPa, "
         f"by {plan.barometer_source}",
-        f"planned {plan.planned_kg[0] * 1000:.1f} to {plan.planned_kg[1] * 1000:.1f} g",
+        f"planned {planned(plan)}",
     ]
-    for name, mass in masses.items():
+    for name, mass in () if plan.beside else masses.items():
         lines.append(f"  {name} " + ("none" if mass is None else f"{mass * 1000:.1f} g") + f": {reasons[name]}")
     lines += [f"  instrument {said}" for said in telling_lines(plan, TOLD)]
     lines += [f"  bring: {thing}" for thing in plan.bring]

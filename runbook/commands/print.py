@@ -45,20 +45,23 @@ def main(argv: list[str]) -> int:
 
 def _page(file: str, on: date, barometer: str | None) -> tuple[str | None, str, list[str]]:
     """The page, or None with the verdict and the findings."""
-    from runbook.assess.bind import plan_of
+    from runbook.assess.bind import plan_of_all
     from runbook.assess.gauge_card import gauge_card
-    from runbook.assess.scene import open_scene
+    from runbook.assess.scene import open_scene, refuse_unbound
     from runbook.assess.walk import walk
     from runbook.paper.booklet import booklet
     from runbook.procedure.reader import read_procedure
+    from runbook.procedure.several import seen_from_each
     from runbook.procedure.shelf import find_procedure
     from runbook.quantities import parse_barometer
 
     loaded = read_procedure(find_procedure(file))
-    scene = open_scene(loaded, None if barometer is None else parse_barometer(barometer), None)
-    lines = walk(scene)
-    plan = plan_of(scene, on, lines)
+    read = None if barometer is None else parse_barometer(barometer)
+    refuse_unbound(loaded)
+    scenes = tuple((scene, walk(scene)) for scene in (open_scene(one, read, None) for one in seen_from_each(loaded)))
+    plan = plan_of_all(loaded, scenes, on)
     if plan.verdict != "within limits":
         said = [f"{f.file or file}:{f.line}:{f.column}: {f.severity}: {f.message} [{f.rule}]" for f in plan.findings]
         return None, plan.verdict, said
-    return booklet(plan, loaded.procedure.issue, gauge_card(scene, lines), on), plan.verdict, []
+    card, *others = (gauge_card(scene, lines) for scene, lines in scenes)
+    return booklet(plan, loaded.procedure.issue, card, on, others), plan.verdict, []

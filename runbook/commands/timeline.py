@@ -10,6 +10,7 @@ import json
 import sys
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
+from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -26,29 +27,55 @@ _MOST_RUNS = 10_000
 
 def show_timeline(path: Path, seed: int, runs: int, part: int | None, as_json: bool) -> int:
     """Compute and print; part: from 1, None for all. Returns the exit code: 1 where a part does not fit."""
-    from runbook.rehearsal.letting_down import let_down_plan
-    from runbook.rehearsal.many import all_lots
-    from runbook.rehearsal.timeline import Asked, fits, opened, timed_parts, timeline
-    from runbook.rehearsal.warming import warmings
+    from runbook.procedure.reader import read_procedure
+    from runbook.procedure.several import seen_from_each
+    from runbook.rehearsal.timeline import fits
 
     if not 1 <= runs <= _MOST_RUNS:
         raise InputUnusable(f"--runs is a count from 1 to {_MOST_RUNS}, not {runs}")
-    scene, plan, lots = opened(Asked(path, seed, runs, ()))
+    count = len(seen_from_each(read_procedure(path)))
+    found = [_vessel(path, seed, runs, part, number) for number in range(count)]
+    if as_json:
+        first, *beside = (as_document(str(path), seed, runs, one.parts, one.warm, one.lets_down) for one in found)
+        pairs = zip(found[1:], beside, strict=True)
+        others = [{"vessel": one.plan.vessel, "parts": doc["parts"]} for one, doc in pairs]
+        print(json.dumps(first | ({"beside": others} if others else {}), indent=2, allow_nan=False))
+    else:
+        for one in found:
+            if count > 1:
+                print(f"VESSEL {one.plan.vessel}, {one.plan.apparatus}")
+            print("\n".join(_lines(one.plan, seed, runs, one.parts, one.warm, one.lets_down)))
+    good = all(fits(part) for one in found for part in one.parts)
+    return int(ExitCode.GOOD if good else ExitCode.NOT_GOOD)
+
+
+@dataclass(frozen=True)
+class _Timed:
+    """What was computed for one vessel."""
+
+    plan: Plan
+    parts: tuple[PartTimes, ...]
+    warm: dict[int, tuple[Warming, ...]]
+    lets_down: LetDownPlan | None
+
+
+def _vessel(path: Path, seed: int, runs: int, part: int | None, number: int) -> _Timed:
+    from runbook.rehearsal.letting_down import let_down_plan
+    from runbook.rehearsal.many import all_lots
+    from runbook.rehearsal.timeline import Asked, opened, timed_parts, timeline
+    from runbook.rehearsal.warming import warmings
+
+    scene, plan, lots = opened(Asked(path, seed, runs, (), number))
     wanted = timed_parts(plan)
     if part is not None:
         if part - 1 not in wanted:
             raise InputUnusable(f"there is no part {part} in which something is done: {_names(plan, wanted)}")
         wanted = (part - 1,)
-    asked = Asked(path, seed, runs, wanted)
+    asked = Asked(path, seed, runs, wanted, number)
     with _progress(len(lots)) as told:
         parts = timeline(plan, wanted, all_lots(asked, lots, told))
         warm = {one.index: warmings(plan, one, lots) for one in parts}
-        lets_down = let_down_plan(scene, plan, wanted)
-    if as_json:
-        print(json.dumps(as_document(str(path), seed, runs, parts, warm, lets_down), indent=2, allow_nan=False))
-    else:
-        print("\n".join(_lines(plan, seed, runs, parts, warm, lets_down)))
-    return int(ExitCode.GOOD if all(fits(one) for one in parts) else ExitCode.NOT_GOOD)
+        return _Timed(plan, parts, warm, let_down_plan(scene, plan, wanted))
 
 
 def _names(plan: Plan, wanted: tuple[int, ...]) -> str:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+from dataclasses import replace
 from datetime import date
 from xml.etree.ElementTree import Element
 
@@ -11,11 +13,13 @@ from runbook.paper import cards, lines
 from runbook.paper.markup import Child, document, tag
 from runbook.paper.style import STYLE
 from runbook.procedure.model import Issue
-from runbook.run.amounts import grams, pressure, temperature
+from runbook.run.amounts import planned, pressure, temperature, vessels
 
 
-def booklet(plan: Plan, issue: Issue, card: GaugeCard | None, on: date) -> str:
-    """One self-contained page; on: the day its certificates were judged on.
+def booklet(
+    plan: Plan, issue: Issue, card: GaugeCard | None, on: date, others: Sequence[GaugeCard | None] = ()
+) -> str:
+    """One self-contained page; on: the day its certificates were judged on; others: of the vessels beside the first.
 
     Raises InputUnusable for a plan that is not within limits.
     """
@@ -32,6 +36,10 @@ def booklet(plan: Plan, issue: Issue, card: GaugeCard | None, on: date) -> str:
             "section",
             tag("h2", "To cut out"),
             cards.vessel_tag(plan, card),
+            *(
+                cards.vessel_tag(replace(plan, vessel=one.vessel, planned_kg=one.planned_kg), its)
+                for one, its in zip(plan.beside, others, strict=True)
+            ),
             cards.door_sign(plan),
             cards.fire_card(plan, card),
             class_="sheet",
@@ -44,9 +52,9 @@ def _cover(plan: Plan, issue: Issue, on: date) -> Element:
     facts: list[tuple[str, str]] = [
         ("issue", f"{issue.number} of {issue.date.isoformat()}, written by {issue.written_by}, "
                   f"checked by {issue.checked_by}, review by {issue.review_by.isoformat()}"),
-        ("vessel", f"{plan.vessel}, {plan.apparatus}; figures approved by {plan.approved}"),
+        ("vessel", f"{vessels(plan)}; figures approved by {plan.approved}"),
         ("verdict", f"within limits of those figures on {on.isoformat()}"),
-        ("charge", f"{grams(plan.planned_kg[0])} to {grams(plan.planned_kg[1])} of {plan.fluid}"),
+        ("charge", f"{planned(plan)} of {plan.fluid}"),
         ("ceiling", f"{pressure(plan, plan.ceiling)} by {plan.ceiling_by}"),
         ("room", f"{temperature(plan.room_coldest)} to {temperature(plan.room_hottest)}; hotter or colder: not today"),
         ("files", f"procedure {plan.procedure_sha256[:12]}, apparatus {plan.apparatus_sha256[:12]}"),

@@ -20,6 +20,8 @@ if TYPE_CHECKING:
 
 CLOSED, HEATING, WARMING, LETTING_DOWN, LOADING = "closed", "heating", "warming", "letting down", "loading"
 """Situations in which a fault may begin; a closed vessel that nothing heats but the room is warming too."""
+GAUGE, RELIEF, CLOSED_HERE = "a gauge", "a relief device", "closed here"
+"""What has to be there for some of them."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -31,22 +33,24 @@ class Fault:
     """What it is, for the list and the record."""
     begins: str
     """The situation in which it begins."""
+    of: str = ""
+    """What has to be there for it: a gauge, a relief device, a vessel that is closed here; empty: nothing."""
 
 
 FAULTS: Final = (
-    Fault("trapped air", "the cell was closed with three times its fill of air in it", CLOSED),
-    Fault("over-loaded", "the scale shows a fifth less than there is", LOADING),
-    Fault("under-loaded", "the scale shows a quarter more than there is", LOADING),
+    Fault("trapped air", "the cell was closed with three times its fill of air in it", CLOSED, CLOSED_HERE),
+    Fault("over-loaded", "the scale shows a fifth less than there is", LOADING, CLOSED_HERE),
+    Fault("under-loaded", "the scale shows a quarter more than there is", LOADING, CLOSED_HERE),
     Fault("slow leak", "a joint leaks through a hundredth of a millimetre, some 5 g an hour", CLOSED),
-    Fault("gauge stuck", "the high gauge stands still", WARMING),
-    Fault("gauge offset", "the high gauge shows 3 bar too much", CLOSED),
-    Fault("gauge in another unit", "the high gauge was changed for one that shows psi divided by ten", CLOSED),
-    Fault("gauge isolated", "the line of the high gauge is plugged and keeps its pressure", CLOSED),
+    Fault("gauge stuck", "the high gauge stands still", WARMING, GAUGE),
+    Fault("gauge offset", "the high gauge shows 3 bar too much", CLOSED, GAUGE),
+    Fault("gauge in another unit", "the high gauge was changed for one that shows psi divided by ten", CLOSED, GAUGE),
+    Fault("gauge isolated", "the line of the high gauge is plugged and keeps its pressure", CLOSED, GAUGE),
     Fault("thermometer off the wall", "the thermometer hangs half in the air", CLOSED),
     Fault("source stuck on", "the heat stays on up to its cut-out", HEATING),
     Fault("cooling lost", "the body loses a fifth of what it did to the room", WARMING),
-    Fault("relief early", "the relief device opens at three fifths of its lowest pressure", WARMING),
-    Fault("relief never", "the relief device does not open", CLOSED),
+    Fault("relief early", "the relief device opens at three fifths of its lowest pressure", WARMING, RELIEF),
+    Fault("relief never", "the relief device does not open", CLOSED, RELIEF),
     Fault("outlet plugged", "the outlet of the vent is plugged for ten minutes", LETTING_DOWN),
     Fault("second person leaves", "nobody but the performer is there any more", CLOSED),
     Fault("gas alarm", "the gas meter shows 2 % more than before", LETTING_DOWN),
@@ -126,7 +130,8 @@ class Trouble:
         """Begin where its situation stands long enough."""
         if self.began is not None:
             return
-        if self.since is None and self.fault.begins in situations:
+        there = set(situations)
+        if self.since is None and self.fault.begins in there and self.fault.of in (*there, ""):
             self.since = now
         if self.since is not None and now >= self.since + self.after_s:
             self.began = now

@@ -48,7 +48,7 @@ class Lesson:
         """[s]"""
         first = lot.plan.parts[part].first
         before = lot.lines[first].before
-        plan = lot.plan if part == 0 else replace(lot.plan, charge=lot.scene.charge if before.loaded else None)
+        plan = replace(lot.plan, charge=lot.scene.charge if before.loaded else None)
         self.world = World(lot.scene, lot.lines, plan, lot.seed, Moment(0.0, 0.0), part)
         self._positions = dict(before.valves)
         if start_K is not None or source_K is not None:

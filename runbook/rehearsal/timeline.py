@@ -19,6 +19,7 @@ from runbook.assess.bind import plan_of
 from runbook.assess.scene import Scene, open_scene
 from runbook.errors import OutsideValidity
 from runbook.procedure.reader import read_procedure
+from runbook.procedure.several import seen_from_each
 from runbook.rehearsal.lesson import Lesson
 from runbook.rehearsal.lots import Lot, lots
 from runbook.rehearsal.watching import PartRun
@@ -94,11 +95,13 @@ class Asked:
     count: int
     parts: tuple[int, ...]
     """Those that are told, from 0."""
+    vessel: int = 0
+    """Of several in one bath the one that is gone with, from 0: the first one's readings are its own."""
 
 
 def opened(asked: Asked) -> tuple[Scene, Plan, tuple[Lot, ...]]:
     """Scene, plan on the procedure's issue date, and the lots. Raises FileProblems or InputUnusable."""
-    loaded = read_procedure(asked.path)
+    loaded = seen_from_each(read_procedure(asked.path))[asked.vessel]
     scene = open_scene(loaded, None, None)
     on: date = loaded.procedure.issue.date
     plan = plan_of(scene, on)

@@ -18,7 +18,17 @@ from runbook.assess.walk import Walked, valves_of
 from runbook.errors import OutsideValidity
 from runbook.fluids.state import Region
 from runbook.procedure.model import CoolTo, DoStep, Load, WarmTo
-from runbook.rehearsal.faults import CLOSED, HEATING, LETTING_DOWN, LOADING, WARMING, Troubles
+from runbook.rehearsal.faults import (
+    CLOSED,
+    CLOSED_HERE,
+    GAUGE,
+    HEATING,
+    LETTING_DOWN,
+    LOADING,
+    RELIEF,
+    WARMING,
+    Troubles,
+)
 from runbook.rehearsal.instruments import Dials, Shown
 from runbook.rehearsal.physics import relieving, simulation_of
 from runbook.rehearsal.vessel import Controls, Simulation, Vessel
@@ -148,6 +158,9 @@ class World:
     def _situations(self) -> set[str]:
         """In which situations the vessel is."""
         found = {LOADING} if self.vessel.mass > 0.0 else set()
+        found |= {GAUGE} if self._high_gauge is not None else set()
+        found |= {RELIEF} if self._scene.apparatus.relief else set()
+        found |= set() if self._scene.starts_loaded else {CLOSED_HERE}
         closed = self.vessel.mass > 0.0 and self._set is not None and not self._set.vent_open
         if closed:
             found.add(CLOSED)

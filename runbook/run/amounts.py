@@ -56,6 +56,20 @@ def kelvins(difference: float | None) -> str:
     return f"{difference:.0f} K" if abs(difference) >= 10.0 else f"{difference:.1f} K"
 
 
+def planned(plan: Plan) -> str:
+    """'115.0 g to 119.0 g' of the charge that is planned; of several vessels each with its tag."""
+    alone = f"{grams(plan.planned_kg[0])} to {grams(plan.planned_kg[1])}"
+    if not plan.beside:
+        return alone
+    others = (f"{one.vessel} {grams(one.planned_kg[0])} to {grams(one.planned_kg[1])}" for one in plan.beside)
+    return ", ".join((f"{plan.vessel} {alone}", *others))
+
+
+def vessels(plan: Plan) -> str:
+    """'VC-2, view cell' of the vessel; of several each with its tag."""
+    return "; ".join((f"{plan.vessel}, {plan.apparatus}", *(f"{b.vessel}, {b.apparatus}" for b in plan.beside)))
+
+
 def grams(kilograms: float | None) -> str:
     """'117.0 g' of a mass [kg]."""
     return UNKNOWN if kilograms is None else say(kilograms, "g", 1)

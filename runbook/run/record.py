@@ -14,6 +14,7 @@ from pydantic import ValidationError
 from runbook.answers import Answer, Margin, Plan
 from runbook.quantities import pressure_to_unit
 from runbook.run import events as ev
+from runbook.run.amounts import planned, vessels
 from runbook.run.clock import Moment
 from runbook.run.fault_account import FaultAccount
 from runbook.run.journal import Record
@@ -64,8 +65,8 @@ def _head(event: ev.RunOpened, at: str) -> list[str]:
     lines = [
         f"{kind}: {plan.procedure}",
         f"begun {at} with part {event.part + 1}, {plan.parts[event.part].name}",
-        f"vessel {plan.vessel}, {plan.apparatus}; figures approved by {plan.approved}",
-        f"fluid {plan.fluid}, planned {plan.planned_kg[0] * 1000:.1f} to {plan.planned_kg[1] * 1000:.1f} g",
+        f"vessel {vessels(plan)}; figures approved by {plan.approved}",
+        f"fluid {plan.fluid}, planned {planned(plan)}",
         f"verdict {plan.verdict} of the figures in this file, certificates judged on {event.on}",
         f"ceiling {_pressure(plan.ceiling, plan)} by {plan.ceiling_by or 'nothing known'}",
         f"barometer {plan.barometer / 100:.0f} hPa by {plan.barometer_source}",

@@ -122,7 +122,7 @@ def test_explanations_come_through_the_pipe(tmp_path: Path) -> None:
     asked = question(index - 1, index, (*LOADED, observed("pressure", RIGHT + 2.5 * BAR, 12)))
     asked = replace(asked, history=history(RIGHT + 2.5 * BAR))
     sent = json.loads(json.dumps({"ask": "now", "key": asked.key, "question": to_plain(asked)}))
-    back = json.loads(json.dumps(reply(Bound(there, lines), sent), allow_nan=False))
+    back = json.loads(json.dumps(reply(Bound(((there, lines),)), sent), allow_nan=False))
     found = from_plain(Answer, back["answer"])
     assert found.explanations == answer(there, lines, asked).explanations
     assert found.estimate is not None

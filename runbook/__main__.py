@@ -2,10 +2,13 @@
 
 from __future__ import annotations
 
+import contextlib
 import importlib
 import io
 import os
 import sys
+import tempfile
+import traceback
 from collections.abc import Callable
 
 from runbook import __version__
@@ -56,6 +59,20 @@ def main(arguments: list[str] | None = None) -> int:
     except OSError as error:
         print(f"runbook: {error}", file=sys.stderr)
         return int(ExitCode.FAILED)
+    except Exception as error:
+        return _own_fault(error)
+
+
+def _own_fault(error: Exception) -> int:
+    """What nobody foresaw: one sentence for the user, the details in a file for whoever mends it."""
+    where = ""
+    with contextlib.suppress(OSError):
+        with tempfile.NamedTemporaryFile("w", prefix="runbook-", suffix=".txt", delete=False, encoding="utf-8") as file:
+            traceback.print_exception(error, file=file)
+        where = f" The details are in {file.name}."
+    words = " ".join(f"{type(error).__name__}: {error}".split())
+    print(f"runbook: a fault of this program, not of your files: {words}.{where}", file=sys.stderr)
+    return int(ExitCode.FAILED)
 
 
 def _dispatch(given: list[str]) -> int:

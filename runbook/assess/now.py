@@ -187,7 +187,9 @@ def _state(scene: Scene, lines: Sequence[Walked], question: Question, box: Charg
 
 def _readings(scene: Scene, question: Question) -> Readings:
     positions = dict(question.valves)
-    walls = [o for o in question.observations if o.what == "temperature" and not o.beside]
+    # How warm the room is says nothing of the vessel in it.
+    room = {i.tag for i in scene.apparatus.instruments if i.of == "room air"}
+    walls = [o for o in question.observations if o.what == "temperature" and not o.beside and o.tag not in room]
     gauges = [o for o in question.observations if o.what == "pressure"]
     shut = tuple(o.tag for o in gauges if isolated(scene.apparatus, o.tag, positions))
     # What a gauge showed over the open vessel says nothing of the charge that has been closed in since.

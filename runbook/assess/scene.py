@@ -220,8 +220,8 @@ class Scene:
         raise KeyError(tag)
 
     def wall_probe(self) -> InstrumentFile | None:
-        """The thermometer on the wall; None where there is none."""
-        return next((i for i in self.apparatus.instruments if i.reads == "temperature"), None)
+        """The thermometer on the wall, in the charge or in the bath; None where there is none."""
+        return next((i for i in self.apparatus.instruments if i.reads == "temperature" and i.of != "room air"), None)
 
 
 def _stated(loaded: Loaded) -> ChargeBox | None:

@@ -25,7 +25,7 @@ def issued(path: Path) -> date:
 
 
 def test_there_are_some() -> None:
-    """The critical and the triple point of carbon dioxide and three tubes in one bath at least, each vessel used by one."""
+    """The critical and the triple point of carbon dioxide, three tubes in one bath; each vessel used by one."""
     assert {"co2-critical-point", "co2-triple-point", "sf6-three-tubes"} <= {p.stem for p in SHIPPED}
     used = {str(read_procedure(p).procedure.apparatus) for p in SHIPPED}
     assert all(any(v.name in one for one in used) for v in VESSELS)

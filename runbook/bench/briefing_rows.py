@@ -56,7 +56,8 @@ def _verdict(plan: Plan, width: int) -> list[Row]:
 def _day(plan: Plan, request: BindRequest, width: int) -> list[Row]:
     part = plan.parts[request.part].name if plan.parts else "all of it"
     of = f"{request.part + 1} of {len(plan.parts)}"
-    cell = "already closed" if request.cell_closed else "open and empty"
+    comes_loaded = plan.charge is not None and not request.cell_closed
+    cell = "already closed" if request.cell_closed else "loaded, by its file" if comes_loaded else "open and empty"
     bound = f" ± {plan.barometer_bound / 100:.0f} hPa"
     barometer = f"{plan.barometer / 100:.0f} hPa{bound}, from: {plan.barometer_source}"
     box = plan.charge

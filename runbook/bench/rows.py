@@ -89,7 +89,7 @@ def wrap(text: str, width: int, lead: int = 0) -> list[str]:
     lines: list[str] = []
     for paragraph in text.splitlines():
         body = printable(paragraph)
-        indent = " " * min(len(body) - len(body.lstrip(" ")), max(0, width - lead - 1))
+        indent = " " * min(len(body) - len(body.lstrip(" ")), max(0, width - lead - 2))
         for line in _wrapped_words(_words(body.strip(" ")), width - len(indent), 0 if lines else lead):
             lines.append(indent + line)
     return lines

@@ -11,7 +11,7 @@ from pathlib import Path
 from typing import Any
 from unittest.mock import patch
 
-from runbook.rehearsal import headless
+from runbook.rehearsal import bath, headless
 from runbook.rehearsal.faults import FAULTS
 from runbook.rehearsal.vessel import Vessel
 from runbook.rehearsal.world import World
@@ -29,7 +29,7 @@ def main() -> None:
             super().__init__(*given)
             made.append((self, self.vessel))
 
-    with patch.object(headless, "World", Watched):
+    with patch.object(bath, "World", Watched):
         _measure(made)
 
 

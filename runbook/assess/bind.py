@@ -117,7 +117,7 @@ def plan_of(scene: Scene, on: date, lines: tuple[Walked, ...] | None = None, par
         instruments=tuple(_instrument(scene, i.tag) for i in apparatus.instruments),
         roles=tuple(procedure.roles),
         bring=tuple(procedure.bring),
-        valves=tuple(sorted(begun.valves.items())),
+        valves=tuple(sorted((t, p) for t, p in begun.valves.items() if source is None or t != source.tag)),
         valve_lets_go=tuple((v.tag, v.let_go) for v in apparatus.valves),
         outside_valves=outside,
         source_tag=None if source is None else source.tag,

@@ -9,10 +9,11 @@ from pathlib import Path
 import pytest
 
 from runbook.answers import Answer, BindRequest, Observation, Plan, Question
-from runbook.assess.bind import bind
+from runbook.assess.bind import bind, plan_of_all
 from runbook.assess.local import LocalEngine
 from runbook.assess.scene import open_scene
 from runbook.assess.several import asked_of, merged_answer
+from runbook.assess.walk import walk
 from runbook.errors import FileProblems
 from runbook.fluids.substance import substance
 from runbook.procedure.reader import read_procedure
@@ -245,3 +246,14 @@ def test_where_the_last_surface_goes() -> None:
         if of == 1:
             slope = (fluid.saturation(ours + 0.1).liquid_density - both.liquid_density) / 0.1
         assert abs((liquid if of == 1 else vapour) - density) < abs(slope) * 0.5
+
+
+@pytest.mark.parametrize("name", ["co2-critical-point", "co2-triple-point", "sf6-three-tubes"])
+def test_a_heat_source_is_no_valve_in_any_part(name: str) -> None:
+    """Whatever part is begun with: what the screens offer to state as a valve is one."""
+    loaded = read_procedure(SHIPPED / f"{name}.yaml")
+    scenes = [(scene, walk(scene)) for scene in (open_scene(v, None, None) for v in seen_from_each(loaded))]
+    valves = {v.tag for v in loaded.apparatus.valves} | {o.tag for o in loaded.apparatus.openings}
+    for part in range(len(loaded.procedure.parts)):
+        found = plan_of_all(loaded, scenes, loaded.procedure.issue.date, part)
+        assert {tag for tag, _ in found.valves} <= valves

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from runbook.answers import Phase
 from runbook.assess.scene import Scene
+from runbook.assess.walk import outside_tags
 from runbook.errors import OutsideValidity
 
 
@@ -30,6 +31,9 @@ def phases(
         return _letting_down(scene, pressure)
     if not closed:
         return (Phase.A,)
+    if _sealed_in_a_bath(scene):
+        # Whatever is in it: nothing can be let out, and to take the heat away would be to lift it out warm.
+        return (Phase.L,)
     found: list[Phase] = []
     fluid = scene.substance
     if cold < fluid.triple_temperature:
@@ -46,6 +50,12 @@ def phases(
     if cold < fluid.critical_temperature and Phase.D not in found:
         found.append(Phase.C)
     return tuple(found)
+
+
+def _sealed_in_a_bath(scene: Scene) -> bool:
+    """A tube without any way out that stands in a bath of water."""
+    source = scene.apparatus.heat_source
+    return source is not None and source.kind == "water bath" and not outside_tags(scene)
 
 
 def _letting_down(scene: Scene, pressure: float | None) -> tuple[Phase, ...]:

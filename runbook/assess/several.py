@@ -73,7 +73,8 @@ def merged_answer(answers: Sequence[Answer], vessels: Sequence[str], key: str) -
         ahead=_margins(a.ahead for a in answers),
         left_alone=_left_alone([a.left_alone for a in answers]),
         agreement=_agreement([a.agreement for a in answers]),
-        charge_proved=all(a.charge_proved for a in answers),
+        # Side by side each has its own height to be proved by, also what no liquid could ever fill by its file.
+        charge_proved=all(a.charge_proved and a.charge is not None and a.charge.proved for a in answers),
         valid=all(a.valid for a in answers),
         good_for_s=min(good, default=None),
         phases=_once(phase for a in answers for phase in a.phases),

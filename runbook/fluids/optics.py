@@ -53,7 +53,10 @@ def refractive_index(molar_refractivity: float, molar_density: float) -> float:
 def index_of(substance: Substance, density: float) -> float | None:
     """Index [1] of a phase of that density [kg/m3]; None where the fluid's refractivity is not known."""
     refractivity = find(substance.name).molar_refractivity
-    return None if refractivity is None else refractive_index(refractivity, density / substance.molar_mass)
+    if refractivity is None or refractivity * density / substance.molar_mass >= 1.0:
+        # Denser than the relation bears: nothing that anybody looks at.
+        return None
+    return refractive_index(refractivity, density / substance.molar_mass)
 
 
 def grazing_angle(dense: float, thin: float) -> float:

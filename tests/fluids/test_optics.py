@@ -178,3 +178,11 @@ def test_every_fluid_has_a_haze_or_says_that_it_is_not_known(name: str) -> None:
 def test_no_haze_is_computed_with_solid_in_it() -> None:
     """Powder is white for another reason."""
     assert turbidity(CO2, 200.0, CO2.critical_density) is None
+
+
+def test_no_index_of_what_the_relation_does_not_bear() -> None:
+    """A density beyond the pole of Lorentz and Lorenz has no index, and no error."""
+    from runbook.fluids.optics import index_of
+    from runbook.fluids.substance import substance
+
+    assert index_of(substance("carbon dioxide"), 1e6) is None

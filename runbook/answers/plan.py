@@ -97,12 +97,6 @@ class VesselBeside:
     """What people call it."""
     planned_kg: tuple[float, float]
     """Least and most that is in it by the file [kg]."""
-    free_volume: tuple[float, float]
-    """Least and most [m3]."""
-    ceiling: float | None
-    """Lowest pressure limit [Pa]; None: not known."""
-    ceiling_by: str
-    bounds: ChargeBounds
 
 
 @dataclass(frozen=True, slots=True)
@@ -137,7 +131,7 @@ class Plan:
     free_volume: tuple[float, float]
     """Least and most [m3]."""
     ceiling: float | None
-    """Lowest pressure limit of the closed vessel, isolators as at rest [Pa]; None: not known."""
+    """Lowest pressure limit of the closed vessel, isolators as at rest, of several the lowest [Pa]; None: not known."""
     ceiling_by: str
     """Tag that governs it."""
     pressure_unit: str
@@ -171,4 +165,4 @@ class Plan:
     telling: tuple[Telling, ...] = ()
     """What each instrument would show of the faults that happen, at rest as planned. For words only."""
     beside: tuple[VesselBeside, ...] = ()
-    """Further vessels in the bath of the first; all other fields that name one vessel are the first one's."""
+    """Further vessels in the bath of the first; but for the ceiling what is of one vessel is the first one's."""

@@ -6,14 +6,17 @@ and gauge, not the charge. Agreement that is looser than the margin it is leaned
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from math import hypot
 
 from runbook.answers import Agreement, ChargeBox, Observation
 from runbook.apparatus.instruments import expanded_uncertainty, permissible_error
 from runbook.assess.scene import Scene
+from runbook.assess.walk import Walked
 from runbook.errors import OutsideValidity
 from runbook.fluids.state import Region
+from runbook.procedure.model import CoolTo, LetDownTo, WarmTo
 
 NO_READING = Agreement("no reading", None, None, None, None, None, "nothing")
 _PROVES_CHARGE = 0.05
@@ -64,6 +67,14 @@ def computed_pressure(scene: Scene, box: ChargeBox, temperature: Observation, ra
     lag = probe.lag.value if probe.lag is not None else 0.0
     U += abs(by_temperature) * lag * rate
     return Computed(state.pressure, U, state.region, by_density / volume.value)
+
+
+def read_apart(lines: Sequence[Walked], wall: Observation | None, gauge: Observation | None) -> bool:
+    """The one was read in a line whose path moved the vessel, the other in a later line."""
+    if wall is None or gauge is None or min(wall.line, gauge.line) < 0:
+        return False
+    first, last = sorted((wall.line, gauge.line))
+    return any(isinstance(one.verb, WarmTo | CoolTo | LetDownTo) for one in lines[first:last])
 
 
 def agreement(

@@ -24,8 +24,8 @@ from runbook.assess.mend import mends
 from runbook.assess.open_heat import open_heat_findings
 from runbook.assess.path import planned_path
 from runbook.assess.plan_line import plan_line
-from runbook.assess.scene import Scene, open_scene, refuse_unbound
-from runbook.assess.several import merged_plan
+from runbook.assess.scene import Scene
+from runbook.assess.several import Scenes, merged_plan, open_all
 from runbook.assess.single_faults import single_fault_findings
 from runbook.assess.truth import truth_findings
 from runbook.assess.verdict import line_findings, mend_findings, position, verdict_of
@@ -35,7 +35,6 @@ from runbook.procedure.model import (
 )
 from runbook.procedure.reader import Loaded
 from runbook.procedure.rules_guard import LOADS
-from runbook.procedure.several import seen_from_each
 from runbook.procedure.writing import findings as writing_findings
 from runbook.quantities import Level
 
@@ -51,14 +50,10 @@ def bind(
     charge: what the vessel's charge record says is in it. Raises InputUnusable, never OutsideValidity: what
     the models do not reach is an unknown margin, and the verdict is not proved.
     """
-    refuse_unbound(loaded)
-    scenes = [open_scene(one, barometer_Pa, charge if n == 0 else None) for n, one in enumerate(seen_from_each(loaded))]
-    return plan_of_all(loaded, [(scene, walk(scene)) for scene in scenes], on)
+    return plan_of_all(loaded, open_all(loaded, barometer_Pa, charge), on)
 
 
-def plan_of_all(
-    loaded: Loaded, scenes: Sequence[tuple[Scene, tuple[Walked, ...]]], on: date, part: int = 0
-) -> Plan:
+def plan_of_all(loaded: Loaded, scenes: Scenes, on: date, part: int = 0) -> Plan:
     """The plan of all vessels of a procedure, each in its scene, the first one first."""
     plans = [plan_of(scene, on, lines, part) for scene, lines in scenes]
     return merged_plan(plans, _written(scenes[0][0], loaded)) if len(plans) > 1 else plans[0]

@@ -25,13 +25,12 @@ from runbook.answers import Question
 from runbook.answers.request import BindRequest
 from runbook.assess.bind import plan_of_all
 from runbook.assess.now import answer
-from runbook.assess.scene import Scene, open_scene, refuse_unbound
-from runbook.assess.several import asked_of, merged_answer
-from runbook.assess.walk import Walked, walk
+from runbook.assess.scene import Scene
+from runbook.assess.several import Scenes, asked_of, merged_answer, open_all
+from runbook.assess.walk import Walked
 from runbook.codec import from_plain, to_plain
 from runbook.errors import FileProblems, RunbookError
 from runbook.procedure.reader import Loaded, read_procedure
-from runbook.procedure.several import seen_from_each
 
 LONGEST_S = 60.0
 """No answer takes this long; then the process is stuck and ends itself [s]."""
@@ -41,7 +40,7 @@ LONGEST_S = 60.0
 class Bound:
     """The one procedure this child has bound."""
 
-    scenes: tuple[tuple[Scene, tuple[Walked, ...]], ...] = ()
+    scenes: Scenes = ()
     """Of each vessel, the first one first; empty: nothing is bound."""
 
     @property
@@ -66,23 +65,17 @@ def versions() -> dict[str, str]:
     return found
 
 
-def opened(loaded: Loaded, request: BindRequest) -> tuple[tuple[Scene, tuple[Walked, ...]], ...]:
-    """The scene of each vessel of a request, and its walk. Raises FileProblems, InputUnusable or OutsideValidity."""
-    # What is wrong with the files as they stand is told of them, not of one vessel's view.
-    refuse_unbound(loaded)
-    scenes = [
-        open_scene(
-            seen,
-            request.barometer_Pa,
-            request.charge if number == 0 else None,
-            height_m=request.height_m,
-            hottest_K=request.room_hottest_K,
-            # A later part finds the vessel as the parts before it leave it.
-            cell_closed=request.cell_closed and request.part == 0 and number == 0,
-        )
-        for number, seen in enumerate(seen_from_each(loaded))
-    ]
-    return tuple((scene, walk(scene)) for scene in scenes)
+def opened(loaded: Loaded, request: BindRequest) -> Scenes:
+    """The vessels of a request. Raises FileProblems, InputUnusable or OutsideValidity."""
+    return open_all(
+        loaded,
+        request.barometer_Pa,
+        request.charge,
+        height_m=request.height_m,
+        hottest_K=request.room_hottest_K,
+        # A later part finds the vessel as the parts before it leave it.
+        cell_closed=request.cell_closed and request.part == 0,
+    )
 
 
 def reply(bound: Bound, asked: dict[str, Any]) -> dict[str, Any]:

@@ -82,6 +82,9 @@ def seal_items(scene: Scene, line: Walked) -> tuple[int, ...]:
 
 
 def _instrument_for(scene: Scene, what: str) -> str | None:
+    if what == "temperature":
+        probe = scene.wall_probe()
+        return None if probe is None else probe.tag
     able = [i for i in scene.apparatus.instruments if i.reads == what]
     if what == "pressure":
         # The gauge that bears the charge, never the low one behind its isolator.

@@ -16,7 +16,7 @@ from runbook.answers import (
     Question,
 )
 from runbook.apparatus.spaces import isolated
-from runbook.assess.agreement import Computed, agreement, computed_pressure, reading_U
+from runbook.assess.agreement import Computed, agreement, computed_pressure, read_apart, reading_U
 from runbook.assess.ahead import look, standing_valves
 from runbook.assess.boxes import charge_box, gas_left
 from runbook.assess.corners import Worst, temperature_at_pressure
@@ -38,7 +38,7 @@ from runbook.assess.scene import Scene
 from runbook.assess.sights import liquid_height, live_sights
 from runbook.assess.walk import VesselState, Walked, hottest_of, start_state
 from runbook.errors import OutsideValidity
-from runbook.procedure.model import CoolTo, LetDownTo, WarmTo
+from runbook.procedure.model import WarmTo
 
 
 @dataclass(frozen=True, slots=True)
@@ -79,7 +79,7 @@ def answer(scene: Scene, lines: Sequence[Walked], question: Question) -> Answer:
     alone, _ = left_alone(scene, state, with_times=False)
     proved = _proved(scene, lines, question, box, state)
     left = _pressure_left(ahead)
-    apart = _read_apart(lines, readings.temperature, readings.pressure)
+    apart = read_apart(lines, readings.temperature, readings.pressure)
     verdict = agreement(scene, computed, box, readings.pressure, left, apart)
     found = _assemble(
         scene,
@@ -199,14 +199,6 @@ def _readings(scene: Scene, question: Question) -> Readings:
         max(joined, key=lambda o: (o.value, o.sequence), default=None),
         shut,
     )
-
-
-def _read_apart(lines: Sequence[Walked], wall: Observation | None, gauge: Observation | None) -> bool:
-    """The one was read in a line whose path moved the vessel, the other in a later line."""
-    if wall is None or gauge is None or min(wall.line, gauge.line) < 0:
-        return False
-    first, last = sorted((wall.line, gauge.line))
-    return any(isinstance(one.verb, WarmTo | CoolTo | LetDownTo) for one in lines[first:last])
 
 
 def worst_rate(scene: Scene, state: VesselState, line: Walked | None) -> float:

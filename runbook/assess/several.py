@@ -6,13 +6,14 @@ blocked of one is so of the step. Sights say which vessel they are of.
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import replace
 from typing import TypeVar
 
 from runbook.answers import (
     Agreement,
     Answer,
+    ChargeBox,
     Distance,
     Effect,
     Finding,
@@ -28,12 +29,42 @@ from runbook.answers import (
     Sight,
     VesselBeside,
 )
-from runbook.assess.scene import Scene
+from runbook.assess.scene import Scene, open_scene, refuse_unbound
+from runbook.assess.walk import Walked, walk
+from runbook.procedure.reader import Loaded
+from runbook.procedure.several import seen_from_each
 
 T = TypeVar("T")
+Scenes = tuple[tuple[Scene, tuple[Walked, ...]], ...]
+"""Of each vessel its scene and its walk, the first one first."""
 _WORST_EFFECT = (Effect.RAISES, Effect.UNKNOWN, Effect.LOWERS, Effect.KEEPS)
 _WORST_VERDICT = ("outside limits", "not proved", "within limits")
 _WORST_AGREEMENT = ("disagrees", "cannot tell", "no reading", "agrees")
+
+
+def open_all(
+    loaded: Loaded,
+    reading_Pa: float | None,
+    charge: ChargeBox | None = None,
+    *,
+    height_m: float | None = None,
+    hottest_K: float | None = None,
+    cell_closed: bool = False,
+) -> Scenes:
+    """Every vessel of a procedure, opened as open_scene opens one; charge and cell_closed are the first one's.
+
+    Raises as open_scene does; what is wrong with the files is told of them as they stand, not of one vessel's view.
+    """
+    if loaded.apparatus.beside:
+        refuse_unbound(loaded)
+    opened = [
+        open_scene(
+            view, reading_Pa, charge if n == 0 else None,
+            height_m=height_m, hottest_K=hottest_K, cell_closed=cell_closed and n == 0,
+        )
+        for n, view in enumerate(seen_from_each(loaded))
+    ]  # fmt: skip
+    return tuple((scene, walk(scene)) for scene in opened)
 
 
 def merged_plan(plans: Sequence[Plan], writing: tuple[Finding, ...]) -> Plan:
@@ -41,23 +72,35 @@ def merged_plan(plans: Sequence[Plan], writing: tuple[Finding, ...]) -> Plan:
     first = plans[0]
     if len(plans) == 1:
         return first
-    found = [*writing, *(replace(f, message=f"{p.vessel}: {f.message}") for p in plans for f in p.findings)]
+    found = (*writing, *_findings(plans))
     worst = min((p.verdict for p in plans), key=_WORST_VERDICT.index)
     if worst == "within limits" and any(f.severity == "error" for f in writing):
         worst = "not proved"
+    # A ceiling that nobody knows is the lowest of all.
+    lowest = min(plans, key=lambda p: -1.0 if p.ceiling is None else p.ceiling)
     return replace(
         first,
         verdict=worst,
-        findings=_once(found),
+        findings=found,
+        ceiling=lowest.ceiling,
+        ceiling_by=lowest.ceiling_by,
         certificates=_once(c for p in plans for c in p.certificates),
         instruments=_once(i for p in plans for i in p.instruments),
         lines=tuple(_line([p.lines[i] for p in plans], [p.vessel for p in plans]) for i in range(len(first.lines))),
         telling=_once(t for p in plans for t in p.telling),
-        beside=tuple(
-            VesselBeside(p.vessel, p.apparatus, p.planned_kg, p.free_volume, p.ceiling, p.ceiling_by, p.bounds)
-            for p in plans[1:]
-        ),
+        beside=tuple(VesselBeside(p.vessel, p.apparatus, p.planned_kg) for p in plans[1:]),
     )
+
+
+def _findings(plans: Sequence[Plan]) -> Iterator[Finding]:
+    """Of each vessel, with its tag; what all of them share is said once, and of none."""
+    shared = set(plans[0].findings).intersection(*(p.findings for p in plans[1:]))
+    yield from (one for one in plans[0].findings if one in shared)
+    for plan in plans:
+        for one in plan.findings:
+            if one not in shared:
+                tagged = one.message.startswith(f"{plan.vessel}:")
+                yield one if tagged else replace(one, message=f"{plan.vessel}: {one.message}")
 
 
 def merged_answer(answers: Sequence[Answer], vessels: Sequence[str], key: str) -> Answer:

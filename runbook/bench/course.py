@@ -29,7 +29,7 @@ from runbook.run.engine import Bound, ChildEngine
 from runbook.run.journal import Journal, JournalWriter, read
 from runbook.run.logbook import Logbook, RunFile
 from runbook.run.opening import Participant, charge_record, people, played, run_opened
-from runbook.run.record import record_lines
+from runbook.run.record import account
 
 if TYPE_CHECKING:
     from runbook.bench.app import BenchApp
@@ -146,7 +146,7 @@ class Course:
             await desk.settled()
             outcome = desk.ledger.outcome or "left"
             where = "" if desk.journal is None else str(desk.journal.path)
-            lines = () if desk.journal is None else record_lines(read(desk.journal.path).records)
+            lines = () if desk.journal is None else account(read(desk.journal.path).records)
             await app.push_screen_wait(RecordScreen(outcome, where, lines))
             return int(ExitCode.GOOD if outcome == "completed" else ExitCode.NOT_GOOD)
         finally:

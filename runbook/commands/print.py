@@ -47,18 +47,15 @@ def _page(file: str, on: date, barometer: str | None) -> tuple[str | None, str, 
     """The page, or None with the verdict and the findings."""
     from runbook.assess.bind import plan_of_all
     from runbook.assess.gauge_card import gauge_card
-    from runbook.assess.scene import open_scene, refuse_unbound
-    from runbook.assess.walk import walk
+    from runbook.assess.several import open_all
     from runbook.paper.booklet import booklet
     from runbook.procedure.reader import read_procedure
-    from runbook.procedure.several import seen_from_each
     from runbook.procedure.shelf import find_procedure
     from runbook.quantities import parse_barometer
 
     loaded = read_procedure(find_procedure(file))
     read = None if barometer is None else parse_barometer(barometer)
-    refuse_unbound(loaded)
-    scenes = tuple((scene, walk(scene)) for scene in (open_scene(one, read, None) for one in seen_from_each(loaded)))
+    scenes = open_all(loaded, read)
     plan = plan_of_all(loaded, scenes, on)
     if plan.verdict != "within limits":
         said = [f"{f.file or file}:{f.line}:{f.column}: {f.severity}: {f.message} [{f.rule}]" for f in plan.findings]

@@ -162,7 +162,7 @@ class Also(FileModel):
 def _one_vessel(given: Any) -> Any:
     if isinstance(given, list | tuple):
         raise PydanticCustomError(
-            "own", "a procedure serves one vessel for now: write the name of one apparatus file, not a list"
+            "own", "write the name of one apparatus file, not a list: further vessels stand in it under 'beside'"
         )
     return given
 

@@ -7,13 +7,18 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import replace
-from typing import Any
+from typing import Final
 
 from runbook.apparatus.consistency import seen_alone
 from runbook.apparatus.model import Apparatus
 from runbook.procedure.document import Place, Route
 from runbook.procedure.model import DoStep, HoldStep, Part, Procedure, QuickStep, Step
 from runbook.procedure.reader import Loaded
+from runbook.procedure.reading import ReadStep
+
+_LISTS: Final = ("read", "read_after")
+_READS: Final = ("parts", 0, "steps", 0, "read")
+"""A route to a list of readings."""
 
 
 def whole(apparatus: Apparatus) -> Apparatus:
@@ -68,26 +73,31 @@ def _own(step: Step, others: set[str]) -> Step:
 
 
 def _moved(places: dict[Route, Place], procedure: Procedure, others: set[str]) -> dict[Route, Place]:
-    """Places by the routes of a list of readings from which some are gone."""
-    found = dict(places)
-    for route, reads in _lists(procedure):
-        kept = [i for i, read in enumerate(reads) if read.with_ not in others]
-        for old in [r for r in places if r[: len(route)] == route and len(r) > len(route)]:
-            del found[old]
-        for new, i in enumerate(kept):
-            for old, place in places.items():
-                if old[: len(route) + 1] == (*route, i):
-                    found[(*route, new, *old[len(route) + 1 :])] = place
+    """Places by the routes of lists of readings from which some are gone."""
+    now = {(*route, old): new for route, reads in _lists(procedure) for old, new in _kept(reads, others)}
+    long = len(_READS)
+    found = {}
+    for route, place in places.items():
+        if len(route) <= long or route[long - 1] not in _LISTS:
+            found[route] = place
+        elif (at := now.get(route[: long + 1])) is not None:
+            found[(*route[:long], at, *route[long + 1 :])] = place
     return found
 
 
-def _lists(procedure: Procedure) -> Iterator[tuple[Route, tuple[Any, ...]]]:
+def _kept(reads: tuple[ReadStep, ...], others: set[str]) -> Iterator[tuple[int, int]]:
+    """Old and new index of each reading that stays."""
+    stay = [i for i, read in enumerate(reads) if read.with_ not in others]
+    yield from ((old, new) for new, old in enumerate(stay))
+
+
+def _lists(procedure: Procedure) -> Iterator[tuple[Route, tuple[ReadStep, ...]]]:
     for p, part in enumerate(procedure.parts):
         for s, step in enumerate(part.steps):
             if isinstance(step, DoStep):
-                yield ("parts", p, "steps", s, "read"), tuple(step.read)
+                yield ("parts", p, "steps", s, "read"), step.read
             elif isinstance(step, QuickStep):
-                yield ("parts", p, "steps", s, "read_after"), tuple(step.read_after)
+                yield ("parts", p, "steps", s, "read_after"), step.read_after
 
 
 def _of_charge(loaded: Loaded, number: int, tag: str) -> dict[Route, Place]:

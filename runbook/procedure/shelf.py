@@ -35,7 +35,7 @@ def list_procedures(here: Path | None = None) -> tuple[Path, ...]:
         if folder is None or not folder.is_dir():
             continue
         for path in sorted((*folder.glob("*.yaml"), *folder.glob("*.yml"))):
-            if _is_procedure(path) and not any(path.samefile(other) for other in found):
+            if _is_procedure(path) and not any(_same(path, other) for other in found):
                 found.append(path)
     if not found:
         raise InputUnusable(
@@ -76,6 +76,11 @@ def find_apparatus(name: str) -> Path:
             return path
     known = ", ".join(path.stem for path in files)
     raise InputUnusable(f"there is no file '{name}'" + (f"; shipped vessels are: {known}" if known else ""))
+
+
+def _same(path: Path, other: Path) -> bool:
+    """One file, or its copy under the same name: a checkout stands beside the program installed from it."""
+    return path.samefile(other) or (path.name == other.name and path.read_bytes() == other.read_bytes())
 
 
 def _is_procedure(path: Path) -> bool:

@@ -6,19 +6,14 @@ their own charges take. Nothing is judged here.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import replace
 
 from runbook.answers import Plan
-from runbook.assess.scene import Scene
-from runbook.assess.walk import Walked
+from runbook.assess.several import Scenes
 from runbook.rehearsal.faults import Troubles
 from runbook.rehearsal.world import World
 from runbook.run.clock import Moment
 from runbook.run.ledger import Ledger
-
-Scenes = Sequence[tuple[Scene, tuple[Walked, ...]]]
-"""Of each vessel, the first one first."""
 
 
 def world_of(

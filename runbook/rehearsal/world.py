@@ -14,10 +14,10 @@ from runbook.apparatus.relief import lowest_opening
 from runbook.apparatus.spaces import springs_open
 from runbook.assess.boxes import viewed_shape
 from runbook.assess.scene import GAS_CONSTANT, Scene
-from runbook.assess.walk import Walked, valves_of
+from runbook.assess.walk import Walked
 from runbook.errors import OutsideValidity
 from runbook.fluids.state import Region
-from runbook.procedure.model import CoolTo, DoStep, Load, WarmTo
+from runbook.procedure.model import CoolTo, Load
 from runbook.rehearsal.faults import (
     CLOSED,
     CLOSED_HERE,
@@ -29,22 +29,17 @@ from runbook.rehearsal.faults import (
     WARMING,
     Troubles,
 )
+from runbook.rehearsal.hands import IN_WATER, WIDE, gauge_line_open, heating, positions_in, water_around, way_out
 from runbook.rehearsal.instruments import Dials, Shown
 from runbook.rehearsal.physics import relieving, simulation_of
 from runbook.rehearsal.vessel import Controls, Simulation, Vessel
 from runbook.run.clock import Moment
 from runbook.run.ledger import Ledger
 
-_WIDE = 5e-3
-"""Bore of an opening that states none [m]."""
 _IN_AIR = 420e-6
 """Carbon dioxide in clean air, volume fraction [1]; NOAA 2023."""
 _OXYGEN = 0.209
 """Oxygen in clean air, volume fraction [1]."""
-_IN_WATER = 30.0
-"""How many times faster water takes heat to or from a body than still air: our choice, 300 over 10 W/m2/K [1]."""
-_PAST = 1.0
-"""How far past its target the water is with which a vessel is brought there [K]."""
 _SEEN = 0.01
 """Share of the volume that liquid has to fill before anybody sees it [1]."""
 _DROPS = 0.3
@@ -75,7 +70,7 @@ class World:
         self._simulation = simulation_of(scene, self.troubles)
         sprung = springs_open(scene.apparatus)
         self._springs = max(
-            (_WIDE if v.bore is None else v.bore.value for v in scene.apparatus.valves if v.tag in sprung), default=0.0
+            (WIDE if v.bore is None else v.bore.value for v in scene.apparatus.valves if v.tag in sprung), default=0.0
         )
         self._set: Controls | None = None
         self._loss = 1.0
@@ -95,7 +90,7 @@ class World:
         self._line = plan.parts[part].first - 1 if part else -1
         self._low_joined = False
         self.vessel = Vessel(0.0, 0.0, room, room, False)
-        self.controls = Controls(True, _WIDE, False, room, plan.barometer)
+        self.controls = Controls(True, WIDE, False, room, plan.barometer)
         self.highest_pressure = plan.barometer
         """So far, the true one [Pa]."""
         device = next((r for r in scene.apparatus.relief if r.space == scene.charge_space), None)
@@ -121,16 +116,19 @@ class World:
                 elif isinstance(passed.verb, CoolTo):
                     self._fresh_water(passed.verb)
         self._line = ledger.line
-        vent_open, bore = self._vent(ledger, line)
+        positions = positions_in(ledger, line)
+        self._low_joined = gauge_line_open(self._scene, positions)
         self._connected = ledger.source in ("on", "off", "do not know")
-        if line is not None and line.during.filled:
-            # The open way leads to the cylinder it is filled from.
-            vent_open, bore = False, 0.0
-        water = _water(line)
-        self._loss = 1.0 if water is None else _IN_WATER
-        around = self.room_K if water is None else water
-        heating = self._heating(ledger, line)
-        self._set = replace(self.controls, vent_open=vent_open, bore=bore, heating=heating, room_K=around)
+        vent_open, bore = way_out(self._scene, self._plan.outside_valves, positions, line)
+        water = water_around(line)
+        self._loss = 1.0 if water is None else IN_WATER
+        self._set = replace(
+            self.controls,
+            vent_open=vent_open,
+            bore=bore,
+            heating=heating(ledger, line, self.room_K, False if self._set is None else self._set.heating),
+            room_K=self.room_K if water is None else water,
+        )
         self._trouble()
 
     def _load(self, mass: float) -> None:
@@ -319,32 +317,6 @@ class World:
             return None
         return viewed_shape(self._scene).height(state.liquid)
 
-    def _vent(self, ledger: Ledger, line: Walked | None) -> tuple[bool, float]:
-        positions = {tag: said.position for tag, said in ledger.stated.items()}
-        if line is not None and isinstance(line.step, DoStep):
-            positions |= valves_of(line.step)
-        self._low_joined = any(
-            positions.get(v.tag) == "open"
-            for v in self._scene.apparatus.valves
-            if self._scene.charge_space in v.joins and "outside" not in v.joins
-        )
-        open_tags = [t for t in self._plan.outside_valves if positions.get(t) == "open"]
-        bores = {v.tag: (v.bore.value if v.bore is not None else _WIDE) for v in self._scene.apparatus.valves}
-        bore = max((bores.get(t, _WIDE) for t in open_tags), default=0.0)
-        return bool(open_tags), bore
-
-    def _heating(self, ledger: Ledger, line: Walked | None) -> bool | float:
-        if ledger.source != "on" or line is None:
-            return False
-        verb = line.verb
-        if isinstance(verb, WarmTo | CoolTo):
-            if verb.set_to is not None:
-                return verb.set_to.value
-            aim = verb.warm_to if isinstance(verb, WarmTo) else verb.cool_to
-            return self.room_K if isinstance(aim, str) else aim.value
-        # Left on it keeps the set point it has.
-        return False if self._set is None else self._set.heating
-
     def _fresh_water(self, verb: CoolTo) -> None:
         """To cool by a jacket or bath of water is to fill it with water of the set temperature; no other source can."""
         source = self._scene.apparatus.heat_source
@@ -355,12 +327,3 @@ class World:
     def _already_loaded(self, mass: float) -> None:
         self.vessel = self._simulation.closed_in(self.vessel, mass, self.room_K)
         self.controls = replace(self.controls, vent_open=False, bore=0.0)
-
-
-def _water(line: Walked | None) -> float | None:
-    """Temperature [K] of the water that is poured around the vessel in this line; None: none is."""
-    verb = None if line is None else line.verb
-    if not isinstance(verb, WarmTo | CoolTo) or verb.by_means_of not in ("lukewarm water", "cold water"):
-        return None
-    aim, past = (verb.warm_to, _PAST) if isinstance(verb, WarmTo) else (verb.cool_to, -_PAST)
-    return None if isinstance(aim, str) else aim.value + past

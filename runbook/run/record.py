@@ -25,14 +25,19 @@ WIDTH: Final = 100
 
 
 def record_lines(records: Iterable[Record]) -> tuple[str, ...]:
-    """The account, line by line."""
+    """The account, on lines of a page."""
+    return tuple(part for line in account(records) for part in (wrap(line, WIDTH, subsequent_indent=" " * 11) or [""]))
+
+
+def account(records: Iterable[Record]) -> tuple[str, ...]:
+    """The account, one line for each thing to say, however long."""
     lines: list[str] = []
     plan: Plan | None = None
     opened: Moment | None = None
     least: Margin | None = None
     last: Record | None = None
     said = ""
-    account = FaultAccount()
+    faults = FaultAccount()
     for record in records:
         last = record
         try:
@@ -41,7 +46,7 @@ def record_lines(records: Iterable[Record]) -> tuple[str, ...]:
             # Of a newer program: it is said that something stands there, never skipped in silence.
             lines.append(f"{record.at}  {record.kind}: this version cannot read it")
             continue
-        account.hear(event, record.moment)
+        faults.hear(event, record.moment)
         if isinstance(event, ev.RunOpened):
             plan, opened = event.plan, record.moment
             lines += _head(event, record.at)
@@ -55,8 +60,7 @@ def record_lines(records: Iterable[Record]) -> tuple[str, ...]:
         words = _words(event, plan)
         if words:
             lines.append(f"{_elapsed(opened, record.moment)}  {words}")
-    lines += _foot(plan, least, last, account)
-    return tuple(part for line in lines for part in (wrap(line, WIDTH, subsequent_indent=" " * 11) or [""]))
+    return (*lines, *_foot(plan, least, last, faults))
 
 
 def _head(event: ev.RunOpened, at: str) -> list[str]:
@@ -79,8 +83,8 @@ def _head(event: ev.RunOpened, at: str) -> list[str]:
     return [*lines, ""]
 
 
-def _foot(plan: Plan | None, least: Margin | None, last: Record | None, account: FaultAccount) -> list[str]:
-    lines = ["", *account.lines()]
+def _foot(plan: Plan | None, least: Margin | None, last: Record | None, faults: FaultAccount) -> list[str]:
+    lines = ["", *faults.lines()]
     if plan is not None and least is not None:
         lines.append(f"least pressure margin computed from a reading: {_margin(least, plan)}")
     if last is not None:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import replace
+from datetime import date
 from pathlib import Path
 
 import pytest
@@ -12,8 +13,7 @@ from runbook.answers import Answer, BindRequest, Observation, Phase, Plan, Quest
 from runbook.assess.bind import bind, plan_of_all
 from runbook.assess.local import LocalEngine
 from runbook.assess.scene import open_scene
-from runbook.assess.several import asked_of, merged_answer
-from runbook.assess.walk import walk
+from runbook.assess.several import asked_of, merged_answer, open_all
 from runbook.errors import FileProblems
 from runbook.fluids.substance import substance
 from runbook.procedure.reader import read_procedure
@@ -105,6 +105,27 @@ def test_what_one_vessel_does_not_bear_is_outside_for_all(tmp_path: Path) -> Non
     assert any(f.severity == "error" and f.message.startswith("T14: ") and "G14" in f.message for f in weak.findings)
     unknown = plan(files(tmp_path, vessel={text: text.replace("up to 110 bar(g)", "not known")}))
     assert unknown.verdict == "not proved"
+
+
+def test_the_ceiling_is_the_lowest_of_all(tmp_path: Path) -> None:
+    """Whichever vessel governs; one that nobody knows is lower than any."""
+    text = "pressure: up to 110 bar(g), temperature: -20 degC to 150 degC, difference: up to 80 K, material: glass"
+    tube = f"{{tag: G14, what: fused quartz tube, space: tube, {text}"
+    weak = plan(files(tmp_path, vessel={tube: tube.replace("up to 110 bar(g)", "up to 90 bar(g)")}))
+    assert weak.ceiling is not None
+    assert (round((weak.ceiling - weak.barometer) / 1e5), weak.ceiling_by) == (90, "G14")
+    unknown = plan(files(tmp_path, vessel={tube: tube.replace("up to 110 bar(g)", "not known")}))
+    assert unknown.ceiling is None
+
+
+def test_what_is_shared_is_told_once(tmp_path: Path) -> None:
+    """An expired thermometer of the bath is one finding of no vessel; an expired proof test is each tube's own."""
+    loaded = read_procedure(files(tmp_path))
+    said = [f.message for f in bind(loaded, date(2034, 3, 5)).findings if f.rule == "certificate"]
+    assert [m for m in said if "TT1" in m] == ["TT1: temperature instrument has expired (until 2032-02-11). "
+                                               "Renew it, or plan another date."]  # fmt: skip
+    assert sum("proof test" in m for m in said) == 3
+    assert not any(m.startswith("T06: T06") for m in said)
 
 
 def test_a_charge_too_heavy_in_one_tube_is_outside_for_all(tmp_path: Path) -> None:
@@ -263,7 +284,7 @@ def test_where_the_last_surface_goes() -> None:
 def test_a_heat_source_is_no_valve_in_any_part(name: str) -> None:
     """Whatever part is begun with: what the screens offer to state as a valve is one."""
     loaded = read_procedure(SHIPPED / f"{name}.yaml")
-    scenes = [(scene, walk(scene)) for scene in (open_scene(v, None, None) for v in seen_from_each(loaded))]
+    scenes = open_all(loaded, None)
     valves = {v.tag for v in loaded.apparatus.valves} | {o.tag for o in loaded.apparatus.openings}
     for part in range(len(loaded.procedure.parts)):
         found = plan_of_all(loaded, scenes, loaded.procedure.issue.date, part)

@@ -9,6 +9,7 @@ from pathlib import Path
 import pytest
 
 from runbook import __main__ as start
+from runbook.assess.needs import entry_needs
 from runbook.assess.now import answer
 from runbook.assess.walk import walk
 from tests.assess.scenes import loaded, observed, question, scene
@@ -43,3 +44,5 @@ def test_the_thermometer_of_the_room_reads_no_wall(tmp_path: Path) -> None:
     asked = question(20, 21, (observed("temperature", 293.15, 5), observed("pressure", 58e5, 6)))
     found = answer(place, walk(place), asked)
     assert found.agreement.computed is None
+    needs = [need.tag for index in range(len(walk(place))) for need in entry_needs(place, walk(place), index)]
+    assert "no temperature instrument" in needs

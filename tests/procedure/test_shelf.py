@@ -14,11 +14,19 @@ from tests.procedure.files import PROCEDURE, written
 def test_own_files_come_before_the_shipped(tmp_path: Path) -> None:
     """Those of the folder first; a YAML file that is no procedure is passed over."""
     written(tmp_path)
+    own = tmp_path / PROCEDURE
+    own.write_text(own.read_text("utf-8") + "# mine\n", "utf-8")
     (tmp_path / "other.yaml").write_text("a: 1\n", "utf-8")
     files = shelf.list_procedures(tmp_path)
     assert files[0] == tmp_path / PROCEDURE
     assert [f.name for f in files].count(PROCEDURE) == 2
     assert "other.yaml" not in [f.name for f in files]
+
+
+def test_a_copy_of_a_shipped_procedure_is_listed_once(tmp_path: Path) -> None:
+    """A checkout stands beside the program that was installed from it: the file of this folder is the one."""
+    written(tmp_path)
+    assert [f for f in shelf.list_procedures(tmp_path) if f.name == PROCEDURE] == [tmp_path / PROCEDURE]
 
 
 def test_a_shipped_procedure_has_a_name() -> None:

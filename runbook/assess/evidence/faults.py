@@ -144,7 +144,7 @@ def _leak(given: Given, looks: Sequence[Look]) -> Cause:
     for onset in onsets:
         nodes = _sizes(
             LEAK,
-            lambda x, onset=onset: Node(x * given.charge, Fault(leak=x * given.charge, leak_from=onset)),  # type: ignore[misc]
+            lambda x, onset=onset: Node(x * given.charge, Fault(leak=x * given.charge, leak_from=onset)),  # type: ignore[misc] # the default binds the onset
             2 * NODES,
         )
         tracks.append(Track(nodes, 1.0 / len(onsets)))

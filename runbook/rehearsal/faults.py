@@ -38,24 +38,24 @@ class Fault:
 
 
 FAULTS: Final = (
-    Fault("trapped air", "the cell was closed with three times its fill of air in it", CLOSED, CLOSED_HERE),
+    Fault("trapped air", "three times its fill of air was closed in", CLOSED, CLOSED_HERE),
     Fault("over-loaded", "the scale shows a fifth less than there is", LOADING, CLOSED_HERE),
     Fault("under-loaded", "the scale shows a quarter more than there is", LOADING, CLOSED_HERE),
-    Fault("slow leak", "a joint leaks through a hundredth of a millimetre, some 5 g an hour", CLOSED),
+    Fault("slow leak", "a hole of 0.01 mm leaks, some 5 g an hour", CLOSED),
     Fault("gauge stuck", "the high gauge stands still", WARMING, GAUGE),
     Fault("gauge offset", "the high gauge shows 3 bar too much", CLOSED, GAUGE),
-    Fault("gauge in another unit", "the high gauge was changed for one that shows psi divided by ten", CLOSED, GAUGE),
-    Fault("gauge isolated", "the line of the high gauge is plugged and keeps its pressure", CLOSED, GAUGE),
+    Fault("gauge in another unit", "the high gauge shows psi divided by ten", CLOSED, GAUGE),
+    Fault("gauge isolated", "the line of the high gauge is plugged", CLOSED, GAUGE),
     Fault("thermometer off the wall", "the thermometer hangs half in the air", CLOSED),
     Fault("source stuck on", "the heat stays on up to its cut-out", HEATING),
-    Fault("cooling lost", "the body loses a fifth of what it did to the room", WARMING),
-    Fault("relief early", "the relief device opens at three fifths of its lowest pressure", WARMING, RELIEF),
+    Fault("cooling lost", "the room takes a fifth of the heat it took", WARMING),
+    Fault("relief early", "it opens at three fifths of its lowest pressure", WARMING, RELIEF),
     Fault("relief never", "the relief device does not open", CLOSED, RELIEF),
-    Fault("outlet plugged", "the outlet of the vent is plugged for ten minutes", LETTING_DOWN),
+    Fault("outlet plugged", "the vent is plugged for ten minutes", LETTING_DOWN),
     Fault("second person leaves", "nobody but the performer is there any more", CLOSED),
     Fault("gas alarm", "the gas meter shows 2 % more than before", LETTING_DOWN),
     Fault("operator away", "the operator is away for half an hour", WARMING),
-    Fault("heater left on", "nothing is computed for five minutes while the heat is on", HEATING),
+    Fault("heater left on", "nothing is computed for five minutes, heat on", HEATING),
 )
 """In the order of the list on screen."""
 AWAY: Final = "operator away"

@@ -5,7 +5,7 @@ with a Question, the other answers with data of this package, and everything her
 as it stands. No logic lives here. All quantities are SI; all pressures are absolute.
 """
 
-from runbook.answers.card import GaugeCard, GaugeRow
+from runbook.answers.card import GaugeCard, GaugeRow, VesselCard
 from runbook.answers.explanation import ChargeEstimate, ChargePart, Explanation, Past, Telling
 from runbook.answers.lines import Empty, Hold, LineKind, Need, PlanLine, QuickItem, SafetyMessage, Sight, Witness
 from runbook.answers.margins import (
@@ -64,5 +64,6 @@ __all__ = [
     "Telling",
     "Unanswered",
     "VesselBeside",
+    "VesselCard",
     "Witness",
 ]

@@ -38,8 +38,20 @@ class GaugeCard:
     ceiling_by: str
     rows: tuple[GaugeRow, ...]
     """From the coldest room to the hottest that the procedure warms to."""
+
+
+@dataclass(frozen=True, slots=True)
+class VesselCard:
+    """What hangs on one loaded vessel, and what the fire service is told of it; with or without a gauge."""
+
+    vessel: str
+    """Its tag."""
+    most_kg: float
+    """That is planned to be in it [kg]."""
+    volume: float
+    """Largest free volume [m3]."""
     hottest_place: float | None
-    """Where the most charge, left alone, comes to the ceiling [K]; None: never within the models, or not known."""
+    """Where the most charge, left alone, comes to a limit of pressure or temperature [K]; None: not known."""
     relief: tuple[tuple[str, str, float], ...]
     """Tag, kind and lowest opening pressure [Pa, absolute] of each relief device on the charge's space."""
     left_closed: bool = True

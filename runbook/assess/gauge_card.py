@@ -1,4 +1,4 @@
-"""What the gauge will show of the planned charge at each temperature of the lesson, for the card beside its dial.
+"""What hangs at the bench: what the gauge will show at each temperature of the lesson, and the tag of the vessel.
 
 Of a sealed charge at rest: while the wall warms, the gauge stands lower by what the thermometer is ahead.
 """
@@ -7,13 +7,14 @@ from __future__ import annotations
 
 from math import ceil, floor
 
-from runbook.answers import GaugeCard, GaugeRow
+from runbook.answers import GaugeCard, GaugeRow, VesselCard
 from runbook.apparatus.ceiling import ceiling
 from runbook.apparatus.instruments import permissible_error
 from runbook.apparatus.model import Instrument
 from runbook.apparatus.relief import lowest_opening
 from runbook.apparatus.spaces import joined_spaces
-from runbook.assess.corners import highest_pressure, temperature_at_pressure
+from runbook.assess.corners import highest_pressure
+from runbook.assess.hottest_place import hottest_place
 from runbook.assess.scene import Scene
 from runbook.assess.walk import Walked, hottest_of, left_closed
 from runbook.errors import OutsideValidity
@@ -32,9 +33,7 @@ def gauge_card(scene: Scene, lines: tuple[Walked, ...]) -> GaugeCard | None:
     gauge = next((i for i in apparatus.instruments if i.reads == "pressure" and i.of == space), None)
     if gauge is None:
         return None
-    shut = {v.tag: "shut" for v in apparatus.valves}
-    lowest = ceiling(apparatus, joined_spaces(apparatus, shut, space))
-    level = None if lowest is None or lowest.level is None else lowest.level
+    level, by = _ceiling(scene)
     hottest = max([scene.room_hottest, *(hottest_of(scene, w.verb) for w in lines if isinstance(w.verb, WarmTo))])
     return GaugeCard(
         tag=gauge.tag,
@@ -43,16 +42,32 @@ def gauge_card(scene: Scene, lines: tuple[Walked, ...]) -> GaugeCard | None:
         high=_absolute(gauge.dial.high, scene),
         division=gauge.division.value,
         ceiling=None if level is None else level.absolute(scene.barometer.middle_Pa),
-        ceiling_by="" if lowest is None else lowest.tag,
+        ceiling_by=by,
         rows=tuple(_row(scene, gauge, t) for t in _temperatures(scene.room_coldest, hottest)),
-        hottest_place=_hottest_place(scene, None if level is None else level.absolute(scene.barometer.low_Pa)),
+    )
+
+
+def vessel_card(scene: Scene, lines: tuple[Walked, ...]) -> VesselCard:
+    """The card of a vessel with the charge as planned, whether a gauge reads it or not."""
+    return VesselCard(
+        vessel=scene.apparatus.tag,
+        most_kg=scene.planned[1],
+        volume=scene.volume[1],
+        hottest_place=hottest_place(scene, scene.planned[1]),
         relief=tuple(
             (r.tag, r.kind, lowest_opening(r).absolute(scene.barometer.low_Pa))
-            for r in apparatus.relief
-            if r.space == space
+            for r in scene.apparatus.relief
+            if r.space == scene.charge_space
         ),
         left_closed=left_closed(lines) or not any(line.held for line in lines),
     )
+
+
+def _ceiling(scene: Scene) -> tuple[Level | None, str]:
+    """Lowest limit of the charge's space with every valve shut, and its tag."""
+    shut = {v.tag: "shut" for v in scene.apparatus.valves}
+    lowest = ceiling(scene.apparatus, joined_spaces(scene.apparatus, shut, scene.charge_space))
+    return (None, "") if lowest is None else (lowest.level, lowest.tag)
 
 
 def _temperatures(low: float, high: float) -> list[float]:
@@ -73,10 +88,6 @@ def _row(scene: Scene, gauge: Instrument, temperature: float) -> GaugeRow:
     error = permissible_error(gauge, expected) + gauge.division.value / 2.0
     high = highest_pressure(scene, high_kg, temperature).value
     return GaugeRow(temperature, low - error, expected, None if high is None else high + error)
-
-
-def _hottest_place(scene: Scene, ceiling_Pa: float | None) -> float | None:
-    return None if ceiling_Pa is None else temperature_at_pressure(scene, scene.planned[1], ceiling_Pa, 0.0)
 
 
 def _absolute(value: float | Level, scene: Scene) -> float:

@@ -170,9 +170,10 @@ def _loading(choice: Choice, mass: float, tare: float | None) -> list[str]:
 
 
 def _limits(choice: Choice, mass: float, source: float | None) -> list[str]:
-    from runbook.assess.choice.loading import hottest_place, most_for_source
+    from runbook.assess.choice.loading import most_for_source
+    from runbook.assess.hottest_place import hottest_place
 
-    hottest = hottest_place(choice, mass)
+    hottest = hottest_place(choice.scene(mass), mass + choice.half)
     lines = []
     if hottest is None:
         lines.append("hottest source and hottest place for it: not known, or never within the models")

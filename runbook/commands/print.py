@@ -46,7 +46,7 @@ def main(argv: list[str]) -> int:
 def _page(file: str, on: date, barometer: str | None) -> tuple[str | None, str, list[str]]:
     """The page, or None with the verdict and the findings."""
     from runbook.assess.bind import plan_of_all
-    from runbook.assess.gauge_card import gauge_card
+    from runbook.assess.gauge_card import gauge_card, vessel_card
     from runbook.assess.several import open_all
     from runbook.paper.booklet import booklet
     from runbook.procedure.reader import read_procedure
@@ -60,5 +60,5 @@ def _page(file: str, on: date, barometer: str | None) -> tuple[str | None, str, 
     if plan.verdict != "within limits":
         said = [f"{f.file or file}:{f.line}:{f.column}: {f.severity}: {f.message} [{f.rule}]" for f in plan.findings]
         return None, plan.verdict, said
-    card, *others = (gauge_card(scene, lines) for scene, lines in scenes)
-    return booklet(plan, loaded.procedure.issue, card, on, others), plan.verdict, []
+    tags = [vessel_card(scene, lines) for scene, lines in scenes]
+    return booklet(plan, loaded.procedure.issue, gauge_card(*scenes[0]), tags, on), plan.verdict, []

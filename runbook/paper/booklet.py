@@ -3,23 +3,21 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import replace
 from datetime import date
 from xml.etree.ElementTree import Element
 
-from runbook.answers import GaugeCard, Plan
+from runbook.answers import GaugeCard, Plan, VesselCard
 from runbook.errors import InputUnusable
 from runbook.paper import cards, lines
 from runbook.paper.markup import Child, document, tag
 from runbook.paper.style import STYLE
 from runbook.procedure.model import Issue
-from runbook.run.amounts import planned, pressure, temperature, vessels
+from runbook.run.amounts import planned, pressure, temperature
+from runbook.run.amounts import vessels as vessel_words
 
 
-def booklet(
-    plan: Plan, issue: Issue, card: GaugeCard | None, on: date, others: Sequence[GaugeCard | None] = ()
-) -> str:
-    """One self-contained page; on: the day its certificates were judged on; others: of the vessels beside the first.
+def booklet(plan: Plan, issue: Issue, gauge: GaugeCard | None, vessels: Sequence[VesselCard], on: date) -> str:
+    """One self-contained page; on: the day its certificates were judged on; vessels: of each its card, the first first.
 
     Raises InputUnusable for a plan that is not within limits.
     """
@@ -30,18 +28,15 @@ def booklet(
         )
     sheets: list[Element | None] = [_cover(plan, issue, on), cards.phases(plan)]
     sheets += [lines.part(plan, index) for index in range(len(plan.parts))]
-    sheets += [lines.proving_ranges(plan), cards.gauge(plan, card) if card is not None and card.left_closed else None]
+    shut = vessels[0].left_closed
+    sheets += [lines.proving_ranges(plan), cards.gauge(plan, gauge) if gauge is not None and shut else None]
     sheets.append(
         tag(
             "section",
             tag("h2", "To cut out"),
-            cards.vessel_tag(plan, card),
-            *(
-                cards.vessel_tag(replace(plan, vessel=one.vessel, planned_kg=one.planned_kg), its)
-                for one, its in zip(plan.beside, others, strict=True)
-            ),
+            *(cards.vessel_tag(plan, one) for one in vessels),
             cards.door_sign(plan),
-            cards.fire_card(plan, card),
+            cards.fire_card(plan, vessels),
             class_="sheet",
         )
     )
@@ -52,7 +47,7 @@ def _cover(plan: Plan, issue: Issue, on: date) -> Element:
     facts: list[tuple[str, str]] = [
         ("issue", f"{issue.number} of {issue.date.isoformat()}, written by {issue.written_by}, "
                   f"checked by {issue.checked_by}, review by {issue.review_by.isoformat()}"),
-        ("vessel", f"{vessels(plan)}; figures approved by {plan.approved}"),
+        ("vessel", f"{vessel_words(plan)}; figures approved by {plan.approved}"),
         ("verdict", f"within limits of those figures on {on.isoformat()}"),
         ("charge", f"{planned(plan)} of {plan.fluid}"),
         ("ceiling", f"{pressure(plan, plan.ceiling)} by {plan.ceiling_by}"),

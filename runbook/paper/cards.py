@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import Final
 from xml.etree.ElementTree import Element
 
-from runbook.answers import Certificate, Effect, GaugeCard, Hazard, Phase, Plan
+from runbook.answers import Certificate, Effect, GaugeCard, Hazard, Phase, Plan, VesselCard
 from runbook.paper.dial import face
 from runbook.paper.markup import Child, table, tag
 from runbook.run.amounts import grams, pressure, pressure_number, temperature
@@ -70,29 +71,30 @@ def gauge(plan: Plan, card: GaugeCard) -> Element:
     )
 
 
-def vessel_tag(plan: Plan, card: GaugeCard | None) -> Element:
+def vessel_tag(plan: Plan, card: VesselCard) -> Element:
     """What hangs on the loaded vessel."""
-    hottest = "not known" if card is None else temperature(card.hottest_place)
-    relief = "none" if card is None or not card.relief else ", ".join(
-        f"{name} ({kind}) from {pressure(plan, opens)}" for name, kind, opens in card.relief
-    )  # fmt: skip
-    if card is not None and not card.left_closed:
+    opens = ", ".join(f"{name} ({kind}) from {pressure(plan, at)}" for name, kind, at in card.relief)
+    relief = f"Relief: {opens}. Keep clear of its outlet." if opens else "Nothing relieves it."
+    if not card.left_closed:
         return tag(
             "div",
-            tag("p", f"{plan.vessel}: NOT EMPTY", class_="huge"),
-            tag("p", f"{plan.fluid}, at most {grams(plan.planned_kg[1])}, {plan.let_down_valve} open", class_="big"),
+            tag("p", f"{card.vessel}: NOT EMPTY", class_="huge"),
+            tag("p", f"{plan.fluid}, at most {grams(card.most_kg)}, {plan.let_down_valve} open", class_="big"),
             tag("p", f"Keep your hands off {plan.let_down_valve}. Never plug its outlet.", class_="big"),
-            tag("p", f"Relief: {relief}. Keep clear of both outlets."),
+            tag("p", f"Relief: {opens}. Keep clear of both outlets." if opens else relief),
             tag("p", "Do not carry, undo, tighten or warm. It is empty when the record says so."),
             _blanks(("date", "blank"), ("name", "blank wide")),
             class_="card",
         )
+    hottest = "Nobody can say how hot its place may be: keep it in the room."
+    if card.hottest_place is not None:
+        hottest = f"Never in a place hotter than {temperature(card.hottest_place)}."
     return tag(
         "div",
-        tag("p", f"{plan.vessel}: LOADED", class_="huge"),
-        tag("p", f"{plan.fluid}, at most {grams(plan.planned_kg[1])}", class_="big"),
-        tag("p", f"Never in a place hotter than {hottest}.", class_="big"),
-        tag("p", f"Relief: {relief}. Keep clear of its outlet."),
+        tag("p", f"{card.vessel}: LOADED", class_="huge"),
+        tag("p", f"{plan.fluid}, at most {grams(card.most_kg)}", class_="big"),
+        tag("p", hottest, class_="big"),
+        tag("p", relief),
         tag("p", "Do not carry, undo, tighten or warm. The charge was proved by "),
         _blanks(("charge", "blank"), ("date", "blank"), ("name", "blank wide"), ("key with", "blank wide")),
         class_="card",
@@ -113,23 +115,23 @@ def door_sign(plan: Plan) -> Element:
     )
 
 
-def fire_card(plan: Plan, card: GaugeCard | None) -> Element:
+def fire_card(plan: Plan, vessels: Sequence[VesselCard]) -> Element:
     """What the fire service is told."""
-    volume = f"{plan.free_volume[1] * 1e6:.0f} mL"
-    opens = "none on the vessel" if card is None or not card.relief else ", ".join(
-        f"{name} opens from {pressure(plan, at)}" for name, _, at in card.relief
-    )  # fmt: skip
+    opens = ", ".join(f"{name} opens from {pressure(plan, at)}" for one in vessels for name, _, at in one.relief)
+    raises = "a fire raises it until a device opens" if opens else "in a fire it bursts, for nothing relieves it"
+    held = [f"at most {grams(one.most_kg)} in one closed vessel of {one.volume * 1e6:.0f} mL" for one in vessels]
+    named = [f"{one.vessel}: {words}" for one, words in zip(vessels, held, strict=True)]
     rows: list[tuple[Child, ...]] = [
         ("substance", plan.fluid),
-        ("how much", f"at most {grams(plan.planned_kg[1])} in one closed vessel of {volume}"),
-        ("pressure", f"in the lesson at most {pressure(plan, plan.ceiling)}; a fire raises it until a device opens"),
-        ("relief", opens),
+        ("how much", held[0] if len(held) == 1 else "; ".join(named)),
+        ("pressure", f"in the lesson at most {pressure(plan, plan.ceiling)}; {raises}"),
+        ("relief", opens or "none on the vessel"),
         ("what then", "the whole charge comes out at once, cold and loud; parts may fly if a window fails"),
         ("where it stands", tag("span", class_="blank wide")),
         ("who knows it", tag("span", class_="blank wide")),
     ]
-    return tag("div", tag("p", f"FIRE SERVICE: {plan.vessel}", class_="big"), table((), rows, "grid"),
-               class_="card")  # fmt: skip
+    return tag("div", tag("p", f"FIRE SERVICE: {', '.join(one.vessel for one in vessels)}", class_="big"),
+               table((), rows, "grid"), class_="card")  # fmt: skip
 
 
 def shopping(plan: Plan, extra: tuple[str, ...] = ()) -> Element:

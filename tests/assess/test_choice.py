@@ -8,10 +8,11 @@ import pytest
 
 from runbook.apparatus.model import Apparatus
 from runbook.assess.bounds import charge_bounds
-from runbook.assess.choice.loading import height, hottest_place, ice, most_for_source
+from runbook.assess.choice.loading import height, ice, most_for_source
 from runbook.assess.choice.sight import SIGHTS, Choice
 from runbook.assess.choice.standard import Wanted, hottest_target, standard_scene
 from runbook.assess.corners import highest_pressure
+from runbook.assess.hottest_place import hottest_place
 from runbook.procedure.reader import read_apparatus
 from tests.assess.scenes import changed_files, scene
 
@@ -88,7 +89,7 @@ def test_the_height_that_proves_it(tmp_path: Path) -> None:
 def test_the_hottest_place_is_where_the_worst_corner_meets_the_limit(tmp_path: Path) -> None:
     """At it the most charge, in the least volume with air, stands at the ceiling: 0.1 %."""
     one = choice(tmp_path)
-    found = hottest_place(one, 0.117)
+    found = hottest_place(one.scene(0.117), 0.117 + one.half)
     assert found is not None
     there = one.scene(0.117)
     worst = highest_pressure(there, 0.119, found).value

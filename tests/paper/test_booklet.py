@@ -9,10 +9,11 @@ from html.parser import HTMLParser
 
 import pytest
 
-from runbook.answers import GaugeCard, Plan
-from runbook.assess.bind import plan_of
-from runbook.assess.gauge_card import gauge_card
+from runbook.answers import GaugeCard, Plan, VesselCard
+from runbook.assess.bind import plan_of, plan_of_all
+from runbook.assess.gauge_card import gauge_card, vessel_card
 from runbook.assess.scene import Scene, open_scene
+from runbook.assess.several import open_all
 from runbook.assess.walk import walk
 from runbook.errors import InputUnusable
 from runbook.paper.booklet import booklet
@@ -33,6 +34,13 @@ def shipped() -> tuple[Scene, Plan, Issue, GaugeCard]:
     card = gauge_card(scene, lines)
     assert card is not None
     return scene, plan_of(scene, ISSUED, lines), loaded.procedure.issue, card
+
+
+@cache
+def tags() -> tuple[VesselCard, ...]:
+    """What hangs on its vessel."""
+    scene = shipped()[0]
+    return (vessel_card(scene, walk(scene)),)
 
 
 class Read(HTMLParser):
@@ -61,7 +69,7 @@ def read(plan: Plan) -> Read:
     """The booklet of a plan, parsed."""
     _, _, issue, card = shipped()
     parsed = Read()
-    parsed.feed(booklet(plan, issue, card, ISSUED))
+    parsed.feed(booklet(plan, issue, card, tags(), ISSUED))
     return parsed
 
 
@@ -125,8 +133,9 @@ def test_the_gauge_card_brackets_what_is_expected() -> None:
         previous = row.expected
     at20 = next(r for r in card.rows if abs(r.temperature - 293.15) < 1e-6)
     assert at20.expected == pytest.approx(57.291e5, rel=2e-4)
-    assert card.hottest_place is not None
-    assert card.hottest_place > scene.room_hottest
+    (on_it,) = tags()
+    assert on_it.hottest_place is not None
+    assert on_it.hottest_place > scene.room_hottest
 
 
 def test_the_ceiling_on_the_card_is_the_vessels() -> None:
@@ -141,4 +150,24 @@ def test_outside_limits_is_not_printed() -> None:
     _, plan, issue, card = shipped()
     for verdict in ("outside limits", "not proved"):
         with pytest.raises(InputUnusable, match=verdict):
-            booklet(replace(plan, verdict=verdict), issue, card, ISSUED)
+            booklet(replace(plan, verdict=verdict), issue, card, tags(), ISSUED)
+
+
+def test_each_tube_of_a_bath_has_its_tag() -> None:
+    """Three sealed tubes: each with its own most and its own hottest place; nothing relieves them, and it is said."""
+    loaded = read_procedure(shelf.find_procedure("sf6-three-tubes"))
+    scenes = open_all(loaded, None)
+    hung = [vessel_card(scene, lines) for scene, lines in scenes]
+    hottest = [one.hottest_place for one in hung]
+    # None at what the bath's cut-out lets it come to; the thin charges stop at what their sleeve bears, 90 degC.
+    assert all(t is not None and t > 326.0 for t in hottest)
+    assert hottest[:2] == [363.15, 363.15]
+    assert hottest[2] == pytest.approx(339.8, abs=1.0)
+    parsed = Read()
+    parsed.feed(booklet(plan_of_all(loaded, scenes, ISSUED), loaded.procedure.issue, None, hung, ISSUED))
+    for words in ("T06: LOADED", "T10: LOADED", "T14: LOADED", "at most 12.5 g", "Nothing relieves it."):
+        assert words in parsed.text
+    assert "FIRE SERVICE: T06, T10, T14" in parsed.text
+    assert "in a fire it bursts, for nothing relieves it" in parsed.text
+    assert "not known." not in parsed.text
+    assert "until a device opens" not in parsed.text

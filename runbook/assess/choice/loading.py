@@ -9,12 +9,10 @@ from runbook.apparatus.instruments import permissible_error
 from runbook.assess.bounds import first_blocked
 from runbook.assess.boxes import viewed_shape
 from runbook.assess.choice.sight import Choice, largest
-from runbook.assess.corners import temperature_at_pressure
-from runbook.assess.limits import closed_extremes, margins
 from runbook.assess.scene import Scene
 from runbook.assess.sights.marks import is_seen, window_of
 from runbook.charge.filling import mass_from_height
-from runbook.errors import OutsideValidity, RunbookError
+from runbook.errors import RunbookError
 from runbook.quantities import Bounded
 
 HANDLING = 0.25
@@ -111,22 +109,6 @@ def _proves(choice: Choice, scene: Scene, at: float, temperature: float) -> floa
     except RunbookError:
         return None
     return 0.5 * (told.greatest - told.least)
-
-
-def hottest_place(choice: Choice, mass: float) -> float | None:
-    """Temperature [K] at which a charge [kg] comes to the lowest pressure limit; None: none known, or never."""
-    scene = choice.scene(mass)
-    high = mass + choice.half
-    shut = {v.tag: "shut" for v in choice.apparatus.valves}
-    try:
-        reach = closed_extremes(scene, high, scene.room_hottest, scene.room_coldest)
-    except OutsideValidity:
-        return None
-    allowed = [m.allowed for m in margins(scene, reach, shut, "") if m.kind == "pressure"]
-    known = [a for a in allowed if a is not None]
-    if not known or len(known) < len(allowed):
-        return None
-    return temperature_at_pressure(scene, high, min(known), 0.0)
 
 
 def most_for_source(choice: Choice, hottest: float) -> float | None:
